@@ -1,0 +1,77 @@
+# beamward: plain make. `make demo` and `make test` are all that a user needs; `make help` lists the rest.
+
+VERSION = 0.1.0
+BUILD  ?= build
+CC     ?= cc
+CFLAGS ?= -O2 -g
+WARN    = -Wall -Wextra -Wpedantic -Werror -Wconversion -Wshadow -Wdouble-promotion -Wvla -Wfloat-equal \
+          -Wformat=2 -Wundef -Wwrite-strings -Wcast-qual -Wswitch-enum -Wstrict-prototypes -Wmissing-prototypes
+COMPILE = $(CC) -std=c11 -D_POSIX_C_SOURCE=200809L $(WARN) -ffp-contract=off -Iinclude -MMD -MP $(CFLAGS)
+
+# The house, top floor first: each module uses only those to its right.
+MODULES = report assess casefile room eyewear hazard beam limits base
+INCLUDE_INI = -I/usr/include/iniparser
+
+RULE_SETS = $(wildcard limits_tables/*.ini)
+
+# What is built from C, one archive a module, so that a test links its module and the floors below.
+sources = $(filter-out src/limits/tablec.c,$(wildcard src/$(1)/*.c))
+objects = $(patsubst src/%.c,$(BUILD)/obj/%.o,$(call sources,$(1)))
+archive = $(BUILD)/lib/$(1).a
+floors_from = $(if $(filter $(1),$(firstword $(2))),$(2),$(call floors_from,$(1),$(wordlist 2,99,$(2))))
+archives_from = $(foreach m,$(call floors_from,$(1),$(MODULES)),$(call archive,$(m)))
+
+PROGRAM = $(BUILD)/beamward
+UNIT_TESTS = $(patsubst tests/unit/%.c,$(BUILD)/tests/unit/%,$(wildcard tests/unit/test_*.c))
+PUBLISHED_TESTS = $(patsubst tests/published/%.c,$(BUILD)/tests/published/%,$(wildcard tests/published/test_*.c))
+FILE_TESTS = $(patsubst tests/%.c,$(BUILD)/tests/%,$(wildcard tests/bad_cases/test_*.c tests/cli/test_*.c))
+TESTS = $(UNIT_TESTS) $(PUBLISHED_TESTS) $(FILE_TESTS)
+
+.PHONY: all demo test check packages clean help
+.SECONDARY:
+all: $(PROGRAM)
+
+$(BUILD)/obj/%.o: src/%.c
+	@mkdir -p $(@D)
+	$(COMPILE) $(INCLUDE_INI) -DBEAMWARD_VERSION='"$(VERSION)"' -c $< -o $@
+
+define module_rule
+$(call archive,$(1)): $(call objects,$(1)) $$($(1)_EXTRA)
+	@mkdir -p $$(@D)
+	@rm -f $$@
+	ar rcs $$@ $$^
+endef
+limits_EXTRA = $(BUILD)/obj/limits/tables_data.o
+$(foreach m,$(MODULES),$(eval $(call module_rule,$(m))))
+
+# The tables: a host program checks them and writes them out as C.
+TABLEC = $(BUILD)/tablec
+$(TABLEC): $(BUILD)/obj/limits/tablec.o $(BUILD)/obj/limits/table_read.o $(BUILD)/obj/limits/material_read.o $(call archive,base)
+	$(CC) $(CFLAGS) $^ -liniparser -lm -o $@
+$(BUILD)/generated/tables_data.c: $(TABLEC) $(RULE_SETS)
+	@mkdir -p $(@D)
+	$(TABLEC) --out $@ $(RULE_SETS)
+$(BUILD)/obj/limits/tables_data.o: $(BUILD)/generated/tables_data.c src/limits/internal.h
+	@mkdir -p $(@D)
+	$(COMPILE) -Isrc/limits -c $< -o $@
+
+LIBS = -liniparser -lm
+$(PROGRAM): $(call objects,cli) $(call archives_from,report)
+	$(CC) $(CFLAGS) $^ $(LIBS) -lmd -o $@
+
+# tests/unit/test_X.c links module X and the floors below; the others link everything.
+.SECONDEXPANSION:
+$(BUILD)/tests/unit/test_%: $(BUILD)/testobj/unit/test_%.o $$(call archives_from,$$(firstword $$(subst _, ,$$*)))
+	@mkdir -p $(@D)
+	$(CC) $(CFLAGS) $^ $(LIBS) -lcmocka -lgsl -lgslcblas -lm -o $@
+$(BUILD)/tests/%: $(BUILD)/testobj/%.o $(call archives_from,report)
+	@mkdir -p $(@D)
+	$(CC) $(CFLAGS) $^ $(LIBS) -lcmocka -lgsl -lgslcblas -lm -o $@
+$(BUILD)/testobj/%.o: tests/%.c
+	@mkdir -p $(@D)
+	$(COMPILE) -Itests -DTEST_PROGRAM='"$(PROGRAM)"' -c $< -o $@
+
+-include $(shell find $(BUILD) -name '*.d' 2>/dev/null)
+
+clean:
+	rm -rf $(BUILD)

@@ -1,0 +1,101 @@
+/* assess - the whole job over a case: distances, goggles, rooms, findings. Pure: same case and table in, same result out.
+ * Uses: base to casefile.  Used by: report, cli.
+ * Threads: re-entrant; a result is const once made. */
+#ifndef BEAMWARD_ASSESS_H
+#define BEAMWARD_ASSESS_H
+
+#include <beamward/casefile.h>
+
+#ifdef __cplusplus
+extern "C" {
+#endif
+
+/* One emission of a handpiece, in the direct beam. */
+struct bw_emission_result {
+    struct bw_train_limit limit; /* eye, the effect that governs this emission at the exit */
+    double ratio_at_exit;        /* alone */
+    struct bw_reach nohd;        /* alone */
+    double optical_density;      /* needed at the exit, sharing the allowance */
+};
+
+struct bw_distance_result { /* one handpiece */
+    size_t laser, handpiece;
+    struct bw_exposure_time glance, skin_time, diffuse_time;
+    bool exposure_given; /* by the case file, for all three */
+    struct bw_reach nohd, skin, diffuse;
+    double ratio_at_exit;       /* eye */
+    double skin_ratio_at_exit;
+    struct bw_spot diffuse_spot; /* what the diffuse distance assumes: reflectance 1, the smallest spot */
+    size_t governing_emission;
+    struct bw_train_limit governing;
+    struct bw_emission_result emissions[BW_EMISSIONS_MAX];
+    struct bw_hazard *direct, *diffuse_view, *skin_view; /* prepared */
+    bool has_permitted; /* asked for with options.at_m */
+    struct bw_permitted_time permitted_eye, permitted_skin;
+    double ratio_at_m;
+    struct bw_working working; /* empty unless options.working */
+};
+
+struct bw_pair_result { /* goggles against a handpiece at its exit, or (is_place) where a person stands */
+    size_t eyewear, laser, handpiece;
+    bool is_place;
+    size_t room, person;
+    struct bw_pair_verdict verdict;
+};
+
+/* One person in a room. */
+struct bw_person_result {
+    struct bw_place place;
+    size_t od_count;
+    struct bw_wavelength_od {
+        double wavelength_nm, od;
+    } od[BW_EMISSIONS_MAX * 4]; /* one a wavelength, the largest over the handpieces used; ascending */
+    bool has_verdict; /* wears goggles */
+    enum bw_verdict verdict;
+    bool needs_eyewear; /* ratio above 1 */
+};
+struct bw_room_result {
+    size_t room;
+    size_t source_count;
+    size_t *sources; /* indices into distances */
+    struct bw_room_solution solution;
+    struct bw_person_result *persons;
+};
+
+enum bw_severity { BW_DANGER, BW_ACTION, BW_CAUTION, BW_NOTE };
+const char *bw_severity_name(enum bw_severity severity); /* "danger", "action", "caution", "note" */
+struct bw_finding {
+    enum bw_severity severity;
+    char subject[BW_TITLE_SIZE];
+    char *text;
+};
+
+struct bw_result {
+    const struct bw_case *the_case;
+    const struct bw_table *table;
+    size_t distance_count, pair_count, room_count, finding_count;
+    struct bw_distance_result *distances;
+    struct bw_pair_result *pairs;
+    struct bw_room_result *rooms;
+    struct bw_finding *findings; /* in order of severity */
+    bool needs_action;           /* any finding of danger or action */
+};
+
+enum bw_part { BW_PART_DISTANCE = 1, BW_PART_EYEWEAR = 2, BW_PART_ROOM = 4, BW_PART_ALL = 7 };
+struct bw_assess_options {
+    unsigned parts;             /* of enum bw_part; eyewear and room include the distances that they need */
+    const char *laser, *handpiece, *room; /* NULL = all */
+    bool has_at;
+    double at_m;                /* permitted exposure time at this distance */
+    bool working;
+};
+/* Returns: BW_OK; BW_OUT_OF_RANGE (a wavelength that the rule set lacks; names the emission); BW_INPUT (a name that the
+ * case lacks; offers the nearest); BW_NO_MEMORY. */
+enum bw_status bw_assess(const struct bw_case *the_case, const struct bw_table *table,
+                         const struct bw_assess_options *options, struct bw_result **result, struct bw_error *error);
+void bw_result_free(struct bw_result *result);
+
+#ifdef __cplusplus
+}
+#endif
+#endif

@@ -1,0 +1,87 @@
+/* beam - what leaves a handpiece: emissions, pulse trains, propagation, power through an aperture.
+ * Uses: base.  Used by: hazard, room, casefile, assess, report, cli.
+ * Plain values, no state. */
+#ifndef BEAMWARD_BEAM_H
+#define BEAMWARD_BEAM_H
+
+#include <beamward/base.h>
+
+#ifdef __cplusplus
+extern "C" {
+#endif
+
+/* ---- emissions and trains ------------------------------------------------------------------- */
+
+/* What a person knows of an emission; NAN where not given. */
+struct bw_emission_input {
+    double wavelength_nm;
+    double average_power_w, peak_power_w;
+    double pulse_energy_j, pulse_duration_s, repetition_rate_hz;
+};
+
+/* A regular train of rectangular pulses, or a continuous emission. All fields consistent. */
+struct bw_emission {
+    char name[BW_NAME_SIZE];
+    double wavelength_nm;     /* 180 to 1e6 */
+    bool continuous;
+    double average_power_w;
+    double peak_power_w;      /* continuous: the average power */
+    double pulse_energy_j;    /* continuous: 0 */
+    double pulse_duration_s;  /* continuous: 0 */
+    double repetition_rate_hz;/* continuous: 0 */
+};
+
+/* Completes any consistent set of power, energy, duration and rate. Only average_power_w: continuous.
+ * Returns: BW_OK; BW_ARGUMENT out of range; BW_INPUT if too little is given (says what is missing) or
+ * if the set contradicts itself by more than 0.1 % (says by how much). */
+enum bw_status bw_emission_resolve(const struct bw_emission_input *input, struct bw_emission *emission,
+                                   struct bw_error *error);
+
+/* Largest energy that the emission sends in any window of this length [J]. Closed form. */
+double bw_train_window_energy(const struct bw_emission *emission, double window_s);
+/* Pulses of an exposure of this length that begins with a pulse (1 for continuous). */
+double bw_train_pulse_count(const struct bw_emission *emission, double exposure_s);
+
+/* ---- geometry ------------------------------------------------------------------------------- */
+
+enum bw_profile { BW_GAUSSIAN, BW_TOP_HAT };
+enum bw_spread { BW_HYPERBOLIC, BW_LINEAR };
+enum bw_diameter_definition { BW_D63, BW_D86, BW_FWHM, BW_D_TOP_HAT };
+
+/* A round beam. Diameters d63 (1/e of the peak irradiance; for a top hat its edge). */
+struct bw_beam {
+    enum bw_profile profile;
+    enum bw_spread spread;
+    double diameter_m;     /* at the waist, 1e-9 to 10 */
+    double divergence_rad; /* full angle, d63, 0 (collimated) to pi */
+    double waist_m;        /* distance of the waist in front of the exit; 0 = at the exit */
+    double exit_diameter_m;/* at the exit (equals diameter_m when waist_m is 0) */
+};
+
+/* d63 of a Gaussian from another definition: d86 = d63 sqrt 2, fwhm = d63 sqrt(ln 2); a top hat's is its own.
+ * Serves divergences too, which follow the definition of their diameter. */
+double bw_diameter_to_d63(double diameter_m, enum bw_diameter_definition definition);
+double bw_diameter_from_d63(double diameter_m, enum bw_diameter_definition definition);
+
+/* Fibre end: numerical aperture at the 5 % points, d63 half-angle = NA / sqrt(ln 20). */
+struct bw_beam bw_beam_from_fibre(double numerical_aperture, double core_m);
+/* Lens: waist at the focal length, divergence beam/f behind it, waist diameter f x incoming divergence.
+ * beam_m and divergence_rad are d63 at the lens. */
+struct bw_beam bw_beam_from_lens(double focal_length_m, double beam_m, double divergence_rad, enum bw_profile profile);
+
+/* d63 at a distance from the exit: hyperbolic d^2 = a^2 + (phi r)^2, linear d = a + phi |r|, r from the waist. */
+double bw_beam_diameter_m(const struct bw_beam *beam, double distance_m);
+/* Share of the power that goes through a centred round aperture:
+ * Gaussian 1 - exp(-(D/d)^2); top hat min(1, (D/d)^2). */
+double bw_beam_fraction(const struct bw_beam *beam, double distance_m, double aperture_m);
+/* Mean irradiance over the aperture at the beam's centre, per watt [1/m2]. aperture 0 = peak irradiance. */
+double bw_beam_irradiance_per_w(const struct bw_beam *beam, double distance_m, double aperture_m);
+/* Upper bound of the mean irradiance over an aperture whose centre is off the axis by offset_m, per watt;
+ * equals bw_beam_irradiance_per_w at offset 0 and never rises with the offset. */
+double bw_beam_irradiance_off_axis_per_w(const struct bw_beam *beam, double distance_m, double aperture_m,
+                                         double offset_m);
+
+#ifdef __cplusplus
+}
+#endif
+#endif

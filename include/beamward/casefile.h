@@ -1,0 +1,61 @@
+/* casefile - a clinic as written down: validates (section, key, value, line) triples into plain structs.
+ * Uses: base, limits, beam, hazard, eyewear, room.  Used by: assess, report, cli.
+ * A case is const after reading and may be shared between threads. */
+#ifndef BEAMWARD_CASEFILE_H
+#define BEAMWARD_CASEFILE_H
+
+#include <beamward/eyewear.h>
+#include <beamward/room.h>
+
+#ifdef __cplusplus
+extern "C" {
+#endif
+
+struct bw_handpiece {
+    char name[BW_NAME_SIZE], title[BW_TITLE_SIZE];
+    struct bw_output output;  /* the laser's emissions, each with its beam from this handpiece */
+    bool has_exposure;
+    double exposure_s;        /* overrides the customary time */
+    bool emission_beam_given[BW_EMISSIONS_MAX]; /* [beam ...] section of its own */
+    int line;
+};
+struct bw_laser {
+    char name[BW_NAME_SIZE], title[BW_TITLE_SIZE];
+    char labelled_class[8]; /* "3B", "4"...; empty if not given */
+    size_t emission_count, handpiece_count;
+    struct bw_emission *emissions; /* in the order of the file */
+    struct bw_handpiece *handpieces;
+    int line;
+};
+struct bw_use {
+    size_t room, laser, handpiece;
+};
+struct bw_case {
+    char title[BW_TITLE_SIZE];
+    char rules[BW_NAME_SIZE]; /* id of the rule set; "iec-60825-1-2014" if not given */
+    bool rules_given;
+    bool us_units;
+    size_t laser_count, room_count, eyewear_count, use_count;
+    struct bw_laser *lasers;
+    struct bw_room *rooms;
+    struct bw_goggles *eyewear;
+    struct bw_use *uses;
+    struct bw_ini given; /* the triples as they were written, for the record */
+};
+
+/* Validates triples. All faults of the file are collected, each with its line; the case is then NULL.
+ * Returns: BW_OK; BW_INPUT with faults; BW_NO_MEMORY. */
+enum bw_status bw_case_from_ini(const struct bw_ini *ini, struct bw_case **the_case, struct bw_faults *faults,
+                                struct bw_error *error);
+/* Reads a case file. `bytes` (may be NULL) receives the raw file, for its hash. */
+enum bw_status bw_case_read(const char *path, struct bw_case **the_case, struct bw_text *bytes,
+                            struct bw_faults *faults, struct bw_error *error);
+void bw_case_free(struct bw_case *the_case);
+
+/* A commented starter case file that runs as it is. */
+const char *bw_case_starter(void);
+
+#ifdef __cplusplus
+}
+#endif
+#endif

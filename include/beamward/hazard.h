@@ -1,0 +1,141 @@
+/* hazard - hazard ratio at a place, hazard distances, optical density, longest permitted exposure.
+ * Uses: limits, beam.  Used by: eyewear, room, assess, report, cli.
+ * Plain values, no allocation, no state. */
+#ifndef BEAMWARD_HAZARD_H
+#define BEAMWARD_HAZARD_H
+
+#include <beamward/beam.h>
+#include <beamward/limits.h>
+
+#ifdef __cplusplus
+extern "C" {
+#endif
+
+/* ---- the limit of one emission, pulses and all ----------------------------------------------- */
+
+enum bw_train_rule { BW_RULE_SINGLE, BW_RULE_AVERAGE, BW_RULE_TRAIN };
+enum { BW_RULES = 3 };
+const char *bw_train_rule_name(enum bw_train_rule rule); /* "single", "average", "train" */
+
+/* The limit of one emission for one effect, by each rule. */
+struct bw_train_limit {
+    struct bw_limit limit;       /* the printed row that governs, at the time where it governs */
+    enum bw_train_rule rule;     /* which governs; continuous: BW_RULE_AVERAGE */
+    double rules_j_m2[BW_RULES]; /* limit per pulse by each rule (continuous: over the exposure time); NAN where a rule does not apply */
+    double per_pulse_j_m2;       /* the lowest of them */
+    double irradiance_w_m2;      /* the same as a limit of the time-mean irradiance (average power) */
+    double pulses;               /* N as counted for rule 3; 0 if it does not apply */
+    double group_pulses;         /* pulses that count as one because they fall inside Ti; 1 = none */
+    double correction;           /* of rule 3; 1 if none */
+};
+
+struct bw_viewing_case {
+    enum bw_target target;
+    double exposure_s;
+    double subtense_rad; /* 0 = point source */
+    double area_m2;      /* exposed skin; 0 = small */
+};
+
+struct bw_train_limit_set {
+    size_t count;
+    struct bw_train_limit limits[BW_EFFECTS]; /* one an effect */
+    size_t governing;
+};
+
+/* All effects of the target for one emission: rule 1 single pulse, rule 2 the worst window of every length
+ * up to the exposure, rule 3 the train correction, pulses inside Ti grouped. On a tie (1e-9 relative) the
+ * average governs before single before train. */
+enum bw_status bw_hazard_train_limits(const struct bw_table *table, const struct bw_emission *emission,
+                                      const struct bw_viewing_case *viewing, struct bw_train_limit_set *limits,
+                                      struct bw_working *working, struct bw_error *error);
+
+/* ---- a handpiece in use ---------------------------------------------------------------------- */
+
+enum { BW_EMISSIONS_MAX = 16, BW_TERMS_MAX = BW_EMISSIONS_MAX * BW_EFFECTS };
+
+/* What leaves one handpiece at once. */
+struct bw_output {
+    size_t count; /* 1 to BW_EMISSIONS_MAX */
+    struct bw_emission emissions[BW_EMISSIONS_MAX];
+    struct bw_beam beams[BW_EMISSIONS_MAX];
+};
+
+/* One emission against one effect: ratio = average power x irradiance per watt / limit. */
+struct bw_term {
+    size_t emission;
+    struct bw_train_limit limit;
+};
+
+/* An output prepared against a rule set for one way of viewing. Point source: the terms hold at every
+ * distance. Diffuse: the terms depend on the subtense and are evaluated anew at each distance. */
+struct bw_hazard {
+    const struct bw_table *table;
+    const struct bw_output *output;
+    struct bw_viewing_case viewing;
+    size_t term_count;
+    struct bw_term terms[BW_TERMS_MAX];
+    bool adds[BW_TERMS_MAX][BW_TERMS_MAX]; /* which terms sum: same tissue and effect */
+};
+enum bw_status bw_hazard_prepare(const struct bw_table *table, const struct bw_output *output,
+                                 const struct bw_viewing_case *viewing, struct bw_hazard *hazard,
+                                 struct bw_working *working, struct bw_error *error);
+
+struct bw_ratio {
+    double total;                   /* the largest sum over terms that add */
+    double emission[BW_EMISSIONS_MAX]; /* the largest of each emission alone */
+    size_t governing;               /* index of the largest term within the largest sum */
+};
+
+/* Hazard ratio on the axis of the direct beam; share = product of reflectances and transmittances passed. */
+double bw_hazard_ratio(const struct bw_hazard *hazard, double distance_m);
+void bw_hazard_ratio_detail(const struct bw_hazard *hazard, double distance_m, struct bw_ratio *ratio);
+/* The same for a place off the axis by offset_m: an upper bound that never rises with the offset. */
+double bw_hazard_ratio_off_axis(const struct bw_hazard *hazard, double distance_m, double offset_m);
+/* Envelope: the largest ratio at this distance or farther (focused beams). */
+double bw_hazard_ratio_envelope(const struct bw_hazard *hazard, double distance_m);
+
+/* A diffuse reflection: the spot (d63 spot_m of the emission whose spot is smallest) as an extended source,
+ * E = rho P / (pi r^2), never more than rho times the irradiance of the spot. */
+struct bw_spot {
+    double reflectance; /* 0 to 1 */
+    double diameter_m[BW_EMISSIONS_MAX]; /* of each emission */
+};
+enum bw_status bw_hazard_spot(const struct bw_output *output, double beam_path_m, double reflectance, struct bw_spot *spot);
+enum bw_status bw_hazard_diffuse_ratio(const struct bw_hazard *hazard, const struct bw_spot *spot, double distance_m,
+                                       struct bw_ratio *ratio, struct bw_error *error);
+
+/* A distance that may not end. */
+struct bw_reach {
+    double distance_m; /* INFINITY when unbounded */
+    bool unbounded;    /* the hazard never ends (collimated beam) */
+};
+/* The farthest place where the ratio is still above 1 (0 if nowhere). only = index of one emission, or
+ * BW_EMISSIONS_MAX for all together. At the answer the ratio is 1 to 1e-9. */
+enum bw_status bw_hazard_reach(const struct bw_hazard *hazard, size_t only, struct bw_reach *reach,
+                               struct bw_working *working, struct bw_error *error);
+enum bw_status bw_hazard_diffuse_reach(const struct bw_hazard *hazard, const struct bw_spot *spot,
+                                       struct bw_reach *reach, struct bw_working *working, struct bw_error *error);
+
+/* Optical density that each emission needs so that all together keep the limit: the allowance is shared
+ * equally among those that need any (each residual is at most c, where the sum of min(ratio, c) is 1); a ratio
+ * below c keeps its own. OD = log10(ratio / c), 0 where none is needed. `reduction` (1 = none) scales the ratios. */
+void bw_hazard_optical_density(const struct bw_hazard *hazard, const double term_ratios[BW_TERMS_MAX],
+                               double od[BW_EMISSIONS_MAX]);
+/* Term ratios at a distance, for bw_hazard_optical_density. */
+void bw_hazard_term_ratios(const struct bw_hazard *hazard, double distance_m, double term_ratios[BW_TERMS_MAX]);
+
+/* Longest exposure that keeps the limit at a distance, on the axis [s]. INFINITY with unbounded = true: safe
+ * for as long as the table goes (3e4 s). 0: no time at all. */
+struct bw_permitted_time {
+    double exposure_s;
+    bool unbounded;
+};
+enum bw_status bw_hazard_permitted_time(const struct bw_table *table, const struct bw_output *output,
+                                        const struct bw_viewing_case *viewing, double distance_m,
+                                        struct bw_permitted_time *time, struct bw_working *working,
+                                        struct bw_error *error);
+
+#ifdef __cplusplus
+}
+#endif
+#endif
