@@ -12,9 +12,9 @@ extern "C" {
 #endif
 
 #if defined(__GNUC__)
-#define BW_PRINTF(format, first) __attribute__((format(printf, format, first)))
+#define BW_PRINTF(text_at, first_at) __attribute__((format(printf, text_at, first_at)))
 #else
-#define BW_PRINTF(format, first)
+#define BW_PRINTF(text_at, first_at)
 #endif
 
 /* ---- errors ------------------------------------------------------------------------------- */
@@ -57,7 +57,7 @@ void bw_faults_free(struct bw_faults *faults);
 
 /* ---- text --------------------------------------------------------------------------------- */
 
-enum { BW_NAME_SIZE = 64, BW_TITLE_SIZE = 200 };
+enum { BW_NAME_SIZE = 64, BW_TITLE_SIZE = 200, BW_REASON_SIZE = 200 };
 
 /* A growing string. A zeroed struct is empty; after a failed allocation `failed` stays true and
  * further additions do nothing. data is NUL-terminated or NULL. */

@@ -10,7 +10,7 @@
 extern "C" {
 #endif
 
-enum { BW_RATINGS_MAX = 32, BW_REASON_SIZE = 160 };
+enum { BW_RATINGS_MAX = 32 };
 
 struct bw_rating { /* one range of wavelengths, both ends included */
     double low_nm, high_nm;
