@@ -27,9 +27,81 @@ PUBLISHED_TESTS = $(patsubst tests/published/%.c,$(BUILD)/tests/published/%,$(wi
 FILE_TESTS = $(patsubst tests/%.c,$(BUILD)/tests/%,$(wildcard tests/bad_cases/test_*.c tests/cli/test_*.c))
 TESTS = $(UNIT_TESTS) $(PUBLISHED_TESTS) $(FILE_TESTS)
 
-.PHONY: all demo test check packages clean help
+.PHONY: all demo test tests run-tests check clang sanitize demo-run packages-build packages-test packages-check clean help
 .SECONDARY:
 all: $(PROGRAM)
+
+help:
+	@echo 'make demo      get what is missing, build, run the whole job on examples/'
+	@echo 'make test      get what is missing, build, run every test'
+	@echo 'make check     the tests again with clang and under the address and undefined-behaviour sanitizers'
+	@echo 'make all       build only: $(PROGRAM)'
+	@echo 'make clean     remove $(BUILD)/'
+
+# ---- the two commands of README -----------------------------------------------------------------
+
+demo: packages-build
+	@$(MAKE) --no-print-directory -j2 all
+	@$(MAKE) --no-print-directory demo-run
+
+test: packages-build packages-test
+	@$(MAKE) --no-print-directory -j2 all tests
+	@$(MAKE) --no-print-directory run-tests
+
+# Exit code 1 of `assess` means that something needs action: so it is in a demonstration.
+DEMO_CASES = physio-clinic horse-clinic
+demo-run:
+	@for name in $(DEMO_CASES); do \
+	    echo "== examples/$$name.ini"; \
+	    $(PROGRAM) assess examples/$$name.ini --out $(BUILD)/demo/$$name; [ $$? -le 1 ] || exit 1; echo; \
+	done
+	@echo 'Open in a browser:'
+	@for name in $(DEMO_CASES); do echo "  $(BUILD)/demo/$$name/report.html"; done
+
+tests: $(TESTS)
+
+# All programs run, whatever one of them finds; the last line tells how many failed.
+run-tests:
+	@failed=0; for program in $(TESTS); do \
+	    echo "== $$program"; $$program || { failed=$$((failed + 1)); echo "FAILED: $$program"; }; \
+	done; \
+	if [ $$failed -ne 0 ]; then echo "$$failed test programs failed"; exit 1; fi; echo "all $(words $(TESTS)) test programs passed"
+
+# ---- what has to be there -----------------------------------------------------------------------
+
+# $(call need,what for,headers or programs,Debian packages): installs as root, else says what to install.
+define need
+	@missing=; \
+	for header in $(2); do \
+	    printf '#include <%s>\n' "$$header" | $(CC) $(INCLUDE_INI) -include stdint.h -include stdarg.h -include setjmp.h -E -x c - >/dev/null 2>&1 || missing=1; \
+	done; \
+	for program in $(3); do command -v "$$program" >/dev/null 2>&1 || missing=1; done; \
+	[ -z "$$missing" ] || if [ "$$(id -u)" = 0 ] && command -v apt-get >/dev/null; then \
+	    export DEBIAN_FRONTEND=noninteractive; \
+	    apt-get update -q && apt-get install -y -q --no-install-recommends $(4); \
+	else \
+	    echo 'To $(1), please install: $(4)'; echo '  sudo apt-get install $(4)'; exit 1; \
+	fi
+endef
+packages-build:
+	$(call need,build beamward,iniparser.h sha2.h,,libc6-dev libiniparser-dev libmd-dev)
+packages-test:
+	$(call need,test beamward,cmocka.h gsl/gsl_integration.h,,libcmocka-dev libgsl-dev)
+packages-check:
+	$(call need,check beamward,,clang,clang)
+
+# ---- assurances ---------------------------------------------------------------------------------
+
+check: clang sanitize
+clang: packages-build packages-test packages-check
+	@$(MAKE) --no-print-directory -j2 BUILD=$(BUILD)/clang CC=clang all tests
+	@$(MAKE) --no-print-directory BUILD=$(BUILD)/clang CC=clang run-tests
+sanitize: packages-build packages-test
+	@$(MAKE) --no-print-directory -j2 BUILD=$(BUILD)/sanitize \
+	    CFLAGS='-O1 -g -fsanitize=address,undefined -fno-sanitize-recover=all -fno-omit-frame-pointer' all tests
+	@$(MAKE) --no-print-directory BUILD=$(BUILD)/sanitize run-tests
+
+# ---- building -----------------------------------------------------------------------------------
 
 $(BUILD)/obj/%.o: src/%.c
 	@mkdir -p $(@D)

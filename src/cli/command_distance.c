@@ -1,0 +1,40 @@
+/* beamward distance: hazard distances and optical density, a handpiece each. */
+#include "cli.h"
+
+static const struct cli_option options[] = {
+    CLI_NARROWING_OPTIONS,
+    {"--at", "M", "also the longest permitted exposure at this distance in m"},
+    CLI_COMMON_OPTIONS,
+};
+
+static enum cli_exit run(const struct cli_arguments *arguments) {
+    struct cli_job job;
+    struct bw_result *result = NULL;
+    enum cli_exit exit_code = cli_job_read(arguments, &job);
+    if (exit_code != CLI_DONE)
+        return exit_code;
+    exit_code = cli_job_assess(arguments, &job, BW_PART_DISTANCE, &result);
+    if (exit_code == CLI_DONE) {
+        struct bw_text text = {0};
+        if (cli_wants_json(arguments))
+            bw_report_distance_json(&text, result);
+        else
+            bw_report_distance_text(&text, result);
+        exit_code = cli_print_unless_quiet(arguments, &text);
+    }
+    bw_result_free(result);
+    cli_job_free(&job);
+    return exit_code;
+}
+
+const struct cli_command cli_distance = {
+    .name = "distance",
+    .operands = "CASE",
+    .answers = "Hazard distances and optical density, per handpiece",
+    .example = "beamward distance examples/physio-clinic.ini --at 2",
+    .operands_least = 1,
+    .operands_most = 1,
+    .options = options,
+    .option_count = CLI_COUNT(options),
+    .run = run,
+};
