@@ -38,6 +38,8 @@ struct bw_error {
 enum bw_status bw_error_set(struct bw_error *error, enum bw_status status, const char *format, ...)
     BW_PRINTF(3, 4);
 
+struct bw_text;
+
 /* What is wrong with a file, all of it at once. A zeroed struct is an empty list. */
 struct bw_fault {
     int line;      /* 1-based; 0 = the file as a whole */
@@ -53,6 +55,8 @@ struct bw_faults {
 void bw_faults_add(struct bw_faults *faults, int line, const char *section, const char *key,
                    const char *format, ...) BW_PRINTF(5, 6);
 void bw_faults_sort(struct bw_faults *faults); /* by line; stable */
+/* One line a fault: `PATH:LINE: [section] key: text`, without the parts that a fault lacks. */
+void bw_faults_print(struct bw_text *out, const char *path, const struct bw_faults *faults);
 void bw_faults_free(struct bw_faults *faults);
 
 /* ---- text --------------------------------------------------------------------------------- */
