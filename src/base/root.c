@@ -50,7 +50,7 @@ static void choose_step(struct bracket *s, double tolerance, double half) {
 enum bw_status bw_root(bw_function *function, const void *context, double low, double high, double *root) {
     enum { STEPS_MAX = 2000 };
     struct bracket s = {.a = low, .b = high};
-    *root = NAN;
+    *root = (double)NAN;
     s.fa = function(low, context);
     s.fb = function(high, context);
     if (!((s.fa <= 0 && s.fb >= 0) || (s.fa >= 0 && s.fb <= 0)))

@@ -4,7 +4,7 @@
 #include <stdio.h>
 #include <stdlib.h>
 
-static char *print_copy(const char *format, va_list list) {
+BW_PRINTF(1, 0) static char *print_copy(const char *format, va_list list) {
     char text[512];
     vsnprintf(text, sizeof text, format, list);
     return bw_duplicate(text);
