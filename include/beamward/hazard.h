@@ -17,13 +17,16 @@ enum bw_train_rule { BW_RULE_SINGLE, BW_RULE_AVERAGE, BW_RULE_TRAIN };
 enum { BW_RULES = 3 };
 const char *bw_train_rule_name(enum bw_train_rule rule); /* "single", "average", "train" */
 
-/* The limit of one emission for one effect, by each rule. */
+/* The limit of one emission for one effect, by each rule. Of a source wider than the cone in which the limit is
+ * measured these are limits of the whole exposure: the cone is in them already. */
 struct bw_train_limit {
     struct bw_limit limit;       /* the printed row that governs, at the time where it governs */
     enum bw_train_rule rule;     /* which governs; continuous: BW_RULE_AVERAGE */
     double rules_j_m2[BW_RULES]; /* limit per pulse by each rule (continuous: over the exposure time); NAN where a rule does not apply */
     double per_pulse_j_m2;       /* the lowest of them */
     double irradiance_w_m2;      /* the same as a limit of the time-mean irradiance (average power) */
+    double aperture_m;           /* to average the exposure over: the row's, or smaller where a shorter window with a
+                                    smaller aperture binds a beam narrower than it */
     double pulses;               /* N as counted for rule 3; 0 if it does not apply */
     double group_pulses;         /* pulses that count as one because they fall inside Ti; 1 = none */
     double correction;           /* of rule 3; 1 if none */

@@ -1,0 +1,186 @@
+/* A diffuse reflection: the lit spot as an extended source. */
+#include "internal.h"
+
+#include <math.h>
+
+/* Given:    output; beam_path_m  length of the beam's way to the surface [m]; reflectance  0 to 1
+ * Returned: spot  d63 of each emission on the surface
+ * Returns:  BW_OK; BW_ARGUMENT */
+enum bw_status bw_hazard_spot(const struct bw_output *output, double beam_path_m, double reflectance,
+                              struct bw_spot *spot) {
+    spot->reflectance = nan("");
+    if (!(beam_path_m >= 0.) || !(reflectance >= 0. && reflectance <= 1.) || output->count > BW_EMISSIONS_MAX)
+        return BW_ARGUMENT;
+    for (size_t i = 0; i < BW_EMISSIONS_MAX; i++)
+        spot->diameter_m[i] = i < output->count ? bw_beam_diameter_m(&output->beams[i], beam_path_m) : 0.;
+    spot->reflectance = reflectance;
+    return BW_OK;
+}
+
+/* alpha = 2 atan(d / 2r), at most pi/2: never more than d/r, and a smaller source has the stricter limit. Nearer than
+ * half the spot's diameter it stays. */
+static double subtense_rad(double diameter_m, double distance_m) {
+    return distance_m > diameter_m / 2. ? 2. * atan(diameter_m / 2. / distance_m) : bw_pi / 2.;
+}
+
+/* Irradiance per watt from a matt spot, seen along its normal: rho / (pi r^2), but nowhere more than the spot itself
+ * sends out, rho x 4 / (pi d^2). The mean over an aperture is no more than that. */
+static double irradiance_per_w(const struct bw_spot *spot, size_t emission, double distance_m) {
+    double nearest_m = fmax(distance_m, spot->diameter_m[emission] / 2.);
+    return spot->reflectance / bw_pi / nearest_m / nearest_m;
+}
+
+static enum bw_status check(const struct bw_hazard *hazard, const struct bw_spot *spot, struct bw_error *error) {
+    if (hazard->term_count == 0)
+        return bw_error_set(error, BW_ARGUMENT, "the hazard was not prepared");
+    if (!(spot->reflectance >= 0. && spot->reflectance <= 1.))
+        return bw_error_set(error, BW_ARGUMENT, "reflectance is %g, outside 0 to 1", spot->reflectance);
+    for (size_t i = 0; i < hazard->output->count; i++)
+        if (!(spot->diameter_m[i] >= 0. && spot->diameter_m[i] < HUGE_VAL))
+            return bw_error_set(error, BW_ARGUMENT, "spot diameter is %g m; it must be 0 or more", spot->diameter_m[i]);
+    return BW_OK;
+}
+
+static enum bw_status ratio_with_working(const struct bw_hazard *hazard, const struct bw_spot *spot, double distance_m,
+                                         struct bw_ratio *ratio, struct bw_working *working, struct bw_error *error) {
+    struct bw_hazard here; /* the same with the limits of this subtense */
+    double subtenses_rad[BW_EMISSIONS_MAX], ratios[BW_TERMS_MAX];
+    here.table = hazard->table;
+    here.output = hazard->output;
+    here.viewing = hazard->viewing;
+    for (size_t i = 0; i < hazard->output->count; i++) {
+        subtenses_rad[i] = subtense_rad(spot->diameter_m[i], distance_m);
+        bw_working_step(working, "alpha", subtenses_rad[i], "rad", NULL, "2 atan(d / 2r), at most pi/2",
+                        "d = %.6g m, r = %.6g m", spot->diameter_m[i], distance_m);
+    }
+    enum bw_status status = bw_hazard_fill(&here, subtenses_rad, working, error);
+    if (status != BW_OK)
+        return status;
+    for (size_t i = 0; i < here.term_count; i++) {
+        const struct bw_term *term = &here.terms[i];
+        double power_w = here.output->emissions[term->emission].average_power_w;
+        double per_w = irradiance_per_w(spot, term->emission, distance_m);
+        ratios[i] = power_w * per_w / term->limit.irradiance_w_m2;
+        bw_working_step(working, "ratio", ratios[i], "", NULL, "rho P / (pi r^2) / E_limit",
+                        "%.6g W x %.6g 1/m2 / %.6g W/m2 (%g nm, %s)", power_w, per_w, term->limit.irradiance_w_m2,
+                        here.output->emissions[term->emission].wavelength_nm, bw_effect_name(term->limit.limit.effect));
+    }
+    bw_hazard_combine(&here, ratios, ratio);
+    return BW_OK;
+}
+
+/* Hazard ratio of looking at a matt spot from a distance.
+ * Given:    hazard  prepared for this way of viewing (its subtense is not used); spot; distance_m from it, 0 or more
+ * Returned: ratio   governing counts the terms in the order of the emissions and effects, as hazard does
+ * Returns:  BW_OK; BW_ARGUMENT; BW_OUT_OF_RANGE
+ * Notes:    Each emission has its own spot, hence its own subtense and limits (CE, T2, photochemical cone). */
+enum bw_status bw_hazard_diffuse_ratio(const struct bw_hazard *hazard, const struct bw_spot *spot, double distance_m,
+                                       struct bw_ratio *ratio, struct bw_error *error) {
+    *ratio = (struct bw_ratio){.total = nan("")};
+    enum bw_status status = check(hazard, spot, error);
+    if (status != BW_OK)
+        return status;
+    if (!(distance_m >= 0.))
+        return bw_error_set(error, BW_ARGUMENT, "distance is %g m; it must be 0 or more", distance_m);
+    return ratio_with_working(hazard, spot, distance_m, ratio, NULL, error);
+}
+
+/* ---- how far it reaches ------------------------------------------------------------------------- */
+
+struct search {
+    const struct bw_hazard *hazard;
+    const struct bw_spot *spot;
+    struct bw_error *error;
+    enum bw_status status; /* the first failure */
+};
+
+/* A ratio that cannot be had is NAN, and the status says why. */
+static double ratio_at(struct search *search, double distance_m) {
+    struct bw_ratio ratio = {.total = nan("")};
+    if (search->status == BW_OK)
+        search->status = ratio_with_working(search->hazard, search->spot, distance_m, &ratio, NULL, search->error);
+    return search->status == BW_OK ? ratio.total : nan("");
+}
+
+static double close_in(struct search *search, double near_m, double far_m) {
+    while (search->status == BW_OK) {
+        double middle_m = near_m + (far_m - near_m) / 2.;
+        if (!(middle_m > near_m && middle_m < far_m))
+            break;
+        if (ratio_at(search, middle_m) <= 1.)
+            far_m = middle_m;
+        else
+            near_m = middle_m;
+    }
+    return far_m;
+}
+
+/* Angles at which a train correction changes its law. From each of them on, away from the spot, the ratio may step up;
+ * between them it never rises: E falls as 1/r^2, and no limit grows faster than the square of the subtense. */
+static const double steps_rad[] = {1.5e-3, 5e-3, 100e-3};
+enum { STEPS = 3, PLACES_MAX = STEPS * BW_EMISSIONS_MAX };
+
+static double farthest_step_m(const struct bw_spot *spot, size_t count, double below_m) {
+    double farthest_m = 0.;
+    for (size_t i = 0; i < count; i++)
+        for (size_t j = 0; j < STEPS; j++) {
+            double place_m = spot->diameter_m[i] / 2. / tan(steps_rad[j] / 2.) * (1. + 1e-9);
+            if (place_m < below_m)
+                farthest_m = fmax(farthest_m, place_m);
+        }
+    return farthest_m;
+}
+
+/* Goes inward in steps of a few per cent, and through the place just outside each step of the law, until the ratio is
+ * above 1. Nearer than half the smallest spot nothing changes any more. */
+static double inward(struct search *search, double far_m, double nearest_m) {
+    static const double stride = 0.94;
+    while (search->status == BW_OK && far_m > nearest_m) {
+        double step_m = farthest_step_m(search->spot, search->hazard->output->count, far_m);
+        double near_m = fmax(fmax(stride * far_m, step_m), nearest_m);
+        if (!(ratio_at(search, near_m) <= 1.))
+            return close_in(search, near_m, far_m);
+        far_m = near_m;
+    }
+    return 0.;
+}
+
+static double solve(struct search *search) {
+    size_t count = search->hazard->output->count;
+    double smallest_m = HUGE_VAL, last_step_m = farthest_step_m(search->spot, count, HUGE_VAL);
+    for (size_t i = 0; i < count; i++)
+        smallest_m = fmin(smallest_m, search->spot->diameter_m[i]);
+    double far_m = fmax(1e-3, 2. * last_step_m), near_m = last_step_m;
+    if (ratio_at(search, near_m) <= 1.)
+        return inward(search, near_m, smallest_m / 2.);
+    while (search->status == BW_OK && !(ratio_at(search, far_m) <= 1.)) {
+        near_m = far_m;
+        far_m *= 2.;
+    }
+    return close_in(search, near_m, far_m);
+}
+
+/* Farthest place from which the spot may not be looked at for the exposure time.
+ * Given:    hazard, spot
+ * Returned: reach    0 if there is none; never unbounded; working  may be NULL
+ * Returns:  BW_OK; BW_ARGUMENT; BW_OUT_OF_RANGE
+ * Notes:    The ratio is not monotone: where the subtense falls through 100 mrad a train correction may set in. All
+ *           such steps are visited; inward the search goes in strides of 6 per cent. */
+enum bw_status bw_hazard_diffuse_reach(const struct bw_hazard *hazard, const struct bw_spot *spot,
+                                       struct bw_reach *reach, struct bw_working *working, struct bw_error *error) {
+    *reach = (struct bw_reach){nan(""), false};
+    struct search search = {hazard, spot, error, check(hazard, spot, error)};
+    if (search.status != BW_OK)
+        return search.status;
+    double distance_m = spot->reflectance > 0. ? solve(&search) : 0.;
+    if (search.status != BW_OK)
+        return search.status;
+    reach->distance_m = distance_m;
+    if (working != NULL) {
+        struct bw_ratio ratio;
+        bw_working_heading(working, "Diffuse reflection");
+        search.status = ratio_with_working(hazard, spot, distance_m, &ratio, working, error);
+        bw_working_step(working, "r", distance_m, "m", NULL, "farthest place with a ratio above 1", NULL);
+    }
+    return search.status;
+}

@@ -1,0 +1,149 @@
+/* Hazard ratio at a place: the exposure there over the limit, summed over what adds. */
+#include "internal.h"
+
+#include <math.h>
+
+/* ratio = P g / E_limit, g the mean irradiance per watt over the aperture */
+static double term_ratio(const struct bw_hazard *hazard, const struct bw_term *term, double distance_m) {
+    const struct bw_emission *emission = &hazard->output->emissions[term->emission];
+    return emission->average_power_w *
+           bw_beam_irradiance_per_w(&hazard->output->beams[term->emission], distance_m, term->limit.aperture_m) /
+           term->limit.irradiance_w_m2;
+}
+
+/* Given: hazard, distance_m.  Returned: term_ratios, of each term alone on the axis; NAN for a bad distance. */
+void bw_hazard_term_ratios(const struct bw_hazard *hazard, double distance_m, double term_ratios[BW_TERMS_MAX]) {
+    for (size_t i = 0; i < hazard->term_count; i++)
+        term_ratios[i] = term_ratio(hazard, &hazard->terms[i], distance_m);
+}
+
+/* What adds to term i, of one emission or of all. */
+static double sum_with(const struct bw_hazard *hazard, const double ratios[BW_TERMS_MAX], size_t i, size_t only) {
+    double sum = 0.;
+    for (size_t j = 0; j < hazard->term_count; j++)
+        if (hazard->adds[i][j] && (only == BW_EMISSIONS_MAX || hazard->terms[j].emission == only))
+            sum += ratios[j];
+    return sum;
+}
+
+/* That two exposures add is not transitive, so each term in turn is taken
+ * with all that add to it. */
+double bw_hazard_largest_sum(const struct bw_hazard *hazard, const double ratios[BW_TERMS_MAX], size_t only) {
+    double largest = 0.;
+    if (hazard->term_count == 0)
+        return nan(""); /* nothing was prepared: not "safe" */
+    for (size_t i = 0; i < hazard->term_count; i++) {
+        if (only != BW_EMISSIONS_MAX && hazard->terms[i].emission != only)
+            continue;
+        double sum = sum_with(hazard, ratios, i, only);
+        if (isnan(sum))
+            return sum;
+        largest = fmax(largest, sum);
+    }
+    return largest;
+}
+
+void bw_hazard_combine(const struct bw_hazard *hazard, const double ratios[BW_TERMS_MAX], struct bw_ratio *ratio) {
+    size_t row = 0;
+    double largest = -1.;
+    ratio->total = bw_hazard_largest_sum(hazard, ratios, BW_EMISSIONS_MAX);
+    ratio->governing = 0;
+    for (size_t i = 0; i < BW_EMISSIONS_MAX; i++)
+        ratio->emission[i] = i < hazard->output->count ? bw_hazard_largest_sum(hazard, ratios, i) : 0.;
+    for (size_t i = 0; i < hazard->term_count; i++) {
+        double sum = sum_with(hazard, ratios, i, BW_EMISSIONS_MAX);
+        if (sum > largest) {
+            largest = sum;
+            row = i;
+        }
+    }
+    largest = -1.;
+    for (size_t j = 0; j < hazard->term_count; j++)
+        if (hazard->adds[row][j] && ratios[j] > largest) {
+            largest = ratios[j];
+            ratio->governing = j;
+        }
+}
+
+/* Given: hazard, distance_m from the exit along the axis.
+ * Returns: the largest sum over terms that add; 1 or below keeps the limit; NAN for a bad distance */
+double bw_hazard_ratio(const struct bw_hazard *hazard, double distance_m) {
+    double ratios[BW_TERMS_MAX];
+    bw_hazard_term_ratios(hazard, distance_m, ratios);
+    return bw_hazard_largest_sum(hazard, ratios, BW_EMISSIONS_MAX);
+}
+
+/* The same with each emission alone and the governing term. */
+void bw_hazard_ratio_detail(const struct bw_hazard *hazard, double distance_m, struct bw_ratio *ratio) {
+    double ratios[BW_TERMS_MAX];
+    bw_hazard_term_ratios(hazard, distance_m, ratios);
+    bw_hazard_combine(hazard, ratios, ratio);
+}
+
+/* Given: hazard, distance_m along the axis, offset_m from it.
+ * Returns: upper bound of the ratio there, never rising with the offset; NAN for a bad place */
+double bw_hazard_ratio_off_axis(const struct bw_hazard *hazard, double distance_m, double offset_m) {
+    double ratios[BW_TERMS_MAX];
+    for (size_t i = 0; i < hazard->term_count; i++) {
+        const struct bw_term *term = &hazard->terms[i];
+        ratios[i] = hazard->output->emissions[term->emission].average_power_w *
+                    bw_beam_irradiance_off_axis_per_w(&hazard->output->beams[term->emission], distance_m,
+                                                      term->limit.aperture_m, offset_m) /
+                    term->limit.irradiance_w_m2;
+    }
+    return bw_hazard_largest_sum(hazard, ratios, BW_EMISSIONS_MAX);
+}
+
+/* A beam is narrowest at its waist and nowhere else, so a term is largest where it comes nearest to the waist. */
+void bw_hazard_bounds(const struct bw_hazard *hazard, double near_m, double far_m, double ratios[BW_TERMS_MAX]) {
+    for (size_t i = 0; i < hazard->term_count; i++) {
+        double waist_m = hazard->output->beams[hazard->terms[i].emission].waist_m;
+        ratios[i] = term_ratio(hazard, &hazard->terms[i], fmin(fmax(waist_m, near_m), far_m));
+    }
+}
+
+double bw_hazard_last_waist_m(const struct bw_hazard *hazard, size_t only) {
+    double last_m = 0.;
+    for (size_t i = 0; i < hazard->output->count; i++)
+        if (only == BW_EMISSIONS_MAX || only == i)
+            last_m = fmax(last_m, hazard->output->beams[i].waist_m);
+    return last_m;
+}
+
+/* Raises *best to the largest ratio on a stretch, to 1e-9 and never below it: a part whose bound is no larger is
+ * passed over; one too short to matter counts with its bound. */
+static void raise_to_largest(const struct bw_hazard *hazard, double near_m, double far_m, int depth, long *stretches,
+                             double *best) {
+    double ratios[BW_TERMS_MAX];
+    bw_hazard_bounds(hazard, near_m, far_m, ratios);
+    double bound = bw_hazard_largest_sum(hazard, ratios, BW_EMISSIONS_MAX);
+    if (bound <= *best * (1. + 1e-9)) {
+        *best = fmax(*best, bound);
+        return;
+    }
+    if (depth == 0 || isnan(bound) || --*stretches <= 0) {
+        *best = isnan(bound) ? bound : fmax(*best, bound);
+        return;
+    }
+    double middle_m = near_m + (far_m - near_m) / 2.;
+    *best = fmax(*best, bw_hazard_ratio(hazard, middle_m));
+    raise_to_largest(hazard, middle_m, far_m, depth - 1, stretches, best);
+    raise_to_largest(hazard, near_m, middle_m, depth - 1, stretches, best);
+}
+
+/* Given: hazard, distance_m.
+ * Returns: the largest ratio at this distance or any farther one; NAN for a bad distance
+ * Notes:   Beyond the last waist every term falls. Before it, the bounds of bw_hazard_bounds close in. */
+double bw_hazard_ratio_envelope(const struct bw_hazard *hazard, double distance_m) {
+    double here = bw_hazard_ratio(hazard, distance_m);
+    double last_m = bw_hazard_last_waist_m(hazard, BW_EMISSIONS_MAX);
+    if (!(distance_m < last_m) || isnan(here))
+        return here;
+    double best = here;
+    long stretches = 100000;
+    for (size_t i = 0; i < hazard->output->count; i++)
+        if (hazard->output->beams[i].waist_m > distance_m)
+            best = fmax(best, bw_hazard_ratio(hazard, hazard->output->beams[i].waist_m));
+    raise_to_largest(hazard, distance_m, last_m, 40, &stretches, &best);
+    return best;
+}

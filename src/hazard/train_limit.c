@@ -1,0 +1,250 @@
+/* The limit of one emission, pulses and all: each rule for each effect, and the lowest. */
+#include "internal.h"
+
+#include <math.h>
+#include <string.h>
+
+static const double tie = 1e-9; /* rules this close are equal; the average then governs, then the single pulse */
+
+const char *bw_train_rule_name(enum bw_train_rule rule) {
+    static const char *const names[BW_RULES] = {"single", "average", "train"};
+    return (unsigned)rule < BW_RULES ? names[rule] : NULL;
+}
+
+/* Offers one window to a rule: limit / what it holds, times the correction. The strictest stays. */
+static void offer(const struct train_case *train, struct tally *tally, enum bw_train_rule rule,
+                  const struct bw_limit *limit, const struct window *window, double correction) {
+    struct finding *finding = &tally->rules[rule];
+    double per_unit = correction * bw_hazard_whole_limit_j_m2(limit, train->viewing->subtense_rad) / window->holds;
+    double narrow = per_unit * limit->aperture_m * limit->aperture_m;
+    if (!(tally->least_j <= narrow))
+        tally->least_j = narrow;
+    if (finding->found && finding->per_unit_j_m2 <= per_unit)
+        return;
+    *finding = (struct finding){true, per_unit, *window, *limit};
+}
+
+/* Every effect's limit at the length of a window. */
+static enum bw_status limits_at(const struct train_case *train, double time_s, struct bw_limit_set *set,
+                                struct bw_error *error) {
+    struct bw_exposure exposure = bw_hazard_exposure(train, time_s);
+    return bw_limits(train->table, train->viewing->target, &exposure, set, NULL, error);
+}
+
+static enum bw_status offer_window(const struct train_case *train, struct tally tallies[BW_EFFECTS],
+                                   enum bw_train_rule rule, const struct window *window, struct bw_error *error) {
+    struct bw_limit_set set;
+    enum bw_status status = limits_at(train, window->time_s, &set, error);
+    for (size_t i = 0; status == BW_OK && i < set.count; i++)
+        offer(train, &tallies[set.limits[i].effect], rule, &set.limits[i], window, 1.);
+    return status;
+}
+
+/* Rule 2: the energy of every window within the limit of its length. */
+static enum bw_status rule_average(const struct train_case *train, struct tally tallies[BW_EFFECTS],
+                                   struct bw_error *error) {
+    struct edges edges;
+    struct windows windows;
+    enum bw_status status = bw_hazard_edges(train, &edges, error);
+    if (status != BW_OK)
+        return status;
+    bw_hazard_windows(train->emission, &edges, train->viewing->exposure_s, &windows);
+    for (size_t i = 0; status == BW_OK && i < windows.count; i++)
+        status = offer_window(train, tallies, BW_RULE_AVERAGE, &windows.at[i], error);
+    return status;
+}
+
+/* One pulse; of a pulse longer than the exposure, what the exposure cuts from it. */
+static struct window one_pulse(const struct train_case *train) {
+    double seen_s = fmin(train->emission->pulse_duration_s, train->viewing->exposure_s);
+    return (struct window){seen_s, seen_s / train->emission->pulse_duration_s};
+}
+
+/* Pulses that count as one because they fall inside Ti (Tmin): the most that any window of Ti holds.
+ * Returns: a window of one pulse if there is no Ti or the pulses are farther apart. */
+static struct window one_group(const struct train_case *train, double *ti_s) {
+    const struct bw_emission *emission = train->emission;
+    if (!bw_limits_grouping_time(train->table, emission->wavelength_nm, ti_s, NULL))
+        *ti_s = 0.;
+    double length_s = fmin(*ti_s, train->viewing->exposure_s);
+    if (!(emission->repetition_rate_hz * length_s >= 1.))
+        return one_pulse(train);
+    return (struct window){length_s, bw_train_window_energy(emission, length_s) / emission->pulse_energy_j};
+}
+
+static bool is_group(const struct train_case *train, const struct window *group) {
+    return group->time_s > one_pulse(train).time_s;
+}
+
+/* N: pulses, or groups of them, in the exposure or in the counting time, whichever is shorter. */
+static double counted(const struct train_case *train, const struct window *group) {
+    struct bw_exposure exposure = bw_hazard_exposure(train, train->viewing->exposure_s);
+    double time_s = fmin(exposure.exposure_s, bw_limits_counting_time(train->table, &exposure));
+    if (!is_group(train, group))
+        return bw_train_pulse_count(train->emission, time_s);
+    double groups = time_s / group->time_s;
+    return fmax(1., ceil(groups - 1e-12 * groups));
+}
+
+static struct bw_train_count train_count(const struct train_case *train, const struct window *group, double ti_s,
+                                         double pulses) {
+    return (struct bw_train_count){
+        .pulse_s = group->time_s,
+        .ti_s = ti_s,
+        .pulses = pulses,
+        .exposure_s = train->viewing->exposure_s,
+        .subtense_rad = train->viewing->subtense_rad,
+    };
+}
+
+/* Rule 3 for one effect at one length: a pulse, or a group, within the limit of that length times the correction. */
+static enum bw_status offer_train(const struct train_case *train, struct tally tallies[BW_EFFECTS],
+                                  const struct window *window, double correction, struct bw_error *error) {
+    struct bw_limit_set set;
+    enum bw_status status = limits_at(train, window->time_s, &set, error);
+    for (size_t i = 0; status == BW_OK && i < set.count; i++)
+        if (bw_limits_train_applies(train->table, set.limits[i].effect, train->emission->wavelength_nm))
+            offer(train, &tallies[set.limits[i].effect], BW_RULE_TRAIN, &set.limits[i], window, correction);
+    return status;
+}
+
+static bool applies_at_all(const struct train_case *train) {
+    for (int effect = 0; effect < BW_EFFECTS; effect++)
+        if (bw_limits_train_applies(train->table, (enum bw_effect)effect, train->emission->wavelength_nm) &&
+            (effect == BW_SKIN_EFFECT) == (train->viewing->target == BW_SKIN))
+            return true;
+    return false;
+}
+
+/* Rule 3. Pulses inside Ti count as one pulse of the length Ti with all their energy; the correction goes by the
+ * number of groups. Two readings of a group are kept, and the stricter holds: the group against the limit of Ti, and
+ * each pulse in it against the limit of its own duration, both corrected. */
+static enum bw_status rule_train(const struct train_case *train, struct tally tallies[BW_EFFECTS],
+                                 struct bw_working *working, struct bw_error *error) {
+    double ti_s;
+    if (!applies_at_all(train))
+        return BW_OK;
+    struct window pulse = one_pulse(train), group = one_group(train, &ti_s);
+    if (!(train->emission->pulse_duration_s <= bw_limits_train_longest_pulse(train->table) * (1. + 1e-12)))
+        return BW_OK;
+    double pulses = counted(train, &group);
+    struct bw_train_count count = train_count(train, &group, ti_s, pulses);
+    double correction = bw_limits_train_correction(train->table, &count, NULL, working);
+    if (!(correction > 0. && correction <= 1.))
+        return bw_error_set(error, BW_OUT_OF_RANGE, "no row of %s corrects a train of %g pulses of %g s",
+                            bw_table_id(train->table), pulses, group.time_s);
+    enum bw_status status = offer_train(train, tallies, &pulse, correction, error);
+    if (status == BW_OK && is_group(train, &group))
+        status = offer_train(train, tallies, &group, correction, error);
+    for (size_t i = 0; i < BW_EFFECTS; i++)
+        if (tallies[i].rules[BW_RULE_TRAIN].found) {
+            tallies[i].pulses = pulses;
+            tallies[i].group_pulses = is_group(train, &group) ? group.holds : 1.;
+            tallies[i].correction = correction;
+        }
+    return status;
+}
+
+static enum bw_train_rule governing_rule(const struct tally *tally) {
+    static const enum bw_train_rule order[BW_RULES] = {BW_RULE_AVERAGE, BW_RULE_SINGLE, BW_RULE_TRAIN};
+    double lowest = HUGE_VAL;
+    for (size_t i = 0; i < BW_RULES; i++)
+        if (tally->rules[i].found)
+            lowest = fmin(lowest, tally->rules[i].per_unit_j_m2);
+    for (size_t i = 0; i < BW_RULES; i++)
+        if (tally->rules[order[i]].found && tally->rules[order[i]].per_unit_j_m2 <= lowest * (1. + tie))
+            return order[i];
+    return BW_RULE_AVERAGE;
+}
+
+/* The aperture to average over, so that one ratio stands for all windows. Windows may have different apertures
+ * (1 mm up to 0.3 s, 3.5 mm from 10 s), and which one binds depends on the width of the beam. With the lowest limit H
+ * of all windows, and the aperture D for which H D^2 is the lowest of all windows, the ratio is exact for beams much
+ * wider and much narrower than the apertures, and never too small in between: the mean over an aperture falls with
+ * its area, the power through it rises. */
+static double common_aperture_m(const struct tally *tally, double lowest, const struct bw_limit *limit) {
+    double own = lowest * limit->aperture_m * limit->aperture_m;
+    if (!(tally->least_j < own * (1. - 1e-12)))
+        return limit->aperture_m;
+    return sqrt(tally->least_j / lowest);
+}
+
+static void conclude(const struct train_case *train, const struct tally *tally, struct bw_train_limit *limit) {
+    const struct bw_emission *emission = train->emission;
+    double unit = emission->continuous ? train->viewing->exposure_s : 1., lowest = HUGE_VAL;
+    limit->rule = governing_rule(tally);
+    limit->limit = tally->rules[limit->rule].limit;
+    for (size_t i = 0; i < BW_RULES; i++) {
+        const struct finding *finding = &tally->rules[i];
+        limit->rules_j_m2[i] = finding->found ? finding->per_unit_j_m2 * unit : nan("");
+        if (finding->found)
+            lowest = fmin(lowest, finding->per_unit_j_m2);
+    }
+    limit->per_pulse_j_m2 = lowest * unit;
+    limit->irradiance_w_m2 = emission->continuous ? lowest : lowest * emission->repetition_rate_hz;
+    limit->aperture_m = common_aperture_m(tally, lowest, &limit->limit);
+    limit->pulses = tally->pulses;
+    limit->group_pulses = tally->group_pulses;
+    limit->correction = tally->correction;
+}
+
+static enum bw_status check(const struct train_case *train, struct bw_error *error) {
+    const struct bw_emission *emission = train->emission;
+    if (!(train->viewing->exposure_s > 0. && train->viewing->exposure_s < HUGE_VAL))
+        return bw_error_set(error, BW_ARGUMENT, "exposure time is %g s; it must be above 0",
+                            train->viewing->exposure_s);
+    if (!(emission->average_power_w > 0. && emission->average_power_w < HUGE_VAL))
+        return bw_error_set(error, BW_ARGUMENT, "average power is %g W; it must be above 0", emission->average_power_w);
+    bool pulses = emission->pulse_duration_s > 0. && emission->pulse_energy_j > 0. && emission->repetition_rate_hz > 0.;
+    if (!emission->continuous && !pulses)
+        return bw_error_set(error, BW_ARGUMENT, "the pulses are incomplete: %g J, %g s, %g Hz",
+                            emission->pulse_energy_j, emission->pulse_duration_s, emission->repetition_rate_hz);
+    return BW_OK;
+}
+
+static enum bw_status tally_rules(const struct train_case *train, struct tally tallies[BW_EFFECTS],
+                                  struct bw_working *working, struct bw_error *error) {
+    for (size_t i = 0; i < BW_EFFECTS; i++)
+        tallies[i] = (struct tally){.least_j = HUGE_VAL, .group_pulses = 1., .correction = 1.};
+    enum bw_status status = check(train, error);
+    if (status == BW_OK && !train->emission->continuous) {
+        struct window pulse = one_pulse(train);
+        status = offer_window(train, tallies, BW_RULE_SINGLE, &pulse, error);
+        if (status == BW_OK)
+            status = rule_train(train, tallies, working, error);
+    }
+    return status == BW_OK ? rule_average(train, tallies, error) : status;
+}
+
+/* Limits of one emission by every effect and rule.
+ * Given:    table, emission; viewing  target, exposure time, subtense of the source, area of skin
+ * Returned: limits   one an effect that has a row; none on error (Notes)
+ *           working  may be NULL
+ * Returns:  BW_OK; BW_ARGUMENT; BW_OUT_OF_RANGE if no row covers the wavelength or a time that matters
+ * Notes:    1) rule 1, single: a pulse against the limit of its duration.
+ *           2) rule 2, average: the worst window of every length up to the exposure; see windows.c.
+ *           3) rule 3, train: only for effects, wavelengths and durations that the rule set names; see rule_train.
+ *           4) Of a source wider than the cone in which a limit is measured, the limits are those of the whole
+ *              exposure: the cone is in them already.
+ * Source:   design.md, "Pulse trains"; the clauses are in the rule sets.   Tests: test_hazard_train.c */
+enum bw_status bw_hazard_train_limits(const struct bw_table *table, const struct bw_emission *emission,
+                                      const struct bw_viewing_case *viewing, struct bw_train_limit_set *limits,
+                                      struct bw_working *working, struct bw_error *error) {
+    struct train_case train = {table, emission, viewing};
+    struct tally tallies[BW_EFFECTS];
+    limits->count = limits->governing = 0;
+    enum bw_status status = tally_rules(&train, tallies, working, error);
+    if (status != BW_OK)
+        return status;
+    for (size_t i = 0; i < BW_EFFECTS; i++) {
+        const struct finding *rules = tallies[i].rules;
+        if (rules[BW_RULE_SINGLE].found || rules[BW_RULE_AVERAGE].found || rules[BW_RULE_TRAIN].found)
+            conclude(&train, &tallies[i], &limits->limits[limits->count++]);
+    }
+    for (size_t i = 1; i < limits->count; i++)
+        if (!(limits->limits[limits->governing].per_pulse_j_m2 <= limits->limits[i].per_pulse_j_m2))
+            limits->governing = i;
+    if (working != NULL)
+        bw_hazard_train_working(&train, tallies, limits, working);
+    return BW_OK;
+}
