@@ -13,7 +13,8 @@ extern "C" {
 /* One emission of a handpiece, in the direct beam. */
 struct bw_emission_result {
     struct bw_train_limit limit; /* eye, the effect that governs this emission at the exit */
-    double ratio_at_exit;        /* alone */
+    struct bw_train_limit skin_limit;
+    double ratio_at_exit;        /* alone; at the waist in front of the exit where that is worse */
     struct bw_reach nohd;        /* alone */
     double optical_density;      /* needed at the exit, sharing the allowance */
 };
@@ -21,13 +22,17 @@ struct bw_emission_result {
 struct bw_distance_result { /* one handpiece */
     size_t laser, handpiece;
     struct bw_exposure_time glance, skin_time, diffuse_time;
-    bool exposure_given; /* by the case file, for all three */
+    bool exposure_given; /* by the case file, for all three; their source is then empty */
+    struct bw_exposure_time customary; /* glance by the rule set, whatever the case gives */
     struct bw_reach nohd, skin, diffuse;
-    double ratio_at_exit;       /* eye */
+    double ratio_at_exit;       /* eye, worst at the exit or beyond (a focused beam is worst at its waist) */
     double skin_ratio_at_exit;
+    double worst_m;             /* where the governing emission is worst: 0 = the exit, else the waist */
     struct bw_spot diffuse_spot; /* what the diffuse distance assumes: reflectance 1, the smallest spot */
     size_t governing_emission;
     struct bw_train_limit governing;
+    size_t skin_governing_emission;
+    struct bw_train_limit skin_governing;
     struct bw_emission_result emissions[BW_EMISSIONS_MAX];
     struct bw_hazard *direct, *diffuse_view, *skin_view; /* prepared */
     bool has_permitted; /* asked for with options.at_m */
@@ -58,6 +63,7 @@ struct bw_room_result {
     size_t room;
     size_t source_count;
     size_t *sources; /* indices into distances */
+    bool solved;     /* false without BW_PART_ROOM: persons only, no map, no openings */
     struct bw_room_solution solution;
     struct bw_person_result *persons;
 };
@@ -94,6 +100,13 @@ struct bw_assess_options {
 enum bw_status bw_assess(const struct bw_case *the_case, const struct bw_table *table,
                          const struct bw_assess_options *options, struct bw_result **result, struct bw_error *error);
 void bw_result_free(struct bw_result *result);
+
+/* Words that findings and reports share, rounded to the safe side. */
+enum { BW_WORDS_SIZE = 120 };
+/* "3.42 m" or, with us, "3.42 m (11.3 ft)"; up. "unbounded". */
+const char *bw_length_words(char out[BW_WORDS_SIZE], double length_m, bool us);
+/* How the worst reaches a place: "the direct beam, 0.4 m from the handpiece". */
+const char *bw_path_words(char out[BW_WORDS_SIZE], const struct bw_place *place, bool us);
 
 #ifdef __cplusplus
 }

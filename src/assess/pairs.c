@@ -1,0 +1,19 @@
+/* Goggles against handpieces at their exits. */
+#include "internal.h"
+
+void assess_pairs(const struct assess_job *job) {
+    struct bw_result *result = job->result;
+    for (size_t i = 0; i < job->the_case->eyewear_count; i++) {
+        for (size_t j = 0; j < result->distance_count; j++) {
+            const struct bw_distance_result *distance = &result->distances[j];
+            double od[BW_EMISSIONS_MAX] = {0};
+            for (size_t k = 0; k < distance->direct->output->count; k++)
+                od[k] = distance->emissions[k].optical_density;
+            struct bw_pair_result *pair = &result->pairs[result->pair_count++];
+            pair->eyewear = i;
+            pair->laser = distance->laser;
+            pair->handpiece = distance->handpiece;
+            bw_eyewear_judge(&job->the_case->eyewear[i], distance->direct->output, od, &pair->verdict);
+        }
+    }
+}
