@@ -118,7 +118,9 @@ $(foreach m,$(MODULES),$(eval $(call module_rule,$(m))))
 
 # The tables: a host program checks them and writes them out as C.
 TABLEC = $(BUILD)/tablec
-$(TABLEC): $(BUILD)/obj/limits/tablec.o $(BUILD)/obj/limits/table_read.o $(BUILD)/obj/limits/material_read.o $(call archive,base)
+TABLEC_PARTS = tablec table_read table_read_rows table_read_rules table_cells table_check table_check_parts \
+               table_check_train table_index material_read formulas names memory table_facts
+$(TABLEC): $(TABLEC_PARTS:%=$(BUILD)/obj/limits/%.o) $(call archive,base)
 	$(CC) $(CFLAGS) $^ -liniparser -lm -o $@
 $(BUILD)/generated/tables_data.c: $(TABLEC) $(RULE_SETS)
 	@mkdir -p $(@D)
