@@ -89,6 +89,10 @@ enum bw_status bw_table_load(const struct bw_ini *ini, struct bw_table **table, 
                              struct bw_error *error);
 void bw_table_free(struct bw_table *table); /* only for tables from bw_table_load; NULL allowed */
 
+/* The rule set as a person reads it beside the printed document: at most 80 columns, values with units and clause,
+ * and which are from memory. Appends to text. Returns: BW_OK; BW_NO_MEMORY. */
+enum bw_status bw_table_print(const struct bw_table *table, struct bw_text *text);
+
 /* Every effect of the target that has a row for the wavelength: the limits, and which one governs.
  * No allocation. Where rows meet, the lowest holds.
  * Returned: limits. Returns: BW_OK; BW_ARGUMENT for NaN or a negative value; BW_OUT_OF_RANGE if no
@@ -169,6 +173,7 @@ struct bw_material {
 size_t bw_materials_count(void);
 const struct bw_material *bw_materials_at(size_t index);
 const struct bw_material *bw_materials_find(const char *name);
+enum bw_status bw_materials_print(struct bw_text *text); /* as bw_table_print */
 
 #ifdef __cplusplus
 }

@@ -78,13 +78,17 @@ const char *bw_limits_number(char out[LIMITS_NUMBER_SIZE], double value)
             break;
     }
     char *mark = strchr(text, 'e');
-    long exponent = mark == NULL ? 0 : strtol(mark + 1, NULL, 10);
-    if (mark == NULL || (exponent >= -3 && exponent < 6)) {
-        int decimals = digits - 1 - (int)exponent;
-        snprintf(out, LIMITS_NUMBER_SIZE, "%.*f", decimals > 0 ? decimals : 0, value);
-    } else {
+    int exponent = mark == NULL ? 0 : (int)strtol(mark + 1, NULL, 10);
+    int decimals = digits - 1 - exponent;
+    snprintf(out, LIMITS_NUMBER_SIZE, "%.*f", decimals > 0 ? decimals : 0, value);
+    /* As the tables are printed: 1e4, 5e-3, 1e-13, but 1000, 0.25 and 400. */
+    bool plain = exponent > -3 && exponent < 4;
+    if (mark != NULL && !plain) {
+        char scientific[LIMITS_NUMBER_SIZE];
         *mark = '\0';
-        snprintf(out, LIMITS_NUMBER_SIZE, "%.24se%d", text, (int)exponent);
+        snprintf(scientific, sizeof scientific, "%.24se%d", text, exponent);
+        if (strlen(scientific) <= strlen(out) || exponent < -6 || exponent > 9)
+            memcpy(out, scientific, sizeof scientific);
     }
     return out;
 }
