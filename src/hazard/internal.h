@@ -21,7 +21,7 @@ struct edges {
 /* Limit as a function of the whole exposure: what is measured within the acceptance cone is put on all of it. */
 double bw_hazard_whole_limit_j_m2(const struct bw_limit *limit, double subtense_rad);
 struct bw_exposure bw_hazard_exposure(const struct train_case *train, double time_s);
-/* All edges up to the exposure. Returns: BW_OK; BW_OUT_OF_RANGE if there are more than fit. */
+/* All edges, those beyond the exposure too. Returns: BW_OK; BW_OUT_OF_RANGE if there are more than fit. */
 enum bw_status bw_hazard_edges(const struct train_case *train, struct edges *edges, struct bw_error *error);
 
 /* ---- windows.c: where the worst window of a train can lie -------------------------------------- */

@@ -35,17 +35,25 @@ static enum bw_status offer_window(const struct train_case *train, struct tally 
                                    enum bw_train_rule rule, const struct window *window, struct bw_error *error) {
     struct bw_limit_set set;
     enum bw_status status = limits_at(train, window->time_s, &set, error);
-    for (size_t i = 0; status == BW_OK && i < set.count; i++)
-        offer(train, &tallies[set.limits[i].effect], rule, &set.limits[i], window, 1.);
+    for (size_t i = 0; status == BW_OK && i < set.count; i++) {
+        struct tally *tally = &tallies[set.limits[i].effect];
+        const struct finding *single = &tally->rules[BW_RULE_SINGLE];
+        double limit_j_m2 = bw_hazard_whole_limit_j_m2(&set.limits[i], train->viewing->subtense_rad);
+        /* An exposure that holds one pulse is under rule 1: no lower, where the printed rows step down. */
+        if (rule == BW_RULE_AVERAGE && window->holds <= 1. && single->found && limit_j_m2 < single->per_unit_j_m2)
+            tally->rules[rule] = *single;
+        else
+            offer(train, tally, rule, &set.limits[i], window, 1.);
+    }
     return status;
 }
 
-/* Rule 2: the energy of every window within the limit of its length. */
+/* Rule 2: the energy of every window within the limit of its length; of a continuous emission, of the exposure. */
 static enum bw_status rule_average(const struct train_case *train, struct tally tallies[BW_EFFECTS],
                                    struct bw_error *error) {
-    struct edges edges;
+    struct edges edges = {.count = 0};
     struct windows windows;
-    enum bw_status status = bw_hazard_edges(train, &edges, error);
+    enum bw_status status = train->emission->continuous ? BW_OK : bw_hazard_edges(train, &edges, error);
     if (status != BW_OK)
         return status;
     bw_hazard_windows(train->emission, &edges, train->viewing->exposure_s, &windows);
@@ -222,11 +230,11 @@ static enum bw_status tally_rules(const struct train_case *train, struct tally t
  *           working  may be NULL
  * Returns:  BW_OK; BW_ARGUMENT; BW_OUT_OF_RANGE if no row covers the wavelength or a time that matters
  * Notes:    1) rule 1, single: a pulse against the limit of its duration.
- *           2) rule 2, average: the worst window of every length up to the exposure; see windows.c.
- *           3) rule 3, train: only for effects, wavelengths and durations that the rule set names; see rule_train.
- *           4) Of a source wider than the cone in which a limit is measured, the limits are those of the whole
- *              exposure: the cone is in them already.
- * Source:   design.md, "Pulse trains"; the clauses are in the rule sets.   Tests: test_hazard_train.c */
+ *           2) rule 2, average: the worst window of every length up to the exposure; see windows.c. Continuous: the
+ * exposure. 3) rule 3, train: only for effects, wavelengths and durations that the rule set names; see rule_train. 4)
+ * Of a source wider than the cone in which a limit is measured, the limits are those of the whole exposure: the cone is
+ * in them already. Source:   design.md, "Pulse trains"; the clauses are in the rule sets.   Tests: test_hazard_train.c
+ */
 enum bw_status bw_hazard_train_limits(const struct bw_table *table, const struct bw_emission *emission,
                                       const struct bw_viewing_case *viewing, struct bw_train_limit_set *limits,
                                       struct bw_working *working, struct bw_error *error) {

@@ -28,8 +28,8 @@ static void write_rule(const struct train_case *train, const struct tally *tally
     double limit_j_m2 = bw_hazard_whole_limit_j_m2(&finding->limit, train->viewing->subtense_rad);
     const char *source = finding->limit.source.clause;
     if (train->emission->continuous)
-        bw_working_step(working, symbols[rule], value, "J/m2", source, "t_e H(t) / t, lowest over all t up to t_e",
-                        "%.9g s x %.6g J/m2 / %.9g s", train->viewing->exposure_s, limit_j_m2, window->time_s);
+        bw_working_step(working, symbols[rule], value, "J/m2", source, "H(t), t the exposure", "%.6g J/m2, t = %.9g s",
+                        limit_j_m2, window->time_s);
     else if (rule == BW_RULE_TRAIN)
         bw_working_step(working, symbols[rule], value, "J/m2", source, "C H(t) / n, each pulse corrected by the train",
                         "%.6g x %.6g J/m2 / %.9g, t = %.6g s, N = %.9g", tally->correction, limit_j_m2, window->holds,
