@@ -36,6 +36,7 @@ struct bw_distance_result { /* one handpiece */
     struct bw_emission_result emissions[BW_EMISSIONS_MAX];
     struct bw_hazard *direct, *diffuse_view, *skin_view; /* prepared */
     bool has_permitted; /* asked for with options.at_m */
+    double at_m;
     struct bw_permitted_time permitted_eye, permitted_skin;
     double ratio_at_m;
     struct bw_working working; /* empty unless options.working */

@@ -80,8 +80,8 @@ static void worst_terms(const struct bw_hazard *hazard, double worst[BW_TERMS_MA
     }
 }
 
-/* The emission's own worst term. Returns: its ratio; the limit goes to *limit. */
-static double worst_of_emission(const struct bw_hazard *hazard, const double terms[BW_TERMS_MAX], size_t emission,
+/* The limit of the emission's own worst term. */
+static void worst_of_emission(const struct bw_hazard *hazard, const double terms[BW_TERMS_MAX], size_t emission,
                                 struct bw_train_limit *limit) {
     double worst = -1.;
     for (size_t t = 0; t < hazard->term_count; t++) {
@@ -90,7 +90,13 @@ static double worst_of_emission(const struct bw_hazard *hazard, const double ter
         worst = terms[t];
         *limit = hazard->terms[t].limit;
     }
-    return worst;
+}
+
+/* Ratio of one emission alone where it is worst: it has but one waist, so there or, without one, at the exit. */
+static double alone(const struct bw_hazard *hazard, size_t emission) {
+    struct bw_ratio ratio;
+    bw_hazard_ratio_detail(hazard, narrowest_m(&hazard->output->beams[emission]), &ratio);
+    return ratio.emission[emission];
 }
 
 /* The term that governs where the hazard is worst: at the exit, or at the waist of one of the emissions. */
@@ -122,7 +128,8 @@ static enum bw_status emissions(struct bw_distance_result *distance, struct bw_e
     bw_hazard_optical_density(direct, eye, od);
     for (size_t i = 0; i < direct->output->count; i++) {
         struct bw_emission_result *emission = &distance->emissions[i];
-        emission->ratio_at_exit = worst_of_emission(direct, eye, i, &emission->limit);
+        worst_of_emission(direct, eye, i, &emission->limit);
+        emission->ratio_at_exit = alone(direct, i);
         worst_of_emission(distance->skin_view, skin, i, &emission->skin_limit);
         emission->optical_density = od[i];
         enum bw_status status = bw_hazard_reach(direct, i, &emission->nohd, NULL, error);
@@ -183,6 +190,7 @@ static enum bw_status permitted(const struct assess_job *job, struct bw_distance
     struct bw_viewing_case eye = distance->direct->viewing, on_skin = distance->skin_view->viewing;
     bw_working_heading(working, "Longest permitted exposure at %g m", at_m);
     distance->has_permitted = true;
+    distance->at_m = at_m;
     distance->ratio_at_m = bw_hazard_ratio(distance->direct, at_m);
     enum bw_status status =
         bw_hazard_permitted_time(job->table, output, &eye, at_m, &distance->permitted_eye, working, error);

@@ -1,0 +1,100 @@
+/* report - what its files share. Private to the folder. */
+#ifndef BEAMWARD_REPORT_INTERNAL_H
+#define BEAMWARD_REPORT_INTERNAL_H
+
+#include <beamward/report.h>
+
+/* ---- utf8.c: text of other people's making ---------------------------------------------------- */
+
+/* One character. Returns: what follows it; *code is U+FFFD for bytes that are no UTF-8. */
+const char *report_next(const char *at, unsigned long *code);
+void report_encode(struct bw_text *out, unsigned long code);
+int report_columns(unsigned long code); /* on a terminal: 0, 1 or 2 */
+size_t report_width(const char *string);
+/* Copies what can be shown: control and direction-changing characters become blanks. */
+void report_clean(struct bw_text *out, const char *string);
+/* The same, and & < > " ' become entities: for HTML, SVG and their attributes. */
+void report_xml(struct bw_text *out, const char *string);
+
+/* ---- quantities.c: numbers with units, rounded to the safe side -------------------------------- */
+
+enum { REPORT_QUANTITY_SIZE = 120 };
+const char *report_radiant_exposure(char out[REPORT_QUANTITY_SIZE], double value_j_m2, bool us); /* limit: down */
+const char *report_irradiance(char out[REPORT_QUANTITY_SIZE], double value_w_m2, bool us);       /* limit: down */
+const char *report_reach(char out[REPORT_QUANTITY_SIZE], const struct bw_reach *reach, bool us); /* up; "none" for 0 */
+const char *report_ratio(char out[REPORT_QUANTITY_SIZE], double ratio);                          /* up */
+const char *report_density(char out[REPORT_QUANTITY_SIZE], double od); /* needed: up, one decimal */
+const char *report_density_given(char out[REPORT_QUANTITY_SIZE], double od); /* down; "none" */
+const char *report_plain(char out[REPORT_QUANTITY_SIZE], double value); /* an input, or what is no limit: nearest */
+const char *report_area(char out[REPORT_QUANTITY_SIZE], double area_m2, bool us); /* up */
+const char *report_known(enum bw_known known); /* "read", "memory" */
+const char *report_known_words(enum bw_known known); /* "read", "from memory" */
+/* Why this exposure time: "customary glance (clause, from memory)" or "given in the case file". */
+void report_time_reason(struct bw_text *out, const struct bw_distance_result *distance,
+                        const struct bw_exposure_time *time, const char *what);
+/* Emissions of a handpiece and what it is called. */
+const struct bw_laser *report_laser(const struct bw_result *result, size_t laser);
+const struct bw_handpiece *report_handpiece(const struct bw_result *result, size_t laser, size_t handpiece);
+/* The largest density that any emission of the handpiece needs at the exit. */
+double report_largest_density(const struct bw_result *result, const struct bw_distance_result *distance);
+double report_person_density(const struct bw_person_result *person);
+size_t report_count_findings(const struct bw_result *result, enum bw_severity severity);
+/* "Not acceptable as it is: 2 dangers, 1 action." or what can be said if there is none. */
+void report_verdict(struct bw_text *out, const struct bw_result *result);
+const char *report_opening_kind(enum bw_opening_kind kind);
+const char *report_base_name(const char *path);
+
+/* ---- json.c ------------------------------------------------------------------------------------ */
+
+enum { JSON_DEPTH = 16 };
+struct json {
+    struct bw_text *out;
+    int depth;
+    char closers[JSON_DEPTH];
+    bool has_items[JSON_DEPTH];
+};
+/* key is NULL inside arrays. */
+void json_object(struct json *json, const char *key);
+void json_array(struct json *json, const char *key);
+void json_end(struct json *json);
+void json_string(struct json *json, const char *key, const char *value); /* NULL becomes null */
+void json_number(struct json *json, const char *key, double value);      /* not finite becomes null */
+void json_integer(struct json *json, const char *key, long value);
+void json_bool(struct json *json, const char *key, bool value);
+void json_null(struct json *json, const char *key);
+void json_point(struct json *json, const char *key, struct bw_point point);
+/* Members of an object that is open. */
+void report_distance_members(struct json *json, const struct bw_result *result);
+void report_eyewear_members(struct json *json, const struct bw_result *result);
+void report_room_members(struct json *json, const struct bw_result *result, bool timing);
+
+/* ---- text.c: 80 columns ------------------------------------------------------------------------- */
+
+enum { TEXT_COLUMNS = 80, TABLE_COLUMNS_MAX = 10 };
+/* Wraps; the first line begins with `head`, the others with as many blanks. */
+/* One line of a wrapped string. Returned: *rest after it and its blanks. Returns: its length in bytes. */
+size_t text_wrap_line(const char **rest, size_t width);
+void text_wrap(struct bw_text *out, const char *head, const char *string);
+void text_wrapf(struct bw_text *out, const char *head, const char *format, ...) BW_PRINTF(3, 4);
+void text_heading(struct bw_text *out, const char *string); /* underlined, a blank line before it */
+
+struct text_table {
+    size_t columns, count, capacity; /* count: of cells */
+    bool right[TABLE_COLUMNS_MAX];   /* numbers */
+    char **cells;
+    bool failed;
+};
+/* Alignment: one letter a column, l or r. The first row of cells is the head. */
+void table_begin(struct text_table *table, const char *alignment);
+void table_cell(struct text_table *table, const char *format, ...) BW_PRINTF(2, 3);
+void table_print(struct text_table *table, struct bw_text *out, size_t indent); /* and frees it */
+
+/* Sections that several texts share. */
+void text_case_head(struct bw_text *out, const struct bw_result *result);
+void text_distance_table(struct bw_text *out, const struct bw_result *result);
+void text_goggles_matrix(struct bw_text *out, const struct bw_result *result);
+void text_rooms(struct bw_text *out, const struct bw_result *result, bool timing);
+void text_findings(struct bw_text *out, const struct bw_result *result, enum bw_severity from, enum bw_severity to);
+void text_all_working(struct bw_text *out, const struct bw_result *result);
+
+#endif
