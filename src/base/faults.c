@@ -1,7 +1,5 @@
-#include <beamward/base.h>
+#include "internal.h"
 
-#include <stdarg.h>
-#include <stdio.h>
 #include <stdlib.h>
 
 static struct bw_fault *next_item(struct bw_faults *faults) {
@@ -30,13 +28,11 @@ void bw_faults_add(struct bw_faults *faults, int line, const char *section, cons
     struct bw_fault *item = next_item(faults);
     if (!item)
         return;
-    struct bw_error text; /* as long as an error text */
     va_list list;
     va_start(list, format);
-    vsnprintf(text.text, sizeof text.text, format, list);
+    char *text = bw_print_copy(format, list);
     va_end(list);
-    *item = (struct bw_fault){line, bw_duplicate(section ? section : ""), bw_duplicate(key ? key : ""),
-                              bw_duplicate(text.text)};
+    *item = (struct bw_fault){line, bw_duplicate(section ? section : ""), bw_duplicate(key ? key : ""), text};
     if (item->section && item->key && item->text) {
         faults->count++;
     } else {

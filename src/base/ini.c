@@ -42,32 +42,63 @@ void bw_ini_free(struct bw_ini *ini) {
     *ini = (struct bw_ini){0};
 }
 
-/* iniparser 4.1 takes only a file name: hand it the very bytes that the guard saw, from memory. */
-static dictionary *load_bytes(const char *bytes, size_t length) {
-    int file = memfd_create("case", 0);
-    if (file < 0)
-        return NULL;
-    dictionary *read = NULL;
-    size_t written = 0;
-    while (written < length) {
-        ssize_t part = write(file, bytes + written, length - written);
-        if (part <= 0)
-            break;
-        written += (size_t)part;
-    }
-    if (written == length) {
-        char path[64];
-        snprintf(path, sizeof path, "/proc/self/fd/%d", file);
-        read = iniparser_load(path);
-    }
-    close(file);
-    return read;
+/* iniparser prints to stderr unless it is given something else to call. It keeps the pointer for the whole process;
+ * as nothing else here uses it and all set the same, that is no state that could differ. */
+static int print_nothing(const char *format, ...) {
+    (void)format;
+    return 0;
 }
 
-/* Takes each value from iniparser; a value that it reads otherwise than the guard is not to be trusted. */
-static void take_values(const dictionary *read, struct bw_ini *ini, struct bw_faults *faults) {
+static bool write_all(int file, const char *bytes, size_t length) {
+    while (length > 0) {
+        ssize_t part = write(file, bytes, length);
+        if (part < 0 && errno == EINTR)
+            continue;
+        if (part <= 0)
+            return false;
+        bytes += part;
+        length -= (size_t)part;
+    }
+    return true;
+}
+
+/* iniparser 4.1 takes only a file name: hand it the very bytes that the guard saw, in a file without a name. */
+static enum bw_status load_bytes(const char *bytes, size_t length, dictionary **read, struct bw_error *error) {
+    char path[64];
+    FILE *fallback = NULL; /* for kernels without memfd_create */
+    int file = memfd_create("ini", MFD_CLOEXEC);
+    if (file < 0 && (fallback = tmpfile()) != NULL)
+        file = fileno(fallback);
+    enum bw_status status = BW_OK;
+    if (file < 0 || !write_all(file, bytes, length)) {
+        status = bw_error_set(error, BW_SYSTEM, "no room for a copy in memory: %s", strerror(errno));
+    } else {
+        snprintf(path, sizeof path, "/proc/self/fd/%d", file);
+        iniparser_set_error_callback(print_nothing);
+        *read = iniparser_load(path);
+        if (!*read)
+            status = bw_error_set(error, BW_SYSTEM, "iniparser gives up: memory is short, or /proc is missing");
+    }
+    if (fallback)
+        fclose(fallback);
+    else if (file >= 0)
+        close(file);
+    return status;
+}
+
+/* Quoted values keep their outer blanks in iniparser; they are none of the value here. */
+static bool same_value(const char *read, const char *value) {
+    size_t length;
+    read += strspn(read, " \t");
+    for (length = strlen(read); length > 0 && (read[length - 1] == ' ' || read[length - 1] == '\t'); length--)
+        ;
+    return length == strlen(value) && memcmp(read, value, length) == 0;
+}
+
+/* A value that iniparser reads otherwise than the guard is not to be trusted, nor one that only it has seen. */
+static void compare_readings(const dictionary *read, const struct bw_ini *ini, struct bw_faults *faults) {
     char name[2 * INI_LINE_MAX + 2];
-    for (size_t i = 0; i < ini->count; i++) {
+    for (size_t i = 0; i < ini->count && !bw_ini_enough_faults(faults, ini->entries[i].line); i++) {
         const struct bw_ini_entry *entry = &ini->entries[i];
         bool agrees;
         if (entry->key[0] == '\0') {
@@ -75,12 +106,26 @@ static void take_values(const dictionary *read, struct bw_ini *ini, struct bw_fa
         } else {
             snprintf(name, sizeof name, "%s:%s", entry->section, entry->key);
             const char *value = iniparser_getstring(read, name, NULL);
-            agrees = value && strcmp(value, entry->value) == 0;
+            agrees = value && same_value(value, entry->value);
         }
         if (!agrees)
             bw_faults_add(faults, entry->line, entry->section, entry->key,
-                          "cannot be read reliably; write it more plainly, without quotes or special characters");
+                          "could not be read reliably; write it more plainly, without quotes or special characters");
     }
+    if (read->n < 0 || (size_t)read->n != ini->count)
+        bw_faults_add(faults, 0, "", "", "could not be read reliably; %d keys and sections where there should be %zu",
+                      read->n, ini->count);
+}
+
+static enum bw_status read_twice(const char *bytes, size_t length, struct bw_ini *ini, struct bw_faults *faults,
+                                 struct bw_error *error) {
+    dictionary *read = NULL;
+    enum bw_status status = load_bytes(bytes, length, &read, error);
+    if (status == BW_OK)
+        compare_readings(read, ini, faults);
+    iniparser_freedict(read);
+    bw_ini_collapse_sections(ini);
+    return status;
 }
 
 enum bw_status bw_ini_read_bytes(const char *bytes, size_t length, struct bw_ini *ini, struct bw_faults *faults,
@@ -90,24 +135,23 @@ enum bw_status bw_ini_read_bytes(const char *bytes, size_t length, struct bw_ini
         length -= 3;
     }
     *ini = (struct bw_ini){0};
-    bw_ini_guard_bytes(bytes, length, faults);
-    enum bw_status status = faults->count == 0 ? bw_ini_guard_lines(bytes, length, ini, faults) : BW_OK;
-    if (status == BW_OK)
-        status = bw_ini_guard_repeats(ini, faults);
-    if (status == BW_OK && faults->count == 0 && ini->count == 0)
-        bw_faults_add(faults, 0, "", "", "empty: no section in it");
-    if (status == BW_OK && faults->count == 0) {
-        dictionary *read = load_bytes(bytes, length);
-        if (read)
-            take_values(read, ini, faults);
-        else
-            status = BW_NO_MEMORY;
-        iniparser_freedict(read);
+    struct bw_text plain = {0};
+    enum bw_status status = BW_OK;
+    if (bw_ini_guard_bytes(bytes, length, &plain, faults) && !plain.failed) {
+        status = bw_ini_guard_lines(plain.data, plain.length, ini, faults);
+        if (status == BW_OK)
+            status = bw_ini_guard_repeats(ini, faults);
+        if (status == BW_OK && faults->count == 0 && ini->count == 0)
+            bw_faults_add(faults, 0, "", "", "empty: no section in it; the first line could be [case]");
     }
-    if (status == BW_NO_MEMORY || faults->out_of_memory)
+    if (status == BW_OK && faults->count == 0 && !faults->out_of_memory && !plain.failed)
+        status = read_twice(bytes, length, ini, faults, error);
+    bw_faults_sort(faults);
+    if (status == BW_NO_MEMORY || plain.failed || faults->out_of_memory)
         status = bw_error_set(error, BW_NO_MEMORY, "out of memory");
-    else if (faults->count > 0)
+    else if (status == BW_OK && faults->count > 0)
         status = bw_error_set(error, BW_INPUT, "%s", faults->items[0].text);
+    bw_text_free(&plain);
     if (status != BW_OK)
         bw_ini_free(ini);
     return status;
@@ -117,8 +161,9 @@ enum bw_status bw_ini_read_bytes(const char *bytes, size_t length, struct bw_ini
 static enum bw_status read_file(const char *path, struct bw_text *bytes, struct bw_error *error) {
     FILE *file = fopen(path, "rb");
     struct stat status;
-    if (!file)
-        return bw_error_set(error, errno == ENOENT ? BW_INPUT : BW_SYSTEM, "%s", strerror(errno));
+    if (!file) /* a name that leads nowhere was mistyped; the rest lies with the system */
+        return bw_error_set(error, errno == ENOENT || errno == ENOTDIR ? BW_INPUT : BW_SYSTEM, "cannot be opened: %s",
+                            strerror(errno));
     if (fstat(fileno(file), &status) == 0 && S_ISDIR(status.st_mode)) {
         fclose(file);
         return bw_error_set(error, BW_INPUT, "is a folder; name a file");

@@ -1,69 +1,19 @@
 /* The guard in front of iniparser 4.1. That library silently lets the last of two equal keys or sections win; joins
  * a line that ends in `\` with the next, comments included; cuts a value at `;` or `#`; drops text after a closing
- * quote; takes `[a] ; x = 1` for a key; misses a section with `:` in its name; refuses lines of 1023 bytes; skips
- * lines after a NUL; stumbles on a byte order mark and on CR-only line ends. All of these are faults here. */
+ * quote; takes `[a] ; x = 1` for a key, and without the `=` refuses the whole file; misses a section with `:` in its
+ * name; refuses lines of 1023 bytes; skips lines after a NUL; stumbles on a byte order mark and on CR-only line ends;
+ * opens a folder as an empty file; keeps no line numbers. All of these are faults here or in ini_bytes.c and ini.c. */
 #include "internal.h"
 
 #include <stdlib.h>
 #include <string.h>
 
-/* ---- bytes ---------------------------------------------------------------------------------- */
+enum { SHOWN_MAX = 40 }; /* bytes of the file in a message */
 
-/* Length of the UTF-8 sequence that starts here, 0 if it is not one (RFC 3629). */
-static size_t utf8_length(const unsigned char *at, size_t left) {
-    static const struct {
-        unsigned char first, last, low, high;
-        size_t length;
-    } forms[] = {{0x00, 0x7f, 0x80, 0xbf, 1}, {0xc2, 0xdf, 0x80, 0xbf, 2}, {0xe0, 0xe0, 0xa0, 0xbf, 3},
-                 {0xe1, 0xec, 0x80, 0xbf, 3}, {0xed, 0xed, 0x80, 0x9f, 3}, {0xee, 0xef, 0x80, 0xbf, 3},
-                 {0xf0, 0xf0, 0x90, 0xbf, 4}, {0xf1, 0xf3, 0x80, 0xbf, 4}, {0xf4, 0xf4, 0x80, 0x8f, 4}};
-    for (size_t i = 0; i < sizeof forms / sizeof forms[0]; i++) {
-        if (at[0] < forms[i].first || at[0] > forms[i].last || left < forms[i].length)
-            continue;
-        if (forms[i].length > 1 && (at[1] < forms[i].low || at[1] > forms[i].high))
-            return 0;
-        for (size_t j = 2; j < forms[i].length; j++)
-            if (at[j] < 0x80 || at[j] > 0xbf)
-                return 0;
-        return forms[i].length;
-    }
-    return 0;
-}
-
-/* Only the first of each kind is worth a message. */
-static void guard_characters(const unsigned char *bytes, size_t length, struct bw_faults *faults) {
-    int line = 1;
-    bool told_encoding = false, told_control = false, told_return = false;
-    for (size_t i = 0; i < length;) {
-        size_t step = utf8_length(bytes + i, length - i);
-        bool control = bytes[i] < 0x20 && bytes[i] != '\n' && bytes[i] != '\t' && bytes[i] != '\r';
-        bool lone_return = bytes[i] == '\r' && (i + 1 == length || bytes[i + 1] != '\n');
-        if (step == 0 && !told_encoding) {
-            bw_faults_add(faults, line, "", "", "not UTF-8 text; save the file as UTF-8");
-            told_encoding = true;
-        }
-        if ((control || bytes[i] == 0x7f) && !told_control) {
-            bw_faults_add(faults, line, "", "", "control character 0x%02x; plain text would be right", bytes[i]);
-            told_control = true;
-        }
-        if (lone_return && !told_return) {
-            bw_faults_add(faults, line, "", "", "carriage return without a line feed; save with LF or CR LF line ends");
-            told_return = true;
-        }
-        if (bytes[i] == '\n')
-            line++;
-        i += step > 0 ? step : 1;
-    }
-}
-
-void bw_ini_guard_bytes(const char *bytes, size_t length, struct bw_faults *faults) {
-    const unsigned char *raw = (const unsigned char *)bytes;
-    if (length > INI_BYTES_MAX)
-        bw_faults_add(faults, 0, "", "", "larger than 4 MiB; a file of this kind has a few kilobytes");
-    else if (length >= 2 && ((raw[0] == 0xff && raw[1] == 0xfe) || (raw[0] == 0xfe && raw[1] == 0xff)))
-        bw_faults_add(faults, 1, "", "", "UTF-16 text; save the file as UTF-8");
-    else
-        guard_characters(raw, length, faults);
+bool bw_ini_enough_faults(struct bw_faults *faults, int line) {
+    if (faults->count == INI_FAULTS_MAX)
+        bw_faults_add(faults, line, "", "", "too many faults; what follows is not listed");
+    return faults->count >= INI_FAULTS_MAX;
 }
 
 /* ---- lines ---------------------------------------------------------------------------------- */
@@ -77,8 +27,8 @@ struct line {
 struct scan {
     struct bw_ini *ini;
     struct bw_faults *faults;
-    char section[INI_LINE_MAX + 1];
-    bool has_section, told_keys;
+    char section[INI_LINE_MAX + 1]; /* for messages also if it was refused */
+    bool any_section, has_section, full;
     enum bw_status status;
 };
 
@@ -103,64 +53,67 @@ static char lower(char c) {
     return c >= 'A' && c <= 'Z' ? (char)(c - 'A' + 'a') : c;
 }
 
-/* Copies a name in lower case. Returns: the first character that a name may not hold, or NUL. */
-static char copy_name(char *out, const char *text, size_t length, bool blanks) {
-    size_t i = 0;
-    for (; i < length; i++) {
+/* Copies in lower case. Returns: where the first character stands that a name may not hold; length if none. */
+static size_t copy_name(char *out, const char *text, size_t length, bool blanks) {
+    size_t wrong = length;
+    for (size_t i = 0; i < length; i++) {
         out[i] = lower(text[i]);
         bool letter = (out[i] >= 'a' && out[i] <= 'z') || (out[i] >= '0' && out[i] <= '9');
-        if (!letter && !strchr("-_.", out[i]) && !(blanks && text[i] == ' '))
-            return text[i];
+        bool mark = out[i] == '-' || out[i] == '_' || out[i] == '.' || (blanks && out[i] == ' ');
+        if (!letter && !mark && i < wrong)
+            wrong = i;
     }
-    out[i] = '\0';
-    return '\0';
+    out[length] = '\0';
+    return wrong;
+}
+
+static int shown(size_t length, const char *text) {
+    return (int)bw_utf8_cut(text, length, SHOWN_MAX);
 }
 
 static void add_entry(struct scan *scan, const char *key, const char *value, int line) {
     if (scan->ini->count >= INI_KEYS_MAX) {
-        if (!scan->told_keys)
-            bw_faults_add(scan->faults, line, "", "", "more than %d keys; split the file", INI_KEYS_MAX);
-        scan->told_keys = true;
-        return;
-    }
-    if (bw_ini_add(scan->ini, scan->section, key, value, line) != BW_OK)
+        bw_faults_add(scan->faults, line, "", "", "more than %d keys and sections; split the file", INI_KEYS_MAX);
+        scan->full = true;
+    } else if (bw_ini_add(scan->ini, scan->section, key, value, line) != BW_OK) {
         scan->status = BW_NO_MEMORY;
+    }
+}
+
+/* Says what is wrong with a section's name. Returns: true if nothing is. */
+static bool accept_name(struct scan *scan, const char *name, size_t length, size_t wrong, int line) {
+    if (length == 0) {
+        bw_faults_add(scan->faults, line, "", "", "section without a name; `[case]` would be right");
+    } else if (wrong < length && name[wrong] == '\t') {
+        bw_faults_add(scan->faults, line, "", "", "tabulator in a section's name; one blank between its words");
+    } else if (wrong < length) {
+        size_t size = bw_utf8_length(name + wrong, length - wrong);
+        bw_faults_add(scan->faults, line, "", "",
+                      "`%.*s` in a section's name; letters, digits, - and blanks would be right",
+                      (int)(size > 0 ? size : 1), name + wrong);
+    } else {
+        return true;
+    }
+    return false;
 }
 
 static void scan_section(struct scan *scan, struct line line) {
-    const char *close = memchr(line.text, ']', line.length);
-    scan->has_section = false;
-    if (!close) {
-        bw_faults_add(scan->faults, line.number, "", "", "section without its closing ]");
-        return;
-    }
-    const char *name = line.text + 1, *rest = close + 1;
-    size_t length = (size_t)(close - name), left = line.length - (size_t)(rest - line.text);
+    const char *close = memchr(line.text, ']', line.length), *name = line.text + 1;
+    const char *rest = close ? close + 1 : line.text + line.length;
+    size_t length = (size_t)(rest - name) - (close ? 1 : 0), left = line.length - (size_t)(rest - line.text);
     trim(&name, &length);
     trim(&rest, &left);
-    if (!is_comment(rest, left)) {
+    size_t wrong = copy_name(scan->section, name, length, true);
+    scan->any_section = true;
+    scan->has_section = false;
+    if (!close)
+        bw_faults_add(scan->faults, line.number, "", "", "section without its closing ]");
+    else if (left > 0 && is_comment(rest, left))
+        bw_faults_add(scan->faults, line.number, "", "", "comment after a section; put it on a line of its own");
+    else if (left > 0)
         bw_faults_add(scan->faults, line.number, "", "", "text after the ] of a section; begin a new line");
-        return;
-    }
-    if (memchr(rest, '=', left)) {
-        bw_faults_add(scan->faults, line.number, "", "",
-                      "comment with = after a section would be read as a key; put the comment on its own line");
-        return;
-    }
-    char wrong = copy_name(scan->section, name, length, true);
-    if (wrong) { /* the messages of its keys name it as it is written */
-        memcpy(scan->section, name, length);
-        scan->section[length] = '\0';
-    }
-    if (wrong)
-        bw_faults_add(scan->faults, line.number, "", "", "%s in a section's name; letters, digits, - and blanks would be right",
-                      wrong == '\t' ? "a tabulator" : (char[]){'`', wrong >= ' ' && wrong < 0x7f ? wrong : '?', '`', 0});
-    else if (length == 0)
-        bw_faults_add(scan->faults, line.number, "", "", "section without a name");
-    else if (strstr(scan->section, "  "))
-        bw_faults_add(scan->faults, line.number, "", "", "several blanks in a section's name; one blank between its words");
     else
-        scan->has_section = true;
+        scan->has_section = accept_name(scan, name, length, wrong, line.number);
     if (scan->has_section)
         add_entry(scan, "", "", line.number);
 }
@@ -179,7 +132,7 @@ static bool scan_value(struct scan *scan, const char *key, struct line line, con
         size_t left = *length - (size_t)(rest - *value);
         trim(&rest, &left);
         if (!is_comment(rest, left)) {
-            bw_faults_add(faults, line.number, scan->section, key, "text after the closing quote");
+            bw_faults_add(faults, line.number, scan->section, key, "text after the closing quote; one pair of quotes round the whole value");
             return false;
         }
         *length = (size_t)(close - *value) - 1;
@@ -212,27 +165,27 @@ static void scan_key(struct scan *scan, struct line line) {
     if (!equals) {
         bw_faults_add(scan->faults, line.number, scan->section, "",
                       "`%.*s` is neither a section nor a key; `key = value` would be right",
-                      (int)(line.length < 40 ? line.length : 40), line.text);
+                      shown(line.length, line.text), line.text);
         return;
     }
     trim(&name, &length);
-    if (length == 0 || copy_name(key, name, length, false) != '\0') {
+    if (length == 0) {
+        bw_faults_add(scan->faults, line.number, scan->section, "", "no key before the =; `key = value` would be right");
+        return;
+    }
+    if (copy_name(key, name, length, false) < length) {
         bw_faults_add(scan->faults, line.number, scan->section, "",
-                      "`%.*s` is no name for a key; letters, digits, _ and - would be right",
-                      (int)(length < 40 ? length : 40), name);
+                      "`%.*s` is no name for a key; letters, digits, _ and - would be right", shown(length, name), name);
         return;
     }
     const char *value = equals + 1;
     size_t value_length = line.length - (size_t)(value - line.text);
-    if (!scan_value(scan, key, line, &value, &value_length))
-        return;
+    if (!scan->any_section)
+        bw_faults_add(scan->faults, line.number, "", key, "key before any section; begin with [case] or [table]");
+    if (!scan_value(scan, key, line, &value, &value_length) || !scan->has_section)
+        return; /* a section that was refused has its fault already */
     memcpy(text, value, value_length);
     text[value_length] = '\0';
-    if (!scan->has_section) {
-        if (scan->section[0] == '\0')
-            bw_faults_add(scan->faults, line.number, "", key, "key before any section; begin with [case] or [table]");
-        return; /* keys of a section that was refused have their fault already */
-    }
     add_entry(scan, key, text, line.number);
 }
 
@@ -262,7 +215,9 @@ enum bw_status bw_ini_guard_lines(const char *bytes, size_t length, struct bw_in
     scan->ini = ini;
     scan->faults = faults;
     int number = 1;
-    for (size_t at = 0; at < length && scan->status == BW_OK && !scan->told_keys; number++) {
+    for (size_t at = 0; at < length && scan->status == BW_OK && !scan->full; number++) {
+        if (bw_ini_enough_faults(faults, number))
+            break;
         const char *end = memchr(bytes + at, '\n', length - at);
         size_t line_length = end ? (size_t)(end - bytes) - at : length - at;
         scan_line(scan, (struct line){bytes + at, line_length, number});
@@ -273,14 +228,52 @@ enum bw_status bw_ini_guard_lines(const char *bytes, size_t length, struct bw_in
     return status;
 }
 
-/* ---- repeats -------------------------------------------------------------------------------- */
+/* ---- names ---------------------------------------------------------------------------------- */
+
+/* Where the next character stands that counts: the second of two blanks does not. */
+static const char *skip_blanks(const char *at) {
+    while (at[0] == ' ' && at[1] == ' ')
+        at++;
+    return at;
+}
+
+void bw_ini_collapse_sections(struct bw_ini *ini) {
+    for (size_t i = 0; i < ini->count; i++) {
+        char *to = ini->entries[i].section;
+        for (const char *from = skip_blanks(to); *from; from = skip_blanks(from + 1))
+            *to++ = *from;
+        *to = '\0';
+    }
+}
+
+static int compare_sections(const char *a, const char *b) {
+    for (;; a++, b++) {
+        a = skip_blanks(a);
+        b = skip_blanks(b);
+        if (*a != *b || *a == '\0')
+            return (unsigned char)*a - (unsigned char)*b;
+    }
+}
+
+static int compare_names(const struct bw_ini_entry *a, const struct bw_ini_entry *b) {
+    int order = compare_sections(a->section, b->section);
+    return order != 0 ? order : strcmp(a->key, b->key);
+}
 
 static int compare_entries(const void *a, const void *b) {
     const struct bw_ini_entry *const *first = a, *const *second = b;
-    int order = strcmp((*first)->section, (*second)->section);
-    if (order == 0)
-        order = strcmp((*first)->key, (*second)->key);
+    int order = compare_names(*first, *second);
     return order != 0 ? order : ((*first)->line > (*second)->line) - ((*first)->line < (*second)->line);
+}
+
+static void tell_repeat(const struct bw_ini_entry *first, const struct bw_ini_entry *again, struct bw_faults *faults) {
+    if (again->key[0])
+        bw_faults_add(faults, again->line, again->section, again->key, "given twice, first in line %d; keep one",
+                      first->line);
+    else
+        bw_faults_add(faults, again->line, again->section, "",
+                      "section given twice, first in line %d; join them under one name or give it another",
+                      first->line);
 }
 
 enum bw_status bw_ini_guard_repeats(const struct bw_ini *ini, struct bw_faults *faults) {
@@ -292,17 +285,12 @@ enum bw_status bw_ini_guard_repeats(const struct bw_ini *ini, struct bw_faults *
     for (size_t i = 0; i < ini->count; i++)
         sorted[i] = &ini->entries[i];
     qsort(sorted, ini->count, sizeof *sorted, compare_entries);
+    const struct bw_ini_entry *first = sorted[0];
     for (size_t i = 1; i < ini->count; i++) {
-        const struct bw_ini_entry *first = sorted[i - 1], *again = sorted[i];
-        if (strcmp(first->section, again->section) != 0 || strcmp(first->key, again->key) != 0)
-            continue;
-        if (again->key[0])
-            bw_faults_add(faults, again->line, again->section, again->key, "given twice, first in line %d; keep one",
-                          first->line);
-        else
-            bw_faults_add(faults, again->line, again->section, "",
-                          "section given twice, first in line %d; join them under one name or give it another",
-                          first->line);
+        if (compare_names(first, sorted[i]) != 0)
+            first = sorted[i];
+        else if (!bw_ini_enough_faults(faults, sorted[i]->line))
+            tell_repeat(first, sorted[i], faults);
     }
     free(sorted);
     return BW_OK;

@@ -1,6 +1,5 @@
-#include <beamward/base.h>
+#include "internal.h"
 
-#include <stdarg.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
@@ -58,5 +57,16 @@ char *bw_duplicate(const char *string) {
     char *copy = malloc(size);
     if (copy)
         memcpy(copy, string, size);
+    return copy;
+}
+
+char *bw_print_copy(const char *format, va_list list) {
+    va_list again;
+    va_copy(again, list);
+    int length = vsnprintf(NULL, 0, format, again);
+    va_end(again);
+    char *copy = length < 0 ? NULL : malloc((size_t)length + 1);
+    if (copy)
+        vsnprintf(copy, (size_t)length + 1, format, list);
     return copy;
 }

@@ -1,14 +1,6 @@
-#include <beamward/base.h>
+#include "internal.h"
 
-#include <stdarg.h>
-#include <stdio.h>
 #include <stdlib.h>
-
-BW_PRINTF(1, 0) static char *print_copy(const char *format, va_list list) {
-    char text[512];
-    vsnprintf(text, sizeof text, format, list);
-    return bw_duplicate(text);
-}
 
 static void free_step(struct bw_step *step) {
     free(step->symbol);
@@ -43,7 +35,7 @@ void bw_working_heading(struct bw_working *working, const char *format, ...) {
         return;
     va_list list;
     va_start(list, format);
-    char *text = print_copy(format, list);
+    char *text = bw_print_copy(format, list);
     va_end(list);
     append(working, (struct bw_step){true, bw_duplicate(""), text, bw_duplicate(""), 0, bw_duplicate(""),
                                      bw_duplicate("")});
@@ -57,7 +49,7 @@ void bw_working_step(struct bw_working *working, const char *symbol, double valu
     if (numbers) {
         va_list list;
         va_start(list, numbers);
-        filled = print_copy(numbers, list);
+        filled = bw_print_copy(numbers, list);
         va_end(list);
     }
     append(working, (struct bw_step){false, bw_duplicate(symbol), bw_duplicate(formula ? formula : ""),
