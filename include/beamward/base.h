@@ -81,7 +81,7 @@ const char *bw_nearest_name(const char *word, const char *const *names, size_t c
 /* ---- numbers ------------------------------------------------------------------------------ */
 
 /* Reads one plain decimal number that fills the whole of `string` (blanks around it allowed).
- * Refused: empty, trailing text or units, decimal comma, nan, inf, hexadecimal, overflow. */
+ * Refused: empty, trailing text or units, decimal comma, nan, inf, hexadecimal, overflow, underflow to 0. */
 bool bw_parse_number(const char *string, double *value);
 
 enum bw_rounding { BW_NEAREST, BW_DOWN, BW_UP };
@@ -110,7 +110,7 @@ const struct bw_unit *bw_angle_unit(const char *suffix);
 
 /* Root of a continuous function between two places of opposite sign (Brent's method: R. P. Brent,
  * Algorithms for Minimization without Derivatives, 1973, ch. 4), to the last few units of the double.
- * Returned: root; NAN on error. Returns: BW_OK; BW_ARGUMENT if the signs do not differ. */
+ * Returned: root; NAN on error. Returns: BW_OK; BW_ARGUMENT if the signs do not differ, or on NaN. */
 typedef double bw_function(double x, const void *context);
 enum bw_status bw_root(bw_function *function, const void *context, double low, double high, double *root);
 
@@ -128,12 +128,13 @@ struct bw_polygon {
 };
 double bw_distance(struct bw_point a, struct bw_point b);
 double bw_point_segment_distance(struct bw_point p, struct bw_segment s);
+/* Touching means nearer than a nanometre: decimal coordinates are not exact in binary. */
 bool bw_segments_cross(struct bw_segment a, struct bw_segment b); /* touching counts */
 struct bw_point bw_mirror_point(struct bw_point p, struct bw_segment line);
 double bw_polygon_area(const struct bw_polygon *polygon); /* positive whatever the direction */
 bool bw_polygon_contains(const struct bw_polygon *polygon, struct bw_point p); /* the edge counts */
-bool bw_polygon_is_simple(const struct bw_polygon *polygon); /* no edge crosses another */
-bool bw_polygon_is_convex(const struct bw_polygon *polygon);
+bool bw_polygon_is_simple(const struct bw_polygon *polygon); /* three corners or more, no edge touches another */
+bool bw_polygon_is_convex(const struct bw_polygon *polygon); /* of a simple one */
 
 /* ---- INI ---------------------------------------------------------------------------------- */
 
@@ -148,8 +149,8 @@ struct bw_ini {
     size_t count, capacity;
 };
 /* Reads a file through the guard described in base/ini.c: whatever iniparser would swallow or
- * misread is a fault with its line. Returns: BW_OK; BW_INPUT with faults; BW_SYSTEM if it cannot be
- * opened; BW_NO_MEMORY. `bytes` (may be NULL) receives the raw file. */
+ * misread is a fault with its line, sorted by line. Returns: BW_OK; BW_INPUT with faults, or without if
+ * there is no such file or it is a folder; BW_SYSTEM if it cannot be opened or read; BW_NO_MEMORY. `bytes` (may be NULL) receives the raw file. */
 enum bw_status bw_ini_read(const char *path, struct bw_ini *ini, struct bw_text *bytes,
                            struct bw_faults *faults, struct bw_error *error);
 /* The same from memory. */

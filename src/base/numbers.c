@@ -21,66 +21,65 @@ bool bw_parse_number(const char *string, double *value) {
     double parsed = strtod(string, &end);
     if (length == 0 || end != string + length || !isfinite(parsed))
         return false;
+    /* A number too small for a double would be taken for none at all. */
+    if (!(fabs(parsed) > 0) && strcspn(string, "123456789") < strcspn(string, "eE"))
+        return false;
     *value = parsed;
     return true;
 }
 
-/* A decimal number as it will be printed: digits x 10^exponent. */
+/* A decimal number as it will be printed: digits x 10^exponent. 15 digits of a double are exact enough: what they
+ * change is 5e-15 of the value, far below the 1e-12 that counts as the printed number itself. */
+enum { DIGITS_MAX = 15, DIGITS_SIZE = 32 };
 struct decimal {
     bool negative;
-    char digits[24]; /* without leading zeros, or "0" */
+    char digits[DIGITS_SIZE];
     int exponent;
 };
 
-enum { WIDE_DIGITS = 15, DIGITS_MAX = 15 };
-
-static void add_one(char *digits, int count, int *exponent) {
-    for (int i = count - 1; i >= 0; i--) {
-        if (digits[i] != '9') {
-            digits[i]++;
-            return;
-        }
-        digits[i] = '0';
-    }
-    digits[0] = '1'; /* 999 -> 1000: the zeros are there, one place up */
-    (*exponent)++;
+static struct decimal to_decimal(double value) {
+    struct decimal d = {.negative = value < 0};
+    char wide[BW_NUMBER_SIZE];
+    snprintf(wide, sizeof wide, "%.*e", DIGITS_MAX - 1, fabs(value));
+    d.digits[0] = wide[0];
+    memcpy(d.digits + 1, wide + 2, DIGITS_MAX - 1);
+    d.digits[DIGITS_MAX] = '\0';
+    d.exponent = (int)strtol(strchr(wide, 'e') + 1, NULL, 10) - (DIGITS_MAX - 1);
+    return d;
 }
 
-/* Cuts to `count` digits in the wanted direction. The 15 digits of %.14e put a value that is a printed number to
- * within 1e-12 relative on it: the digits beyond the 12th decide only if they are not all noise. */
+/* Whether the number, cut to `count` digits, goes to the next one farther from zero. */
+static bool rounds_away(const struct decimal *d, int count, enum bw_rounding rounding) {
+    if (rounding == BW_NEAREST)
+        return d->digits[count] >= '5';
+    double kept = 0, rest = 0, place = 1; /* kept + rest, in units of the last digit kept */
+    for (int i = 0; i < count; i++)
+        kept = kept * 10 + (d->digits[i] - '0');
+    for (const char *digit = d->digits + count; *digit; digit++)
+        rest += (*digit - '0') * (place /= 10);
+    bool away = (rounding == BW_UP) != d->negative;
+    /* A value that is a printed number to within 1e-12 relative stays on it. */
+    return away ? rest > fmin(1e-12 * kept, 0.4) : 1 - rest <= fmin(1e-12 * (kept + 1), 0.4);
+}
+
 static void cut(struct decimal *d, int count, enum bw_rounding rounding) {
     int length = (int)strlen(d->digits);
     if (count >= length)
         return;
-    bool up;
-    if (rounding == BW_NEAREST) {
-        up = d->digits[count] >= '5';
-    } else {
-        /* away from zero for a positive UP or a negative DOWN */
-        bool away = (rounding == BW_UP) != d->negative;
-        double rest = 0, unit = 1;
-        for (int i = count; i < length; i++)
-            rest += (d->digits[i] - '0') * (unit /= 10);
-        double noise = 1e-12 * pow(10, count - 1); /* of the value, in units of the last digit kept */
-        if (noise > 0.4)
-            noise = 0.4;
-        up = away ? rest > noise : rest >= 1 - noise;
-    }
+    bool away = rounds_away(d, count, rounding);
     d->exponent += length - count;
     d->digits[count] = '\0';
-    if (up)
-        add_one(d->digits, count, &d->exponent);
-}
-
-static struct decimal to_decimal(double value) {
-    struct decimal d = {.negative = value < 0};
-    char wide[40];
-    snprintf(wide, sizeof wide, "%.*e", WIDE_DIGITS - 1, fabs(value));
-    d.digits[0] = wide[0];
-    memcpy(d.digits + 1, wide + 2, WIDE_DIGITS - 1);
-    d.digits[WIDE_DIGITS] = '\0';
-    d.exponent = (int)strtol(strchr(wide, 'e') + 1, NULL, 10) - (WIDE_DIGITS - 1);
-    return d;
+    if (!away)
+        return;
+    int i = count - 1;
+    for (; i >= 0 && d->digits[i] == '9'; i--)
+        d->digits[i] = '0';
+    if (i >= 0) {
+        d->digits[i]++;
+    } else { /* 999 -> 1000: the zeros are there, one place up */
+        d->digits[0] = '1';
+        d->exponent++;
+    }
 }
 
 /* Writes digits x 10^exponent plainly. */
@@ -121,7 +120,7 @@ const char *bw_format(char out[BW_NUMBER_SIZE], double value, int digits, enum b
     if (!isfinite(value) || !(fabs(value) > 0))
         return special(out, value);
     struct decimal d = to_decimal(value);
-    cut(&d, digits < 1 ? 1 : digits > DIGITS_MAX ? DIGITS_MAX : digits, rounding);
+    cut(&d, digits < 1 ? 1 : digits, rounding);
     int first = (int)strlen(d.digits) + d.exponent - 1; /* power of ten of the first digit */
     if (first >= -3 && first < 6)
         write_plain(out, &d);
@@ -130,40 +129,42 @@ const char *bw_format(char out[BW_NUMBER_SIZE], double value, int digits, enum b
     return out;
 }
 
+/* Zeros in front, so that at least one digit stands before those beyond the last decimal. More zeros than a few say
+ * nothing new: such a number is above zero and far below half of the last decimal. */
+static void pad_front(struct decimal *d, int zeros) {
+    zeros = zeros < 4 ? zeros : 4;
+    memmove(d->digits + zeros, d->digits, strlen(d->digits) + 1);
+    memset(d->digits, '0', (size_t)zeros);
+}
+
+static void pad_back(struct decimal *d, int zeros) {
+    size_t length = strlen(d->digits);
+    memset(d->digits + length, '0', (size_t)zeros);
+    d->digits[length + (size_t)zeros] = '\0';
+    d->exponent -= zeros;
+}
+
 const char *bw_format_fixed(char out[BW_NUMBER_SIZE], double value, int decimals, enum bw_rounding rounding) {
+    enum { DECIMALS_MAX = 9 };
     if (!isfinite(value))
         return special(out, value);
-    if (decimals < 0 || decimals > 9)
-        decimals = decimals < 0 ? 0 : 9;
+    decimals = decimals < 0 ? 0 : decimals > DECIMALS_MAX ? DECIMALS_MAX : decimals;
     struct decimal d = to_decimal(value);
-    if (!(fabs(value) > 0)) {
-        d = (struct decimal){.exponent = -decimals};
-        memset(d.digits, '0', (size_t)decimals + 1);
+    if (!(fabs(value) > 0))
+        d = (struct decimal){.digits = "0", .exponent = 0};
+    int count = (int)strlen(d.digits) + d.exponent + decimals; /* digits up to the last decimal */
+    if (count - decimals > DIGITS_MAX)
+        return bw_format(out, value, DIGITS_MAX, rounding);
+    if (count < 1) {
+        pad_front(&d, 1 - count);
+        cut(&d, 1, rounding);
+        d.exponent = -decimals;
     } else {
-        int first = (int)strlen(d.digits) + d.exponent - 1, count = first + 1 + decimals;
-        if (first >= 15)
-            return bw_format(out, value, DIGITS_MAX, rounding);
-        if (count >= 1) {
-            cut(&d, count, rounding);
-        } else { /* all digits lie beyond the last decimal */
-            bool away = rounding != BW_NEAREST && (rounding == BW_UP) != d.negative;
-            bool half = rounding == BW_NEAREST && count == 0 && d.digits[0] >= '5';
-            memcpy(d.digits, away || half ? "1" : "0", 2);
-            d.exponent = -decimals;
-        }
-        /* A plain integer part needs its leading zeros: digits x 10^-decimals. */
-        int length = (int)strlen(d.digits);
-        if (d.exponent > -decimals) { /* carried up, or all 15 digits stand before the last decimal */
-            int more = d.exponent + decimals;
-            if (length + more < (int)sizeof d.digits) {
-                memset(d.digits + length, '0', (size_t)more);
-                d.digits[length + more] = '\0';
-                d.exponent = -decimals;
-            }
-        }
+        cut(&d, count, rounding);
     }
-    if (strspn(d.digits, "0") == strlen(d.digits))
-        d.negative = false;
+    if (d.exponent > -decimals)
+        pad_back(&d, d.exponent + decimals);
+    d.negative = d.negative && strspn(d.digits, "0") < strlen(d.digits);
     write_plain(out, &d);
     return out;
 }

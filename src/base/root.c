@@ -48,7 +48,7 @@ static void choose_step(struct bracket *s, double tolerance, double half) {
 }
 
 enum bw_status bw_root(bw_function *function, const void *context, double low, double high, double *root) {
-    enum { STEPS_MAX = 2000 };
+    enum { STEPS_MAX = 10000 }; /* halving the whole range of a double down to its last unit takes some 2100 */
     struct bracket s = {.a = low, .b = high};
     *root = (double)NAN;
     s.fa = function(low, context);
@@ -60,8 +60,10 @@ enum bw_status bw_root(bw_function *function, const void *context, double low, d
     for (int i = 0; i < STEPS_MAX; i++) {
         order(&s);
         double tolerance = 2 * DBL_EPSILON * fabs(s.b), half = 0.5 * (s.c - s.b);
-        if (fabs(half) <= tolerance || !(fabs(s.fb) > 0))
-            break;
+        if (fabs(half) <= tolerance || !(fabs(s.fb) > 0)) {
+            *root = s.b;
+            return BW_OK;
+        }
         choose_step(&s, tolerance, half);
         s.a = s.b;
         s.fa = s.fb;
@@ -70,6 +72,5 @@ enum bw_status bw_root(bw_function *function, const void *context, double low, d
         if (isnan(s.fb))
             return BW_ARGUMENT;
     }
-    *root = s.b;
-    return BW_OK;
+    return BW_ARGUMENT; /* not reached by the bound above; never an unfinished root */
 }
