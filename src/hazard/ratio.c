@@ -110,14 +110,14 @@ double bw_hazard_last_waist_m(const struct bw_hazard *hazard, size_t only) {
     return last_m;
 }
 
-/* Raises *best to the largest ratio on a stretch, to 1e-9 and never below it: a part whose bound is no larger is
- * passed over; one too short to matter counts with its bound. */
+/* Raises *best to the largest ratio on a stretch, at most 1e-4 above it and never below: a part whose bound is no
+ * larger is passed over; one too short to matter counts with its bound. */
 static void raise_to_largest(const struct bw_hazard *hazard, double near_m, double far_m, int depth, long *stretches,
                              double *best) {
     double ratios[BW_TERMS_MAX];
     bw_hazard_bounds(hazard, near_m, far_m, ratios);
     double bound = bw_hazard_largest_sum(hazard, ratios, BW_EMISSIONS_MAX);
-    if (bound <= *best * (1. + 1e-9)) {
+    if (bound <= *best * (1. + 1e-4)) {
         *best = fmax(*best, bound);
         return;
     }
@@ -133,14 +133,15 @@ static void raise_to_largest(const struct bw_hazard *hazard, double near_m, doub
 
 /* Given: hazard, distance_m.
  * Returns: the largest ratio at this distance or any farther one; NAN for a bad distance
- * Notes:   Beyond the last waist every term falls. Before it, the bounds of bw_hazard_bounds close in. */
+ * Notes:   Beyond the last waist every term falls. Before it, the bounds of bw_hazard_bounds close in, to
+ *          1e-4 and never below. */
 double bw_hazard_ratio_envelope(const struct bw_hazard *hazard, double distance_m) {
     double here = bw_hazard_ratio(hazard, distance_m);
     double last_m = bw_hazard_last_waist_m(hazard, BW_EMISSIONS_MAX);
     if (!(distance_m < last_m) || isnan(here))
         return here;
     double best = here;
-    long stretches = 100000;
+    long stretches = 3000;
     for (size_t i = 0; i < hazard->output->count; i++)
         if (hazard->output->beams[i].waist_m > distance_m)
             best = fmax(best, bw_hazard_ratio(hazard, hazard->output->beams[i].waist_m));
