@@ -1,0 +1,87 @@
+/* The case as it was written down, and as it was understood. */
+#include "html.h"
+
+#define COUNT(array) (sizeof(array) / sizeof((array)[0]))
+
+static void emission(struct bw_text *out, const struct bw_laser *laser, const struct bw_emission *emission) {
+    char words[REPORT_QUANTITY_SIZE];
+    html_row(out, NULL);
+    html_cell(out, NULL, "%s %s", laser->name, emission->name);
+    html_cell(out, "n", "%s", report_plain(words, emission->wavelength_nm));
+    html_cell(out, "n", "%s", report_plain(words, emission->average_power_w));
+    if (emission->continuous) {
+        html_cell(out, NULL, "%s", "continuous");
+        for (int i = 0; i < 3; i++)
+            html_cell(out, "n", "%s", "");
+    } else {
+        html_cell(out, "n", "%s", report_plain(words, emission->peak_power_w));
+        html_cell(out, "n", "%s", report_plain(words, emission->pulse_energy_j));
+        html_cell(out, "n", "%s", report_plain(words, emission->pulse_duration_s));
+        html_cell(out, "n", "%s", report_plain(words, emission->repetition_rate_hz));
+    }
+    html_row_end(out);
+}
+
+static void emissions(struct bw_text *out, const struct bw_result *result) {
+    static const char *const heads[] = {"Emission",         ">nm",         ">Average W", ">Peak W",
+                                        ">Pulse energy J", ">Duration s", ">Rate Hz"};
+    html_table(out, "", heads, COUNT(heads));
+    for (size_t i = 0; i < result->the_case->laser_count; i++)
+        for (size_t j = 0; j < result->the_case->lasers[i].emission_count; j++)
+            emission(out, &result->the_case->lasers[i], &result->the_case->lasers[i].emissions[j]);
+    html_table_end(out);
+}
+
+static void beam(struct bw_text *out, const struct bw_laser *laser, const struct bw_handpiece *piece, size_t index) {
+    const struct bw_beam *beam = &piece->output.beams[index];
+    char words[REPORT_QUANTITY_SIZE];
+    html_row(out, NULL);
+    html_cell(out, NULL, "%s %s", laser->name, piece->name);
+    html_cell(out, NULL, "%s%s", piece->output.emissions[index].name,
+              piece->emission_beam_given[index] ? " (its own beam)" : "");
+    html_cell(out, "n", "%s", report_plain(words, 1e3 * beam->exit_diameter_m));
+    html_cell(out, "n", "%s", report_plain(words, 1e3 * beam->diameter_m));
+    html_cell(out, "n", "%s", report_plain(words, beam->waist_m));
+    html_cell(out, "n", "%s", report_plain(words, 1e3 * beam->divergence_rad));
+    html_cell(out, NULL, "%s, %s", beam->profile == BW_TOP_HAT ? "top hat" : "Gaussian",
+              beam->spread == BW_LINEAR ? "linear" : "hyperbolic");
+    html_row_end(out);
+}
+
+static void beams(struct bw_text *out, const struct bw_result *result) {
+    static const char *const heads[] = {"Handpiece", "Emission",        ">Exit d63 mm",    ">Waist d63 mm",
+                                        ">Waist m", ">Divergence mrad", "Profile, spread"};
+    html_table(out, "", heads, COUNT(heads));
+    for (size_t i = 0; i < result->the_case->laser_count; i++) {
+        const struct bw_laser *laser = &result->the_case->lasers[i];
+        for (size_t j = 0; j < laser->handpiece_count; j++)
+            for (size_t k = 0; k < laser->handpieces[j].output.count; k++)
+                beam(out, laser, &laser->handpieces[j], k);
+    }
+    html_table_end(out);
+}
+
+void html_inputs_converted(struct bw_text *out, const struct bw_result *result) {
+    html_heading(out, "converted", "Inputs as understood");
+    emissions(out, result);
+    beams(out, result);
+    html_paragraph(out, "Divergence: full angle, d63. Waist m: how far in front of the exit the beam is narrowest.");
+}
+
+void html_inputs_given(struct bw_text *out, const struct bw_result *result) {
+    static const char *const heads[] = {">Line", "Section", "Key", "Value"};
+    const struct bw_ini *given = &result->the_case->given;
+    html_heading(out, "given", "Inputs as given");
+    html_table(out, "given", heads, COUNT(heads));
+    for (size_t i = 0; i < given->count; i++) {
+        const struct bw_ini_entry *entry = &given->entries[i];
+        bool head = entry->key[0] == '\0';
+        html_row(out, head ? "head" : NULL);
+        html_cell(out, "n", "%d", entry->line);
+        html_cell(out, NULL, head ? "[%s]" : "%s", head ? entry->section : "");
+        html_cell(out, NULL, "%s", entry->key);
+        html_cell(out, NULL, "%s", entry->value);
+        html_row_end(out);
+    }
+    html_table_end(out);
+}
