@@ -25,12 +25,14 @@ struct bw_goggles {
     size_t rating_count;
     struct bw_rating ratings[BW_RATINGS_MAX];
     double luminous_transmittance; /* 0 to 1; NAN if not given */
+    char inspected[16];            /* day of the last inspection, YYYY-MM-DD; empty if not given */
 };
 
 /* Reads `800-820 6.2, 890-1070 5.5` (nm; a single wavelength stands for itself).
  * Returns: BW_OK; BW_INPUT with the place and what is expected. Ranges are appended to goggles. */
 enum bw_status bw_eyewear_read_densities(const char *text, struct bw_goggles *goggles, struct bw_error *error);
-/* Reads an EN 207 marking, `800-820 D LB6 + 890-1070 DIR LB5`: scale number n means a transmittance below 10^-n. */
+/* Reads an EN 207 marking, `800-820 D LB6 + 890-1070 DIR LB5`: scale number n means a transmittance below 10^-n.
+ * The mode letters may also stand before the wavelengths. */
 enum bw_status bw_eyewear_read_marking(const char *text, struct bw_goggles *goggles, struct bw_error *error);
 
 /* The optical density at a wavelength: the lowest of the ranges that hold it. Returns: NULL if there is none. */
