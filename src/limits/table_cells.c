@@ -151,10 +151,14 @@ size_t bw_cells_word(struct cells *cells, size_t column, const char *what, const
         if (strcmp(word, words[i]) == 0)
             return i;
     const char *nearest = bw_nearest_name(word, words, count);
-    if (nearest != NULL)
+    char list[CELL_SIZE] = "";
+    for (size_t i = 0, length = 0; i < count && length < sizeof list; i++)
+        length += (size_t)snprintf(list + length, sizeof list - length, "%s%s",
+                                   i == 0 ? "" : i + 1 == count ? " or " : ", ", words[i]);
+    if (nearest != NULL && strlen(word) > 2)
         bw_cells_fault(cells, "unknown %s '%s'; did you mean %s?", what, word, nearest);
     else
-        bw_cells_fault(cells, "unknown %s '%s'; one is %s", what, word, words[0]);
+        bw_cells_fault(cells, "unknown %s '%s'; wants %s", what, word, list);
     return count;
 }
 

@@ -147,11 +147,10 @@ static void check_tiling(struct tiling *tiling)
         edges[count++] = tile->wavelength_nm.high;
     }
     count = bw_check_sort_edges(edges, count);
-    for (size_t i = 0; i < count; i++) {
+    for (size_t i = 0; i + 1 < count; i++)
+        check_times(tiling, 0.5 * (edges[i] + edges[i + 1]), &edges[i], times);
+    for (size_t i = 0; i < count; i++)
         check_times(tiling, edges[i], NULL, times);
-        if (i + 1 < count)
-            check_times(tiling, 0.5 * (edges[i] + edges[i + 1]), &edges[i], times);
-    }
     free(edges);
 }
 

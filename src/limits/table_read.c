@@ -32,7 +32,7 @@ struct row_note bw_reading_note(struct reading *reading, struct cells *cells)
     struct row_note note = {NULL, NULL, BW_MEMORY, cells->entry->line};
     note.key = bw_reading_copy(reading, cells->entry->key);
     note.clause = bw_reading_copy(reading, cells->cell[cells->count - 2]);
-    if (bw_cells_word(cells, cells->count - 1, "known", words, 2) == 0)
+    if (bw_cells_word(cells, cells->count - 1, "mark", words, 2) == 0)
         note.known = BW_READ;
     return note;
 }
@@ -134,6 +134,22 @@ static void begin_factor(struct reading *reading, const struct bw_ini_entry *ent
         reading->factor->first = reading->table->factor_row_count;
 }
 
+/* Sections that carry a name or an effect. */
+static void begin_named_section(struct reading *reading, const struct bw_ini_entry *entry)
+{
+    if (strncmp(entry->section, "factor ", 7) == 0) {
+        reading->kind = SECTION_FACTOR;
+        begin_factor(reading, entry);
+    } else if (strncmp(entry->section, "eye ", 4) == 0 || strcmp(entry->section, "skin") == 0 ||
+               strncmp(entry->section, "skin ", 5) == 0) {
+        reading->kind = SECTION_LIMITS;
+        bw_read_limits_section(reading, entry);
+    } else if (reading->kind == SECTION_UNKNOWN) {
+        bw_reading_fault(reading, entry, "unknown section; wants table, factor NAME, source-size, eye EFFECT, skin, "
+                                         "aperture, cone, repetition, train, additivity or exposure");
+    }
+}
+
 static void begin_section(struct reading *reading, const struct bw_ini_entry *entry)
 {
     static const struct {
@@ -157,17 +173,7 @@ static void begin_section(struct reading *reading, const struct bw_ini_entry *en
         reading->table->source_size.line = entry->line;
     if (reading->kind == SECTION_REPETITION)
         reading->table->repetition.line = entry->line;
-    if (strncmp(entry->section, "factor ", 7) == 0) {
-        reading->kind = SECTION_FACTOR;
-        begin_factor(reading, entry);
-    } else if (strncmp(entry->section, "eye ", 4) == 0 || strcmp(entry->section, "skin") == 0 ||
-               strncmp(entry->section, "skin ", 5) == 0) {
-        reading->kind = SECTION_LIMITS;
-        bw_read_limits_section(reading, entry);
-    }
-    if (reading->kind == SECTION_UNKNOWN)
-        bw_reading_fault(reading, entry, "unknown section; wants table, factor NAME, source-size, eye EFFECT, skin, "
-                                         "aperture, cone, repetition, train, additivity or exposure");
+    begin_named_section(reading, entry);
 }
 
 static void read_key(struct reading *reading, const struct bw_ini_entry *entry)

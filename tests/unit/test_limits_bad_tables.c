@@ -1,0 +1,360 @@
+/* Broken rule sets: each is the small good one below with one thing wrong, and must be refused with the exact line,
+ * section, key and text. */
+#include <setjmp.h>
+#include <stdarg.h>
+#include <stddef.h>
+#include <stdint.h>
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+#include <cmocka.h>
+
+#include <beamward/limits.h>
+
+/* Line numbers of the faults below count from here: [table] is line 1. */
+static const char good[] =
+    "[table]\n"
+    "id = small\n"
+    "title = a small rule set\n"
+    "source = invented for this test\n"
+    "edition = first\n"
+    "[factor ca]\n"
+    "r01 = 400 .. 700 | 1 | 0 | 0 | 0 | A | memory\n"
+    "r02 = 700 .. 1400 | 0 | 1 | 0.002 | 700 | A | memory\n"
+    "[factor t2]\n"
+    "argument = subtense_mrad\n" /* 10 */
+    "r01 = 0 .. 1.5 | 10 | 0 | 0 | 0 | A | memory\n"
+    "r02 = 1.5 .. 100 | 0 | 10 | 1/98.5 | 1.5 | A | memory\n"
+    "r03 = 100 .. 1571 | 100 | 0 | 0 | 0 | A | memory\n"
+    "[source-size]\n"
+    "alpha_min = 1.5 | A | memory\n"
+    "max_01 = 1e-13 .. 3e4 | 100 | 0 | A | memory\n"
+    "beyond = square | A | memory\n"
+    "[eye retina-thermal]\n"
+    "covers = 400 .. 1400 | 1e-13 .. 10\n"
+    "r01 = 400 .. 1400 | 1e-13 .. 1e-5 | H | 2e-3 | 0 | ca ce | B | memory\n" /* 20 */
+    "r02 = 400 .. 700 | 1e-5 .. 10 | H | 18 | 0.75 | ce | B | memory\n"
+    "r03 = 700 .. 1400 | 1e-5 .. 10 | H | 18 | 0.75 | ca ce | B | memory\n"
+    "[eye retina-thermal point]\n"
+    "covers = 400 .. 1400 | 10 .. 3e4\n"
+    "subtense_mrad = 0 .. 1.5\n"
+    "r01 = 400 .. 1400 | 10 .. 3e4 | E | 10 | 0 | ca | B | memory\n"
+    "[eye retina-thermal extended]\n"
+    "covers = 400 .. 1400 | 10 .. 3e4\n"
+    "subtense_mrad = 1.5 .. 1571\n"
+    "r01 = 400 .. 1400 | 10 .. t2 | H | 18 | 0.75 | ca ce | B | memory\n" /* 30 */
+    "r02 = 400 .. 1400 | t2 .. 3e4 | E | 18 | 0 | ca ce t2^-0.25 | B | memory\n"
+    "[eye retina-photochemical]\n"
+    "covers = 400 .. 600 | 10 .. 3e4\n"
+    "r01 = 400 .. 600 | 10 .. 3e4 | G | 1e6 | 0 | - | B | memory\n"
+    "[skin]\n"
+    "covers = 400 .. 1400 | 1e-13 .. 3e4\n"
+    "r01 = 400 .. 1400 | 1e-13 .. 3e4 | E | 2000 | 0 | ca | C | read\n"
+    "[skin large-area]\n"
+    "area_m2 = 0.1 ..\n"
+    "covers = 400 .. 1400 | 10 .. 3e4\n" /* 40 */
+    "r01 = 400 .. 1400 | 10 .. 3e4 | E | 10 | 0 | area^-1 | C | read\n"
+    "[aperture]\n"
+    "r01 = retina-thermal | 400 .. 1400 | 1e-13 .. 3e4 | 7 | 0 | D | memory\n"
+    "r02 = retina-photochemical | 400 .. 600 | 10 .. 3e4 | 7 | 0 | D | memory\n"
+    "r03 = skin | 400 .. 1400 | 1e-13 .. 3e4 | 3.5 | 0 | D | memory\n"
+    "[cone]\n"
+    "r01 = 400 .. 600 | 10 .. 3e4 | 11 | 0 | D | memory\n"
+    "[repetition]\n"
+    "ti_01 = 400 .. 1400 | 5e-6 | E | memory\n"
+    "count = t2 | E | memory\n" /* 50 */
+    "applies_01 = retina-thermal | 400 .. 1400 | E | memory\n"
+    "[train]\n"
+    "r01 = short | 0 .. 1571 | 1 .. | 0 .. | 1 | 0 | 0 | E | memory\n"
+    "r02 = long | 0 .. amax | 1 .. | 0 .. | 1 | -0.25 | 0.4 | E | memory\n"
+    "r03 = long | >amax .. 1571 | 1 .. | 0 .. | 1 | 0 | 0 | E | memory\n"
+    "[additivity]\n"
+    "r01 = 400 .. 1400 | 400 .. 1400 | eye skin | F | memory\n"
+    "[exposure]\n"
+    "r01 = visible | 400 .. 700 | 0.25 | G | memory\n"
+    "r02 = glance | 400 .. 1400 | 100 | G | memory\n" /* 60 */
+    "r03 = diffuse | 400 .. 1400 | 600 | G | memory\n"
+    "r04 = skin | 400 .. 1400 | 100 | G | memory\n"
+    "r05 = alignment | 400 .. 700 | 2 | G | memory\n"
+    "r06 = working-day | 400 .. 1400 | 3e4 | G | memory\n";
+
+struct bad_case {
+    const char *name;
+    const char *out, *in; /* the first is replaced by the second */
+    int line;
+    const char *section, *key, *text;
+};
+static struct bad_case bad_cases[] = {
+    /* the head */
+    {"no id", "id = small\n", "", 0, "table", "id", "is missing; a rule set must name its id"},
+    {"no title", "title = a small rule set\n", "", 0, "table", "title", "is missing; a rule set must name its title"},
+    {"no source", "source = invented for this test\n", "", 0, "table", "source",
+     "is missing; a rule set must name its source"},
+    {"no edition", "edition = first\n", "", 0, "table", "edition", "is missing; a rule set must name its edition"},
+    {"id not a name", "id = small", "id = my table", 0, "table", "id",
+     "'my table' is not a name; wants a-z, 0-9 and hyphen"},
+    {"unknown key in the head", "edition = first", "edition = first\nyear = 2014", 6, "table", "year",
+     "unknown key; wants note_01 next"},
+    {"unknown section", "[cone]", "[cones]", 46, "cones", "",
+     "unknown section; wants table, factor NAME, source-size, eye EFFECT, skin, aperture, cone, repetition, train, "
+     "additivity or exposure"},
+    /* gaps and overlaps */
+    {"gap in time", "1e-13 .. 1e-5 | H", "1e-13 .. 9e-6 | H", 19, "eye retina-thermal", "",
+     "gap: no row covers 400 .. 700 nm at 9e-6 .. 1e-5 s"},
+    {"gap in wavelength", "r03 = 700 .. 1400 | 1e-5", "r03 = 701 .. 1400 | 1e-5", 19, "eye retina-thermal", "",
+     "gap: no row covers 700 .. 701 nm at 1e-5 .. 10 s"},
+    {"gap at an edge", "r01 = 400 .. 600 | 10 .. 3e4 | G", "r01 = 400 .. <600 | 10 .. 3e4 | G", 33,
+     "eye retina-photochemical", "", "gap: no row covers exactly 600 nm at 10 .. 3e4 s"},
+    {"gap at the end", "r01 = 400 .. 600 | 10 .. 3e4 | G", "r01 = 400 .. 600 | 10 .. 2e4 | G", 33,
+     "eye retina-photochemical", "", "gap: no row covers 400 .. 600 nm at 2e4 .. 3e4 s"},
+    {"overlap in time", "1e-13 .. 1e-5 | H", "1e-13 .. 2e-5 | H", 21, "eye retina-thermal", "r02",
+     "overlaps r01 at 400 .. 700 nm, 1e-5 .. 2e-5 s"},
+    {"overlap in wavelength", "r02 = 400 .. 700 | 1e-5", "r02 = 400 .. 710 | 1e-5", 22, "eye retina-thermal", "r03",
+     "overlaps r02 at 700 .. 710 nm, 1e-5 .. 10 s"},
+    {"row beyond the cover", "r01 = 400 .. 1400 | 10 .. 3e4 | E | 10 |", "r01 = 400 .. 1400 | 9 .. 3e4 | E | 10 |", 26,
+     "eye retina-thermal point", "r01", "reaches beyond what the section covers; wants it inside `covers`"},
+    {"symbolic edges that do not meet", "10 .. t2 | H", "10 .. 100 | H", 31, "eye retina-thermal extended", "r02",
+     "overlaps r01 at 400 .. 1400 nm, 10 .. 100 s"},
+    {"no cover", "covers = 400 .. 600 | 10 .. 3e4\n", "", 32, "eye retina-photochemical", "covers",
+     "is missing; wants wavelength nm | time s that the rows cover"},
+    {"a section without rows", "r01 = 400 .. 600 | 10 .. 3e4 | G | 1e6 | 0 | - | B | memory\n", "", 32,
+     "eye retina-photochemical", "", "has no rows"},
+    {"sources left out", "subtense_mrad = 1.5 .. 1571", "subtense_mrad = 2 .. 1571", 23, "eye retina-thermal point",
+     "subtense_mrad", "gap: the sections of this effect do not take in every source from 0 to 1571 mrad"},
+    {"hole between sections", "covers = 400 .. 1400 | 1e-13 .. 10\n", "covers = 400 .. 1400 | 1e-13 .. 9\n", 21,
+     "eye retina-thermal", "r02", "reaches beyond what the section covers; wants it inside `covers`"},
+    {"aperture gap", "r01 = retina-thermal | 400 .. 1400 | 1e-13", "r01 = retina-thermal | 400 .. 1400 | 1e-12", 43,
+     "aperture", "", "gap: no row covers 400 .. 1400 nm at 1e-13 .. 1e-12 s"},
+    {"aperture missing", "r03 = skin | 400 .. 1400 | 1e-13 .. 3e4 | 3.5 | 0 | D | memory\n", "", 0, "aperture", "",
+     "has no row for skin"},
+    {"cone missing", "[cone]\nr01 = 400 .. 600 | 10 .. 3e4 | 11 | 0 | D | memory\n", "", 0, "cone", "",
+     "has no row for retina-photochemical"},
+    {"radiance without a cone", "| E | 2000 |", "| L | 2000 |", 0, "cone", "",
+     "G and L need a measuring cone: only retina-photochemical has one"},
+    {"alpha_max gap", "max_01 = 1e-13 .. 3e4", "max_01 = 1e-13 .. 1e4", 14, "source-size", "",
+     "gap: no row covers 180 .. 1e6 nm at 1e4 .. 3e4 s"},
+    {"train gap", ">amax .. 1571 | 1 ..", ">amax .. 1570 | 1 ..", 53, "train", "",
+     "gap: no row covers a long pulse at 1570.5 mrad, N = 1, 0 s exposure"},
+    {"train overlap", "0 .. amax", "0 .. 101", 55, "train", "r03", "overlaps r02"},
+    {"train edge left out", "0 .. amax", "0 .. <amax", 53, "train", "",
+     "gap: no row covers a long pulse at 100 mrad, N = 1, 0 s exposure"},
+    /* factors */
+    {"unknown factor", "0.75 | ca ce | B | memory\n[eye retina-thermal point]",
+     "0.75 | cx ce | B | memory\n[eye retina-thermal point]", 22, "eye retina-thermal", "r03",
+     "unknown factor 'cx'; wants ce, area or the NAME of a [factor NAME] section"},
+    {"factor twice", "| ca ce | B | memory\nr02 = 400", "| ca ca | B | memory\nr02 = 400", 20, "eye retina-thermal",
+     "r01", "factor 'ca' is given twice; wants it once"},
+    {"exponent unreadable", "t2^-0.25", "t2^x", 31, "eye retina-thermal extended", "r02",
+     "factor 't2^x' has no readable exponent; wants a number such as t2^-0.25"},
+    {"factor too short", "r02 = 700 .. 1400 | 0 | 1", "r02 = 700 .. 1300 | 0 | 1", 20, "eye retina-thermal", "r01",
+     "factor ca does not reach over the whole row"},
+    {"factor gap", "r02 = 700 .. 1400 | 0 | 1", "r02 = 710 .. 1400 | 0 | 1", 8, "factor ca", "r02",
+     "leaves a gap after r01; wants to begin at 700"},
+    {"factor overlap", "r02 = 700 .. 1400 | 0 | 1", "r02 = 690 .. 1400 | 0 | 1", 8, "factor ca", "r02",
+     "overlaps r01; wants to begin at 700"},
+    {"factor of nothing", "r01 = 400 .. 700 | 1 | 0 | 0", "r01 = 400 .. 700 | 0 | 0 | 0", 7, "factor ca", "r01",
+     "offset and scale are both 0; a factor must be above 0"},
+    {"factor argument unknown", "argument = subtense_mrad", "argument = alpha", 10, "factor t2", "argument",
+     "unknown argument 'alpha'; wants wavelength_nm or subtense_mrad"},
+    {"factor with a built-in name", "[factor ca]", "[factor ce]", 6, "factor ce", "",
+     "'ce' cannot name a factor; wants a-z and 0-9, and not ce, area or amax"},
+    {"time edge unknown", "t2 .. 3e4", "t3 .. 3e4", 31, "eye retina-thermal extended", "r02",
+     "time edge 't3' is neither a number nor a factor of this rule set"},
+    {"counting factor unknown", "count = t2", "count = t9", 50, "repetition", "count",
+     "unknown factor 't9'; wants all or the NAME of a [factor NAME] section"},
+    /* cells */
+    {"cell missing", "| H | 18 | 0.75 | ce | B | memory", "| H | 18 | 0.75 | ce | memory", 21, "eye retina-thermal",
+     "r02",
+     "has 7 columns; wants 8: wavelength nm | time s | quantity | value | time power | factors | clause | known"},
+    {"cell too many", "| 2000 | 0 | ca", "| 2000 | 0 | 0 | ca", 37, "skin", "r01",
+     "has 9 columns; wants 8: wavelength nm | time s | quantity | value | time power | factors | clause | known"},
+    {"cell empty", "| 2000 | 0 | ca", "| 2000 |  | ca", 37, "skin", "r01",
+     "column 5 is empty; wants 8: wavelength nm | time s | quantity | value | time power | factors | clause | known"},
+    {"cells slipped", "| E | 2000 | 0 |", "| 2000 | E | 0 |", 37, "skin", "r01", "unknown quantity '2000'; wants H, E, G or L"},
+    {"unknown quantity", "| E | 2000 |", "| W | 2000 |", 37, "skin", "r01", "unknown quantity 'W'; wants H, E, G or L"},
+    {"value with a unit", "| 2000 | 0 | ca", "| 2000 W/m2 | 0 | ca", 37, "skin", "r01",
+     "value '2000 W/m2' is not a number; wants a plain decimal number such as 5e-3"},
+    {"decimal comma", "| 0.75 | ce | B", "| 0,75 | ce | B", 21, "eye retina-thermal", "r02",
+     "time power '0,75' is not a number; wants a plain decimal number such as 5e-3"},
+    {"value NaN", "| 2000 | 0 | ca", "| nan | 0 | ca", 37, "skin", "r01",
+     "value 'nan' is not a number; wants a plain decimal number such as 5e-3"},
+    {"value infinite", "| 2000 | 0 | ca", "| inf | 0 | ca", 37, "skin", "r01",
+     "value 'inf' is not a number; wants a plain decimal number such as 5e-3"},
+    {"value 0", "| 2000 | 0 | ca", "| 0 | 0 | ca", 37, "skin", "r01", "value 0 is out of range; wants 1e-12 to 1e16"},
+    {"value negative", "| 2000 | 0 | ca", "| -2000 | 0 | ca", 37, "skin", "r01",
+     "value -2000 is out of range; wants 1e-12 to 1e16"},
+    {"quotient by 0", "1/98.5", "1/0", 12, "factor t2", "r02",
+     "slope '1/0' is not a number; wants a plain decimal number such as 5e-3"},
+    {"H falls with time", "| 0.75 | ce | B", "| -0.75 | ce | B", 21, "eye retina-thermal", "r02",
+     "time power -0.75 makes the exposure fall with time; wants 0 to 1 with H and G, -1 to 0 with E and L"},
+    {"E rises with time", "| 2000 | 0 | ca", "| 2000 | 0.25 | ca", 37, "skin", "r01",
+     "time power 0.25 makes the irradiance rise with time; wants 0 to 1 with H and G, -1 to 0 with E and L"},
+    {"known unknown", "| ca | C | read\n[skin", "| ca | C | seen\n[skin", 37, "skin", "r01",
+     "unknown mark 'seen'; wants read or memory"},
+    /* ranges */
+    {"wavelength backwards", "r02 = 400 .. 700 | 1e-5", "r02 = 700 .. 400 | 1e-5", 21, "eye retina-thermal", "r02",
+     "wavelength 700 .. 400 runs backwards; wants the lower edge first"},
+    {"time backwards", "1e-13 .. 1e-5 | H", "1e-5 .. 1e-13 | H", 20, "eye retina-thermal", "r01",
+     "time 1e-5 .. 1e-13 runs backwards; wants the earlier edge first"},
+    {"not a range", "r02 = 400 .. 700 | 1e-5", "r02 = 400-700 | 1e-5", 21, "eye retina-thermal", "r02",
+     "wavelength '400-700' is not a range; wants two values with .. between them"},
+    {"wavelength in um", "r02 = 400 .. 700 | 1e-5", "r02 = 0.4 .. 700 | 1e-5", 21, "eye retina-thermal", "r02",
+     "wavelength 0.4 is out of range; wants 180 to 1e6"},
+    {"time out of range", "1e-13 .. 1e-5 | H", "1e-14 .. 1e-5 | H", 20, "eye retina-thermal", "r01",
+     "time edge 1e-14 s is out of range; wants 1e-13 to 3e4 s"},
+    {"open lower edge", "r02 = 400 .. 700 | 1e-5", "r02 = >400 .. 700 | 1e-5", 21, "eye retina-thermal", "r02",
+     "wavelength '>400 .. 700' has an open edge; wants closed edges here"},
+    {"open time", "1e-13 .. 1e-5 | H", "1e-13 .. <1e-5 | H", 20, "eye retina-thermal", "r01",
+     "time '1e-13 .. <1e-5' has an open edge; wants closed edges here"},
+    {"subtense backwards", "0 .. 1.5\nr01 = 400", "1.5 .. 0\nr01 = 400", 25, "eye retina-thermal point",
+     "subtense_mrad", "subtense 1.5 .. 0 runs backwards; wants the lower edge first"},
+    {"area for the eye", "subtense_mrad = 0 .. 1.5\n", "area_m2 = 0.1 .. 1\n", 25, "eye retina-thermal point",
+     "area_m2", "is for the skin only; wants no area here"},
+    {"train subtense unknown", "0 .. amax", "0 .. alpha_max", 54, "train", "r02",
+     "subtense edge 'alpha_max' is neither amax nor a number from 0 to 1571 mrad"},
+    /* order and repetition */
+    {"row left out", "r02 = 400 .. 700 | 1e-5 .. 10 | H | 18 | 0.75 | ce | B | memory\n", "", 21, "eye retina-thermal",
+     "r03", "is out of order; wants r02 next, numbered as on the page"},
+    {"row given twice", "r03 = 700 .. 1400 | 1e-5", "r02 = 700 .. 1400 | 1e-5", 22, "eye retina-thermal", "r02",
+     "*"}, /* the guard of the INI reader refuses it */
+    {"row without number", "r03 = 700 .. 1400 | 1e-5", "row = 700 .. 1400 | 1e-5", 22, "eye retina-thermal", "row",
+     "unknown key; wants r03 next"},
+    {"section given twice", "[skin large-area]", "[skin]", 38, "skin", "", "*"},
+    {"unknown effect", "[eye retina-photochemical]", "[eye blue-light]", 32, "eye blue-light", "",
+     "unknown effect 'blue-light'; wants retina-thermal, retina-photochemical, ultraviolet or anterior"},
+    {"unknown effect in a row", "= retina-photochemical |", "= retina-photochemica |", 44, "aperture", "r02",
+     "unknown effect 'retina-photochemica'; did you mean retina-photochemical?"},
+    /* missing parts */
+    {"no source size", "[source-size]\nalpha_min = 1.5 | A | memory\nmax_01 = 1e-13 .. 3e4 | 100 | 0 | A | memory\n"
+     "beyond = square | A | memory\n", "", 0, "source-size", "", "section is missing; ce and amax need it"},
+    {"no alpha_min", "alpha_min = 1.5 | A | memory\n", "", 14, "source-size", "alpha_min", "is missing"},
+    {"no law beyond", "beyond = square | A | memory\n", "", 14, "source-size", "beyond",
+     "is missing; wants square or acceptance"},
+    {"unknown law beyond", "beyond = square", "beyond = cubic", 17, "source-size", "beyond",
+     "unknown law 'cubic'; wants square or acceptance"},
+    {"no count", "count = t2 | E | memory\n", "", 48, "repetition", "count", "is missing; wants all or a time factor"},
+    {"no additivity", "[additivity]\nr01 = 400 .. 1400 | 400 .. 1400 | eye skin | F | memory\n", "", 0, "additivity",
+     "", "section is missing or empty"},
+    {"no diffuse time", "r03 = diffuse | 400 .. 1400 | 600", "r03 = glance | 400 .. 1400 | 600", 0, "exposure", "",
+     "has more than one row for glance"},
+    {"unknown kind of time", "= diffuse |", "= difuse |", 61, "exposure", "r03",
+     "unknown kind 'difuse'; did you mean diffuse?"},
+};
+
+/* Loads the text. Returned: the first fault, if any (to be freed by the caller). */
+static enum bw_status load(const char *text, struct bw_table **table, struct bw_faults *faults)
+{
+    struct bw_ini ini = {0};
+    struct bw_error error = {0};
+    *table = NULL;
+    enum bw_status status = bw_ini_read_bytes(text, strlen(text), &ini, faults, &error);
+    if (status == BW_OK)
+        status = bw_table_load(&ini, table, faults, &error);
+    bw_ini_free(&ini);
+    return status;
+}
+
+static char *replaced(const struct bad_case *c)
+{
+    const char *at = strstr(good, c->out);
+    if (at == NULL)
+        fail_msg("the good table has no '%s'", c->out);
+    size_t size = sizeof good + strlen(c->in);
+    char *text = malloc(size);
+    assert_non_null(text);
+    snprintf(text, size, "%.*s%s%s", (int)(at - good), good, c->in, at + strlen(c->out));
+    return text;
+}
+
+static void test_bad(void **state)
+{
+    const struct bad_case *c = *state;
+    char *text = replaced(c);
+    struct bw_table *table;
+    struct bw_faults faults = {0};
+    enum bw_status status = load(text, &table, &faults);
+    free(text);
+    assert_int_equal(status, BW_INPUT);
+    assert_null(table);
+    assert_true(faults.count > 0);
+    for (size_t i = 0; i < faults.count; i++) {
+        const struct bw_fault *fault = &faults.items[i];
+        if (fault->line == c->line && strcmp(fault->section, c->section) == 0 && strcmp(fault->key, c->key) == 0 &&
+            (c->text[0] == '*' || strcmp(fault->text, c->text) == 0)) {
+            bw_faults_free(&faults);
+            return;
+        }
+    }
+    for (size_t i = 0; i < faults.count; i++)
+        print_error("%d [%s] %s: %s\n", faults.items[i].line, faults.items[i].section, faults.items[i].key,
+                    faults.items[i].text);
+    bw_faults_free(&faults);
+    fail_msg("want %d [%s] %s: %s", c->line, c->section, c->key, c->text);
+}
+
+static void test_good(void **state)
+{
+    struct bw_table *table;
+    struct bw_faults faults = {0};
+    const struct bw_exposure exposure = {500.0, 100.0, 0.0, 0.0}, wide = {500.0, 100.0, 0.022, 0.0};
+    const struct bw_exposure patch = {1000.0, 100.0, 0.0, 0.5};
+    struct bw_limit_set limits;
+    (void)state;
+    enum bw_status status = load(good, &table, &faults);
+    for (size_t i = 0; i < faults.count; i++)
+        print_error("%d [%s] %s: %s\n", faults.items[i].line, faults.items[i].section, faults.items[i].key,
+                    faults.items[i].text);
+    assert_int_equal(status, BW_OK);
+    assert_int_equal(bw_limits_eye(table, &exposure, &limits, NULL, NULL), BW_OK);
+    assert_int_equal(limits.count, 2);
+    /* G = 1e6 within a cone of 11 mrad: 1e6 * pi/4 * 0.011^2 = 95.0332 J/m2 */
+    assert_true(limits.limits[1].radiant_exposure_j_m2 > 95.0331 && limits.limits[1].radiant_exposure_j_m2 < 95.0332);
+    assert_int_equal(bw_limits_eye(table, &wide, &limits, NULL, NULL), BW_OK); /* twice the cone: four times */
+    assert_true(limits.limits[1].radiant_exposure_j_m2 > 380.132 && limits.limits[1].radiant_exposure_j_m2 < 380.133);
+    assert_int_equal(bw_limits_skin(table, &patch, &limits, NULL, NULL), BW_OK); /* 10 / 0.5 W/m2 */
+    assert_true(limits.limits[0].irradiance_w_m2 > 19.999 && limits.limits[0].irradiance_w_m2 < 20.001);
+    assert_string_equal(limits.limits[0].source.section, "skin large-area");
+    bw_table_free(table);
+    bw_table_free(NULL);
+    bw_faults_free(&faults);
+}
+
+/* All faults of a file are reported together, in the order of its lines. */
+static void test_all_at_once(void **state)
+{
+    struct bw_table *table;
+    struct bw_faults faults = {0};
+    (void)state;
+    assert_int_equal(load("[table]\nid = A b\n[eye x]\n[skin]\ncovers = 1\nr01 = a | b\n[zebra]\n", &table, &faults),
+                     BW_INPUT);
+    assert_int_equal(faults.count, 8);
+    for (size_t i = 1; i < faults.count; i++)
+        assert_true(faults.items[i - 1].line <= faults.items[i].line);
+    bw_faults_free(&faults);
+}
+
+static void test_empty(void **state)
+{
+    struct bw_table *table;
+    struct bw_ini ini = {0};
+    struct bw_faults faults = {0};
+    struct bw_error error = {0};
+    (void)state;
+    assert_int_equal(bw_table_load(&ini, &table, &faults, &error), BW_INPUT);
+    assert_null(table);
+    assert_int_equal(faults.count, 4);
+    bw_faults_free(&faults);
+}
+
+enum { BAD = sizeof bad_cases / sizeof bad_cases[0] };
+
+int main(void)
+{
+    static struct CMUnitTest tests[BAD + 3];
+    for (size_t i = 0; i < BAD; i++)
+        tests[i] = (struct CMUnitTest){bad_cases[i].name, test_bad, NULL, NULL, &bad_cases[i]};
+    tests[BAD] = (struct CMUnitTest){"the good table", test_good, NULL, NULL, NULL};
+    tests[BAD + 1] = (struct CMUnitTest){"all faults at once", test_all_at_once, NULL, NULL, NULL};
+    tests[BAD + 2] = (struct CMUnitTest){"empty", test_empty, NULL, NULL, NULL};
+    return cmocka_run_group_tests_name("limits bad tables", tests, NULL, NULL) == 0 ? EXIT_SUCCESS : EXIT_FAILURE;
+}
