@@ -35,7 +35,8 @@ bool bw_segments_cross(struct bw_segment a, struct bw_segment b) {
         return false; /* the quick answer for most pairs */
     double a_from = side(b.from, b.to, a.from), a_to = side(b.from, b.to, a.to);
     double b_from = side(a.from, a.to, b.from), b_to = side(a.from, a.to, b.to);
-    if (((a_from > 0 && a_to < 0) || (a_from < 0 && a_to > 0)) && ((b_from > 0 && b_to < 0) || (b_from < 0 && b_to > 0)))
+    if (((a_from > 0 && a_to < 0) || (a_from < 0 && a_to > 0)) &&
+        ((b_from > 0 && b_to < 0) || (b_from < 0 && b_to > 0)))
         return true;
     return touches(a.from, b) || touches(a.to, b) || touches(b.from, a) || touches(b.to, a);
 }

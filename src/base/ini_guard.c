@@ -132,7 +132,8 @@ static bool scan_value(struct scan *scan, const char *key, struct line line, con
         size_t left = *length - (size_t)(rest - *value);
         trim(&rest, &left);
         if (!is_comment(rest, left)) {
-            bw_faults_add(faults, line.number, scan->section, key, "text after the closing quote; one pair of quotes round the whole value");
+            bw_faults_add(faults, line.number, scan->section, key,
+                          "text after the closing quote; one pair of quotes round the whole value");
             return false;
         }
         *length = (size_t)(close - *value) - 1;
@@ -170,12 +171,14 @@ static void scan_key(struct scan *scan, struct line line) {
     }
     trim(&name, &length);
     if (length == 0) {
-        bw_faults_add(scan->faults, line.number, scan->section, "", "no key before the =; `key = value` would be right");
+        bw_faults_add(scan->faults, line.number, scan->section, "",
+                      "no key before the =; `key = value` would be right");
         return;
     }
     if (copy_name(key, name, length, false) < length) {
         bw_faults_add(scan->faults, line.number, scan->section, "",
-                      "`%.*s` is no name for a key; letters, digits, _ and - would be right", shown(length, name), name);
+                      "`%.*s` is no name for a key; letters, digits, _ and - would be right", shown(length, name),
+                      name);
         return;
     }
     const char *value = equals + 1;

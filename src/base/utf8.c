@@ -5,7 +5,8 @@ static bool continues(char c) {
 }
 
 size_t bw_utf8_length(const char *text, size_t left) {
-    /* By first byte: the range of the second, which excludes overlong forms, surrogates and what lies above U+10FFFF. */
+    /* By first byte: the range of the second, which excludes overlong forms, surrogates and what lies above U+10FFFF.
+     */
     static const struct {
         unsigned char first, last, low, high;
         size_t length;

@@ -37,12 +37,12 @@ void bw_working_heading(struct bw_working *working, const char *format, ...) {
     va_start(list, format);
     char *text = bw_print_copy(format, list);
     va_end(list);
-    append(working, (struct bw_step){true, bw_duplicate(""), text, bw_duplicate(""), 0, bw_duplicate(""),
-                                     bw_duplicate("")});
+    append(working,
+           (struct bw_step){true, bw_duplicate(""), text, bw_duplicate(""), 0, bw_duplicate(""), bw_duplicate("")});
 }
 
-void bw_working_step(struct bw_working *working, const char *symbol, double value, const char *unit,
-                     const char *source, const char *formula, const char *numbers, ...) {
+void bw_working_step(struct bw_working *working, const char *symbol, double value, const char *unit, const char *source,
+                     const char *formula, const char *numbers, ...) {
     if (!working)
         return;
     char *filled = NULL;

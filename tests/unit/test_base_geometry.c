@@ -128,7 +128,11 @@ static struct polygon_case {
     {"polygon: dart", {{0., 0.}, {4., 0.}, {1., 1.}, {0., 4.}}, 4, 4., true, false},
     {"polygon: corner within a side", {{0., 0.}, {1., 0.}, {2., 0.}, {2., 2.}, {0., 2.}}, 5, 4., true, true},
     {"polygon: decimal corners within a slanting side",
-     {{0., 0.}, {.1, .3}, {.2, .6}, {.7, 2.1}, {1., 3.}, {0., 3.}}, 6, 1.5, true, true},
+     {{0., 0.}, {.1, .3}, {.2, .6}, {.7, 2.1}, {1., 3.}, {0., 3.}},
+     6,
+     1.5,
+     true,
+     true},
     {"polygon: bow tie", {{0., 0.}, {2., 2.}, {2., 0.}, {0., 2.}}, 4, 0., false, false},
     {"polygon: corner twice", {{0., 0.}, {2., 0.}, {2., 0.}, {2., 2.}, {0., 2.}}, 5, 0., false, false},
     {"polygon: closed explicitly", {{0., 0.}, {2., 0.}, {2., 2.}, {0., 2.}, {0., 0.}}, 5, 0., false, false},
@@ -140,7 +144,11 @@ static struct polygon_case {
     {"polygon: one corner", {{1., 1.}}, 1, 0., false, false},
     {"polygon: none", {{0., 0.}}, 0, 0., false, false},
     {"polygon: five-pointed star",
-     {{0., 1.}, {.5878, -.8090}, {-.9511, .3090}, {.9511, .3090}, {-.5878, -.8090}}, 5, 0., false, false},
+     {{0., 1.}, {.5878, -.8090}, {-.9511, .3090}, {.9511, .3090}, {-.5878, -.8090}},
+     5,
+     0.,
+     false,
+     false},
 };
 
 /* Whatever the corner it begins with and the direction. */
@@ -203,7 +211,8 @@ static void test_inside(void **state) {
 }
 
 int main(void) {
-    struct CMUnitTest tests[COUNT(distances) + COUNT(crossings) + COUNT(mirrors) + COUNT(polygons) + COUNT(insides) + 2];
+    struct CMUnitTest
+        tests[COUNT(distances) + COUNT(crossings) + COUNT(mirrors) + COUNT(polygons) + COUNT(insides) + 2];
     size_t count = 0;
     for (size_t i = 0; i < COUNT(distances); i++)
         tests[count++] = (struct CMUnitTest){distances[i].name, test_distance, NULL, NULL, &distances[i]};

@@ -62,8 +62,8 @@ static struct root_case {
     {"root: zero", line, 0., -1., 3., 0., 0.},
     {"root: cos x = x (Dottie's number)", cosine, 1., 0., 1., 0.73908513321516064, 4 * DBL_EPSILON},
     {"root: a jump", jump, 2.5, 0., 100., 2.5, 4 * DBL_EPSILON},
-    {"root: beam, r = (sqrt(4/(pi E)) - a)/phi", beam, 25.464790894703254, 0., 1e4,
-     (0.22360679774997896 - 2e-3) / 1e-3, 1e-13},
+    {"root: beam, r = (sqrt(4/(pi E)) - a)/phi", beam, 25.464790894703254, 0., 1e4, (0.22360679774997896 - 2e-3) / 1e-3,
+     1e-13},
     {"root: aperture, x = sqrt(-ln(1-c))", aperture, .5, 0., 10., 0.83255461115769776, 1e-15},
 };
 

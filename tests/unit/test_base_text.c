@@ -110,8 +110,8 @@ static void test_text_bytes(void **state) {
 
 /* ---- names ------------------------------------------------------------------------------------ */
 
-static const char *const known[] = {"wavelength_nm", "average_power_w", "peak_power_w", "pulse_duration_s",
-                                    "beam_diameter_mm", "od", "title"};
+static const char *const known[] = {
+    "wavelength_nm", "average_power_w", "peak_power_w", "pulse_duration_s", "beam_diameter_mm", "od", "title"};
 
 static struct name_case {
     const char *name, *word, *want; /* distances by hand */
@@ -198,11 +198,10 @@ static void test_no_working(void **state) {
 
 int main(void) {
     struct CMUnitTest tests[COUNT(names) + 10] = {
-        cmocka_unit_test(test_first_error_wins), cmocka_unit_test(test_long_error),
-        cmocka_unit_test(test_faults),           cmocka_unit_test(test_many_long_faults),
-        cmocka_unit_test(test_text_grows),       cmocka_unit_test(test_text_bytes),
-        cmocka_unit_test(test_name_extremes),    cmocka_unit_test(test_working),
-        cmocka_unit_test(test_long_working),     cmocka_unit_test(test_no_working),
+        cmocka_unit_test(test_first_error_wins), cmocka_unit_test(test_long_error), cmocka_unit_test(test_faults),
+        cmocka_unit_test(test_many_long_faults), cmocka_unit_test(test_text_grows), cmocka_unit_test(test_text_bytes),
+        cmocka_unit_test(test_name_extremes),    cmocka_unit_test(test_working),    cmocka_unit_test(test_long_working),
+        cmocka_unit_test(test_no_working),
     };
     for (size_t i = 0; i < COUNT(names); i++)
         tests[10 + i] = (struct CMUnitTest){names[i].name, test_name, NULL, NULL, &names[i]};
