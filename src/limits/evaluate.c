@@ -14,8 +14,7 @@
 #include <string.h>
 
 /* CE of this source and time (1 if not larger than alpha_min). */
-static double source_size_factor(const struct query *query, double *alpha_max_mrad)
-{
+static double source_size_factor(const struct query *query, double *alpha_max_mrad) {
     const struct source_size *size = &query->table->source_size;
     double alpha = query->subtense_mrad, smallest = size->alpha_min_mrad;
     *alpha_max_mrad = bw_limits_alpha_max_mrad(query->table, query->time_s);
@@ -30,8 +29,7 @@ static double source_size_factor(const struct query *query, double *alpha_max_mr
 
 /* One factor of a row, with its exponent applied. */
 static double use_factor(const struct query *query, const struct factor_use *use, struct bw_limit *limit,
-                         struct product_text *text)
-{
+                         struct product_text *text) {
     const struct factor_row *row = NULL;
     double value, alpha_max_mrad;
     if (use->factor == USE_CE) {
@@ -54,14 +52,12 @@ static double use_factor(const struct query *query, const struct factor_use *use
 }
 
 /* The measuring cone of the photochemical limit [mrad]; where rows meet, the larger, which gives the lower limit. */
-static double cone_mrad(const struct query *query, const struct size_row **row)
-{
+static double cone_mrad(const struct query *query, const struct size_row **row) {
     double gamma = 0.0;
     for (size_t i = 0; i < query->table->cone_count; i++) {
         const struct size_row *cone = &query->table->cones[i];
         struct span times = {cone->from.value_s, cone->to.value_s, false, false};
-        if (!bw_limits_in_span(&cone->wavelength_nm, query->wavelength_nm) ||
-            !bw_limits_in_span(&times, query->time_s))
+        if (!bw_limits_in_span(&cone->wavelength_nm, query->wavelength_nm) || !bw_limits_in_span(&times, query->time_s))
             continue;
         double angle = bw_limits_size(cone, query->time_s);
         if (angle > gamma) {
@@ -73,8 +69,7 @@ static double cone_mrad(const struct query *query, const struct size_row **row)
 }
 
 static double wide_source_factor(const struct query *query, const struct size_row *cone, double gamma_mrad,
-                                 struct bw_limit *limit, struct product_text *text)
-{
+                                 struct bw_limit *limit, struct product_text *text) {
     if (cone == NULL || !(query->subtense_mrad > gamma_mrad))
         return 1.0;
     double value = query->subtense_mrad / gamma_mrad * (query->subtense_mrad / gamma_mrad);
@@ -85,8 +80,7 @@ static double wide_source_factor(const struct query *query, const struct size_ro
 }
 
 /* The smallest aperture of the effect's rows here [m]. */
-static double aperture_m(const struct query *query, enum bw_effect effect)
-{
+static double aperture_m(const struct query *query, enum bw_effect effect) {
     const struct size_row *smallest_row = NULL;
     double smallest_mm = limits_infinity;
     for (size_t i = 0; i < query->table->aperture_count; i++) {
@@ -107,30 +101,28 @@ static double aperture_m(const struct query *query, enum bw_effect effect)
     return smallest_mm * 1e-3;
 }
 
-static bool row_holds(const struct query *query, const struct limit_row *row)
-{
+static bool row_holds(const struct query *query, const struct limit_row *row) {
     if (!bw_limits_in_span(&row->wavelength_nm, query->wavelength_nm))
         return false;
     const struct limit_section *section = &query->table->sections[row->section];
     if (!bw_limits_in_span(&section->subtense_mrad, query->subtense_mrad) ||
         !bw_limits_in_span(&section->area_m2, query->area_m2))
         return false;
-    struct span times = {
-        bw_limits_edge_s(query->table, &row->from, query->wavelength_nm, query->subtense_mrad),
-        bw_limits_edge_s(query->table, &row->to, query->wavelength_nm, query->subtense_mrad), false, false};
+    struct span times = {bw_limits_edge_s(query->table, &row->from, query->wavelength_nm, query->subtense_mrad),
+                         bw_limits_edge_s(query->table, &row->to, query->wavelength_nm, query->subtense_mrad), false,
+                         false};
     return bw_limits_in_span(&times, query->time_s);
 }
 
-static void evaluate_row(const struct query *query, const struct limit_row *row, struct bw_limit *limit)
-{
+static void evaluate_row(const struct query *query, const struct limit_row *row, struct bw_limit *limit) {
     const struct limit_section *section = &query->table->sections[row->section];
     struct product_text text;
     const struct size_row *cone = NULL;
     double gamma_mrad = section->effect == BW_RETINA_PHOTOCHEMICAL ? cone_mrad(query, &cone) : 0.0;
     bool radiance = row->quantity == QUANTITY_G || row->quantity == QUANTITY_L;
     limit->effect = section->effect;
-    limit->source = (struct bw_source_note){query->table->id, section->name, row->note.key, row->note.clause,
-                                            row->note.known};
+    limit->source =
+        (struct bw_source_note){query->table->id, section->name, row->note.key, row->note.clause, row->note.known};
     limit->factor_count = 0;
     limit->acceptance_rad = limits_infinity;
     limit->printed_as_irradiance = row->quantity == QUANTITY_E || row->quantity == QUANTITY_L;
@@ -153,8 +145,7 @@ static void evaluate_row(const struct query *query, const struct limit_row *row,
 }
 
 /* The rows that may hold here. */
-static const struct band *find_band(const struct band_index *index, double wavelength_nm)
-{
+static const struct band *find_band(const struct band_index *index, double wavelength_nm) {
     size_t low = 0, high = index->count;
     if (high == 0)
         return NULL;
@@ -169,8 +160,7 @@ static const struct band *find_band(const struct band_index *index, double wavel
 }
 
 /* Keeps the lowest limit of each effect, in the order of the effects. */
-static void keep_lowest(struct bw_limit_set *limits, const struct bw_limit *limit)
-{
+static void keep_lowest(struct bw_limit_set *limits, const struct bw_limit *limit) {
     size_t at = 0;
     while (at < limits->count && limits->limits[at].effect < limit->effect)
         at++;
@@ -186,8 +176,7 @@ static void keep_lowest(struct bw_limit_set *limits, const struct bw_limit *limi
 }
 
 static enum bw_status check_arguments(const struct bw_table *table, const struct bw_exposure *exposure,
-                                      struct bw_error *error)
-{
+                                      struct bw_error *error) {
     if (table == NULL || exposure == NULL)
         return bw_error_set(error, BW_ARGUMENT, "no rule set or no exposure given");
     if (!(exposure->wavelength_nm >= 0.0))
@@ -206,8 +195,7 @@ static enum bw_status check_arguments(const struct bw_table *table, const struct
 }
 
 /* The times that some row covers at this wavelength. */
-static struct span covered_times(const struct query *query)
-{
+static struct span covered_times(const struct query *query) {
     struct span times = {limits_infinity, 0.0, false, false};
     for (size_t i = 0; i < query->table->row_count; i++) {
         const struct limit_row *row = &query->table->rows[i];
@@ -220,8 +208,7 @@ static struct span covered_times(const struct query *query)
     return times;
 }
 
-static enum bw_status no_row(const struct query *query, struct bw_error *error)
-{
+static enum bw_status no_row(const struct query *query, struct bw_error *error) {
     char low[LIMITS_NUMBER_SIZE], high[LIMITS_NUMBER_SIZE], value[LIMITS_NUMBER_SIZE];
     double low_nm, high_nm;
     const char *target = query->target == BW_EYE ? "eye" : "skin";
@@ -240,16 +227,16 @@ static enum bw_status no_row(const struct query *query, struct bw_error *error)
 }
 
 enum bw_status bw_limits(const struct bw_table *table, enum bw_target target, const struct bw_exposure *exposure,
-                         struct bw_limit_set *limits, struct bw_working *working, struct bw_error *error)
-{
+                         struct bw_limit_set *limits, struct bw_working *working, struct bw_error *error) {
     struct bw_limit limit;
     limits->count = limits->governing = 0;
     limits->limits[0].radiant_exposure_j_m2 = limits->limits[0].irradiance_w_m2 = limits_nan;
     enum bw_status status = check_arguments(table, exposure, error);
     if (status != BW_OK)
         return status;
-    struct query query = {table, target, exposure->wavelength_nm, exposure->exposure_s,
-                          exposure->subtense_rad * 1e3, exposure->area_m2, working};
+    struct query query = {
+        table,  target, exposure->wavelength_nm, exposure->exposure_s, exposure->subtense_rad * 1e3, exposure->area_m2,
+        working};
     const struct band_index *index = &table->index[target];
     const struct band *band = find_band(index, query.wavelength_nm);
     for (size_t i = 0; band != NULL && i < band->count; i++) {
@@ -270,13 +257,11 @@ enum bw_status bw_limits(const struct bw_table *table, enum bw_target target, co
 }
 
 enum bw_status bw_limits_eye(const struct bw_table *table, const struct bw_exposure *exposure,
-                             struct bw_limit_set *limits, struct bw_working *working, struct bw_error *error)
-{
+                             struct bw_limit_set *limits, struct bw_working *working, struct bw_error *error) {
     return bw_limits(table, BW_EYE, exposure, limits, working, error);
 }
 
 enum bw_status bw_limits_skin(const struct bw_table *table, const struct bw_exposure *exposure,
-                              struct bw_limit_set *limits, struct bw_working *working, struct bw_error *error)
-{
+                              struct bw_limit_set *limits, struct bw_working *working, struct bw_error *error) {
     return bw_limits(table, BW_SKIN, exposure, limits, working, error);
 }

@@ -9,16 +9,14 @@
 #include <string.h>
 
 const char *bw_limits_source_text(char out[LIMITS_SOURCE_SIZE], const char *table, const char *section,
-                                  const struct row_note *note)
-{
+                                  const struct row_note *note) {
     snprintf(out, LIMITS_SOURCE_SIZE, "%s, %s %s, %s%s", table, section, note->key, note->clause,
              note->known == BW_MEMORY ? ", from memory" : "");
     return out;
 }
 
 static void append(char text[PRODUCT_SIZE], const char *format, ...) BW_PRINTF(2, 3);
-static void append(char text[PRODUCT_SIZE], const char *format, ...)
-{
+static void append(char text[PRODUCT_SIZE], const char *format, ...) {
     size_t length = strlen(text);
     va_list arguments;
     va_start(arguments, format);
@@ -27,8 +25,7 @@ static void append(char text[PRODUCT_SIZE], const char *format, ...)
 }
 
 /* "t2^-0.25" -> "T2^-0.25", "ca" -> "CA": the trade writes factors in capitals. */
-static void capitals(char out[LIMITS_NUMBER_SIZE], const char *label)
-{
+static void capitals(char out[LIMITS_NUMBER_SIZE], const char *label) {
     size_t i = 0;
     for (; label[i] != '\0' && i + 1 < LIMITS_NUMBER_SIZE; i++)
         out[i] = (char)toupper((unsigned char)label[i]);
@@ -36,8 +33,7 @@ static void capitals(char out[LIMITS_NUMBER_SIZE], const char *label)
 }
 
 void bw_working_row(const struct query *query, const struct limit_row *row, struct product_text *text,
-                    double gamma_mrad)
-{
+                    double gamma_mrad) {
     char value[LIMITS_NUMBER_SIZE], power[LIMITS_NUMBER_SIZE], time[LIMITS_NUMBER_SIZE], angle[LIMITS_NUMBER_SIZE];
     const struct limit_section *section = &query->table->sections[row->section];
     bw_working_heading(query->working, "Limit: %s, %s, row %s", query->table->id, section->name, row->note.key);
@@ -56,8 +52,7 @@ void bw_working_row(const struct query *query, const struct limit_row *row, stru
 }
 
 static void factor_formula(char symbols[PRODUCT_SIZE], char numbers[PRODUCT_SIZE], const struct factor_row *row,
-                           const char *argument, double x)
-{
+                           const char *argument, double x) {
     char offset[LIMITS_NUMBER_SIZE], scale[LIMITS_NUMBER_SIZE], origin[LIMITS_NUMBER_SIZE], at[LIMITS_NUMBER_SIZE];
     symbols[0] = numbers[0] = '\0';
     if (row->constant) {
@@ -75,8 +70,7 @@ static void factor_formula(char symbols[PRODUCT_SIZE], char numbers[PRODUCT_SIZE
 }
 
 void bw_working_factor(const struct query *query, const struct factor_use *use, const struct factor_row *row,
-                       double value, struct product_text *text)
-{
+                       double value, struct product_text *text) {
     char symbol[LIMITS_NUMBER_SIZE], formula[PRODUCT_SIZE], numbers[PRODUCT_SIZE], source[LIMITS_SOURCE_SIZE];
     char number[LIMITS_NUMBER_SIZE];
     capitals(symbol, use->label);
@@ -111,8 +105,7 @@ void bw_working_factor(const struct query *query, const struct factor_use *use, 
 }
 
 /* The row of alpha_max that holds at this time. */
-static const struct size_row *alpha_max_row(const struct query *query)
-{
+static const struct size_row *alpha_max_row(const struct query *query) {
     const struct source_size *size = &query->table->source_size;
     for (size_t i = 0; i < size->count; i++) {
         struct span times = {size->rows[i].from.value_s, size->rows[i].to.value_s, false, false};
@@ -122,8 +115,7 @@ static const struct size_row *alpha_max_row(const struct query *query)
     return NULL;
 }
 
-void bw_working_ce(const struct query *query, double value, double alpha_max_mrad)
-{
+void bw_working_ce(const struct query *query, double value, double alpha_max_mrad) {
     const struct source_size *size = &query->table->source_size;
     char source[LIMITS_SOURCE_SIZE], low[LIMITS_NUMBER_SIZE], at[LIMITS_NUMBER_SIZE];
     const struct size_row *row = alpha_max_row(query);
@@ -157,8 +149,7 @@ void bw_working_ce(const struct query *query, double value, double alpha_max_mra
 }
 
 void bw_working_cone(const struct query *query, const struct size_row *cone, double gamma_mrad, double value,
-                     struct product_text *text)
-{
+                     struct product_text *text) {
     char source[LIMITS_SOURCE_SIZE], at[LIMITS_NUMBER_SIZE];
     append(text->symbols, " (alpha/gamma)^2");
     append(text->numbers, " * %.6g", value);
@@ -169,8 +160,7 @@ void bw_working_cone(const struct query *query, const struct size_row *cone, dou
 }
 
 void bw_working_limit(const struct query *query, const struct limit_row *row, const struct bw_limit *limit,
-                      const struct product_text *text)
-{
+                      const struct product_text *text) {
     char source[LIMITS_SOURCE_SIZE], time[LIMITS_NUMBER_SIZE];
     const struct limit_section *section = &query->table->sections[row->section];
     bw_limits_source_text(source, query->table->id, section->name, &row->note);
@@ -188,8 +178,7 @@ void bw_working_limit(const struct query *query, const struct limit_row *row, co
     }
 }
 
-void bw_working_aperture(const struct query *query, const struct size_row *row, double aperture_mm)
-{
+void bw_working_aperture(const struct query *query, const struct size_row *row, double aperture_mm) {
     char source[LIMITS_SOURCE_SIZE], value[LIMITS_NUMBER_SIZE], power[LIMITS_NUMBER_SIZE], at[LIMITS_NUMBER_SIZE];
     char formula[PRODUCT_SIZE] = "", numbers[PRODUCT_SIZE] = "";
     if (row == NULL)
@@ -204,17 +193,15 @@ void bw_working_aperture(const struct query *query, const struct size_row *row, 
                     bw_limits_source_text(source, query->table->id, "aperture", &row->note), formula, "%s", numbers);
 }
 
-void bw_working_acceptance(const struct query *query, double alpha_max_mrad)
-{
+void bw_working_acceptance(const struct query *query, double alpha_max_mrad) {
     char source[LIMITS_SOURCE_SIZE];
-    bw_working_step(query->working, "acceptance", alpha_max_mrad, "mrad",
-                    bw_limits_source_text(source, query->table->id, "source-size",
-                                          &query->table->source_size.beyond_note),
-                    "the exposure is measured within alpha_max", "%s", "");
+    bw_working_step(
+        query->working, "acceptance", alpha_max_mrad, "mrad",
+        bw_limits_source_text(source, query->table->id, "source-size", &query->table->source_size.beyond_note),
+        "the exposure is measured within alpha_max", "%s", "");
 }
 
-void bw_working_lowest(const struct query *query, const struct bw_limit_set *limits)
-{
+void bw_working_lowest(const struct query *query, const struct bw_limit_set *limits) {
     char numbers[PRODUCT_SIZE] = "";
     const struct bw_limit *governing = &limits->limits[limits->governing];
     char source[LIMITS_SOURCE_SIZE];

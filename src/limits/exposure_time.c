@@ -3,8 +3,7 @@
 
 #include <math.h>
 
-static const struct time_row *find_time(const struct bw_table *table, enum time_kind kind, double wavelength_nm)
-{
+static const struct time_row *find_time(const struct bw_table *table, enum time_kind kind, double wavelength_nm) {
     for (size_t i = 0; i < table->time_count; i++)
         if (table->times[i].kind == kind && bw_limits_in_span(&table->times[i].wavelength_nm, wavelength_nm))
             return &table->times[i];
@@ -13,8 +12,7 @@ static const struct time_row *find_time(const struct bw_table *table, enum time_
 
 /* The row if the kind holds for every wavelength: the longest one, should there be several. */
 static const struct time_row *for_all(const struct bw_table *table, enum time_kind kind, const double *wavelengths_nm,
-                                      size_t count)
-{
+                                      size_t count) {
     const struct time_row *longest = NULL;
     for (size_t i = 0; i < count; i++) {
         const struct time_row *row = find_time(table, kind, wavelengths_nm[i]);
@@ -27,8 +25,7 @@ static const struct time_row *for_all(const struct bw_table *table, enum time_ki
 }
 
 static const struct time_row *for_any(const struct bw_table *table, enum time_kind kind, const double *wavelengths_nm,
-                                      size_t count)
-{
+                                      size_t count) {
     for (size_t i = 0; i < count; i++) {
         const struct time_row *row = find_time(table, kind, wavelengths_nm[i]);
         if (row != NULL)
@@ -40,8 +37,7 @@ static const struct time_row *for_any(const struct bw_table *table, enum time_ki
 /* The kinds that a way of viewing may take, the first that holds for all wavelengths. Not a visible beam: the blink
  * does not help, so an alignment beam counts as a glance. The skin never has the 0.25 s: no reflex protects it. */
 static const struct time_row *choose(const struct bw_table *table, enum bw_viewing viewing,
-                                     const double *wavelengths_nm, size_t count)
-{
+                                     const double *wavelengths_nm, size_t count) {
     enum time_kind first = TIME_GLANCE, second = TIME_GLANCE;
     switch (viewing) {
     case BW_GLANCE:
@@ -69,8 +65,7 @@ static const struct time_row *choose(const struct bw_table *table, enum bw_viewi
 
 /* A wavelength without a row must not hide behind one that has one. */
 static enum bw_status check_wavelengths(const struct bw_table *table, const double *wavelengths_nm, size_t count,
-                                        struct bw_error *error)
-{
+                                        struct bw_error *error) {
     if (count == 0)
         return bw_error_set(error, BW_ARGUMENT, "no wavelength given for the exposure time");
     for (size_t i = 0; i < count; i++) {
@@ -87,8 +82,7 @@ static enum bw_status check_wavelengths(const struct bw_table *table, const doub
 
 enum bw_status bw_limits_exposure_time(const struct bw_table *table, enum bw_viewing viewing,
                                        const double *wavelengths_nm, size_t count, struct bw_exposure_time *time,
-                                       struct bw_error *error)
-{
+                                       struct bw_error *error) {
     *time = (struct bw_exposure_time){.exposure_s = limits_nan};
     enum bw_status status = check_wavelengths(table, wavelengths_nm, count, error);
     if (status != BW_OK)

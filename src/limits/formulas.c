@@ -4,18 +4,16 @@
 
 #include <math.h>
 
-bool bw_limits_in_span(const struct span *span, double x)
-{
+bool bw_limits_in_span(const struct span *span, double x) {
     /* An open edge decides for the stricter neighbour (`303 .. <304` holds just below 304); `>0.25` begins where the
      * number is no longer 0.25 but for rounding. */
-    bool above = span->open_low ? x > span->low * (1.0 + limits_edge_rounding)
-                                : x >= span->low * (1.0 - limits_edge_rounding);
+    bool above =
+        span->open_low ? x > span->low * (1.0 + limits_edge_rounding) : x >= span->low * (1.0 - limits_edge_rounding);
     bool below = span->open_high ? x < span->high : x <= span->high * (1.0 + limits_edge_rounding);
     return above && below;
 }
 
-struct power bw_limits_power_of(double exponent)
-{
+struct power bw_limits_power_of(double exponent) {
     static const struct {
         double exponent;
         enum power_law law;
@@ -29,8 +27,7 @@ struct power bw_limits_power_of(double exponent)
     return power;
 }
 
-double bw_limits_raise(double base, const struct power *power)
-{
+double bw_limits_raise(double base, const struct power *power) {
     double root, result;
     switch (power->law) { /* square roots are exact to half a unit each: as good as pow() and much faster */
     case POWER_0:
@@ -59,16 +56,14 @@ double bw_limits_raise(double base, const struct power *power)
     return power->inverse ? 1.0 / result : result;
 }
 
-static double factor_row_value(const struct factor_row *row, double x)
-{
+static double factor_row_value(const struct factor_row *row, double x) {
     if (row->constant)
         return row->offset + row->scale;
     return row->offset + row->scale * pow(10.0, row->slope * (x - row->origin));
 }
 
 double bw_limits_factor(const struct bw_table *table, int factor, double x, const struct power *power,
-                        const struct factor_row **row)
-{
+                        const struct factor_row **row) {
     const struct factor *f = &table->factors[factor];
     double lowest = limits_nan;
     for (size_t i = f->first; i < f->first + f->count; i++) {
@@ -85,28 +80,24 @@ double bw_limits_factor(const struct bw_table *table, int factor, double x, cons
     return lowest;
 }
 
-double bw_limits_factor_at(const struct bw_table *table, int factor, double wavelength_nm, double subtense_mrad)
-{
+double bw_limits_factor_at(const struct bw_table *table, int factor, double wavelength_nm, double subtense_mrad) {
     static const struct power first = {1.0, POWER_1, false};
     double x = table->factors[factor].argument == BY_SUBTENSE_MRAD ? subtense_mrad : wavelength_nm;
     return bw_limits_factor(table, factor, x, &first, NULL);
 }
 
 double bw_limits_edge_s(const struct bw_table *table, const struct edge *edge, double wavelength_nm,
-                        double subtense_mrad)
-{
+                        double subtense_mrad) {
     if (edge->factor == EDGE_IS_NUMBER)
         return edge->value_s;
     return bw_limits_factor_at(table, edge->factor, wavelength_nm, subtense_mrad);
 }
 
-double bw_limits_size(const struct size_row *row, double time_s)
-{
+double bw_limits_size(const struct size_row *row, double time_s) {
     return row->value * bw_limits_raise(time_s, &row->time_power);
 }
 
-double bw_limits_alpha_max_mrad(const struct bw_table *table, double time_s)
-{
+double bw_limits_alpha_max_mrad(const struct bw_table *table, double time_s) {
     const struct source_size *size = &table->source_size;
     double smallest = limits_infinity;
     if (size->count > 0 && time_s < size->rows[0].from.value_s)

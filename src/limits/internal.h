@@ -62,7 +62,7 @@ enum { EDGE_IS_NUMBER = -1 };
 
 enum { USE_CE = -1, USE_AREA = -2 }; /* factors that are built in */
 struct factor_use {
-    int factor; /* index, or USE_... */
+    int factor;        /* index, or USE_... */
     const char *label; /* "t2^-0.25" */
     struct power power;
 };
@@ -87,7 +87,7 @@ struct limit_section {
     struct span subtense_mrad, area_m2; /* condition on the source and on the exposed skin */
     struct span wavelength_nm;          /* `covers` */
     struct edge from, to;
-    size_t first, count; /* in bw_table.rows */
+    size_t first, count;   /* in bw_table.rows */
     int line, covers_line; /* covers_line 0: not given */
 };
 
@@ -136,7 +136,7 @@ struct repetition {
 enum { COUNT_ALL = -1 };
 
 enum pulse_kind { PULSE_ANY, PULSE_SHORT, PULSE_LONG }; /* short: not longer than Ti */
-struct train_row { /* max(floor, scale * N^power), at most 1 */
+struct train_row {                                      /* max(floor, scale * N^power), at most 1 */
     enum pulse_kind pulse;
     struct span subtense_mrad;
     bool low_is_alpha_max, high_is_alpha_max; /* that edge is alpha_max at the pulse's duration */

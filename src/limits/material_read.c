@@ -30,33 +30,29 @@ static const char *const key_names[] = {"title",         "finish",           "re
                                         "transmittance", "refractive_index", "source",      "known"};
 enum { KEY_COUNT = 8 };
 
-static void fault(struct material_reading *reading, const struct bw_ini_entry *entry, const char *text)
-{
+static void fault(struct material_reading *reading, const struct bw_ini_entry *entry, const char *text) {
     bw_faults_add(reading->faults, entry->line, entry->section, entry->key, "%s", text);
 }
 
-static double read_number(struct material_reading *reading, const struct bw_ini_entry *entry, double low, double high)
-{
+static double read_number(struct material_reading *reading, const struct bw_ini_entry *entry, double low, double high) {
     char text[120], low_text[LIMITS_NUMBER_SIZE], high_text[LIMITS_NUMBER_SIZE];
     double value;
     if (bw_parse_number(entry->value, &value) && value >= low && value <= high)
         return value;
-    snprintf(text, sizeof text, "'%.40s' is not a number from %s to %s", entry->value,
-             bw_limits_number(low_text, low), bw_limits_number(high_text, high));
+    snprintf(text, sizeof text, "'%.40s' is not a number from %s to %s", entry->value, bw_limits_number(low_text, low),
+             bw_limits_number(high_text, high));
     fault(reading, entry, text);
     return 0.0;
 }
 
-static void read_text(struct material_reading *reading, const struct bw_ini_entry *entry, char out[BW_TITLE_SIZE])
-{
+static void read_text(struct material_reading *reading, const struct bw_ini_entry *entry, char out[BW_TITLE_SIZE]) {
     if (snprintf(out, BW_TITLE_SIZE, "%s", entry->value) >= BW_TITLE_SIZE)
         fault(reading, entry, "is too long; wants at most 199 bytes");
     else if (out[0] == '\0')
         fault(reading, entry, "is empty; wants a text");
 }
 
-static void read_finish(struct material_reading *reading, const struct bw_ini_entry *entry)
-{
+static void read_finish(struct material_reading *reading, const struct bw_ini_entry *entry) {
     static const enum bw_finish finishes[] = {BW_MATT, BW_MIRROR, BW_GLOSS, BW_GLASS};
     for (size_t i = 0; i < 4; i++)
         if (strcmp(entry->value, bw_finish_name(finishes[i])) == 0) {
@@ -66,8 +62,7 @@ static void read_finish(struct material_reading *reading, const struct bw_ini_en
     fault(reading, entry, "unknown finish; wants matt, mirror, gloss or glass");
 }
 
-static void read_value(struct material_reading *reading, const struct bw_ini_entry *entry, enum material_key key)
-{
+static void read_value(struct material_reading *reading, const struct bw_ini_entry *entry, enum material_key key) {
     struct bw_material *material = reading->material;
     switch (key) {
     case KEY_TITLE:
@@ -99,8 +94,7 @@ static void read_value(struct material_reading *reading, const struct bw_ini_ent
     }
 }
 
-static void read_entry(struct material_reading *reading, const struct bw_ini_entry *entry)
-{
+static void read_entry(struct material_reading *reading, const struct bw_ini_entry *entry) {
     if (reading->material == NULL)
         return;
     for (unsigned i = 0; i < KEY_COUNT; i++)
@@ -111,20 +105,19 @@ static void read_entry(struct material_reading *reading, const struct bw_ini_ent
             read_value(reading, entry, (enum material_key)i);
             return;
         }
-    fault(reading, entry, "unknown key; wants title, finish, reflectance, matt_reflectance, transmittance, "
-                          "refractive_index, source or known");
+    fault(reading, entry,
+          "unknown key; wants title, finish, reflectance, matt_reflectance, transmittance, "
+          "refractive_index, source or known");
 }
 
-static void missing(struct material_reading *reading, enum material_key key)
-{
+static void missing(struct material_reading *reading, enum material_key key) {
     if (!(reading->given & (1u << key)))
         bw_faults_add(reading->faults, reading->line, reading->ini->entries[0].section, key_names[key],
                       "is missing in [material %s]", reading->material->name);
 }
 
 /* What the finish asks for, once all keys of the section are read. */
-static void end_material(struct material_reading *reading)
-{
+static void end_material(struct material_reading *reading) {
     struct bw_material *material = reading->material;
     if (material == NULL)
         return;
@@ -154,8 +147,7 @@ static void end_material(struct material_reading *reading)
         material->matt_reflectance = material->reflectance;
 }
 
-static void begin_section(struct material_reading *reading, const struct bw_ini_entry *entry)
-{
+static void begin_section(struct material_reading *reading, const struct bw_ini_entry *entry) {
     end_material(reading);
     reading->material = NULL;
     if (strcmp(entry->section, "materials") == 0)
@@ -175,15 +167,13 @@ static void begin_section(struct material_reading *reading, const struct bw_ini_
     reading->given = 0;
 }
 
-static int compare_names(const void *a, const void *b)
-{
+static int compare_names(const void *a, const void *b) {
     const struct bw_material *first = a, *second = b;
     return strcmp(first->name, second->name);
 }
 
 enum bw_status bw_limits_materials_read(const struct bw_ini *ini, struct bw_material **materials, size_t *count,
-                                        struct bw_faults *faults, struct bw_error *error)
-{
+                                        struct bw_faults *faults, struct bw_error *error) {
     size_t faults_before = faults->count;
     struct material_reading reading = {.ini = ini, .faults = faults};
     *materials = NULL;

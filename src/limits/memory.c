@@ -13,13 +13,11 @@ struct memory {
     struct block *blocks;
 };
 
-struct memory *bw_limits_memory_new(void)
-{
+struct memory *bw_limits_memory_new(void) {
     return calloc(1, sizeof(struct memory));
 }
 
-void *bw_limits_memory_take(struct memory *memory, size_t count, size_t size)
-{
+void *bw_limits_memory_take(struct memory *memory, size_t count, size_t size) {
     if (size != 0 && count > (SIZE_MAX - sizeof(struct block)) / size)
         return NULL;
     struct block *block = calloc(1, sizeof *block + count * size);
@@ -30,8 +28,7 @@ void *bw_limits_memory_take(struct memory *memory, size_t count, size_t size)
     return block->bytes;
 }
 
-const char *bw_limits_memory_copy(struct memory *memory, const char *string)
-{
+const char *bw_limits_memory_copy(struct memory *memory, const char *string) {
     size_t size = strlen(string) + 1;
     char *copy = bw_limits_memory_take(memory, size, 1);
     if (copy != NULL)
@@ -39,8 +36,7 @@ const char *bw_limits_memory_copy(struct memory *memory, const char *string)
     return copy;
 }
 
-void bw_limits_memory_free(struct memory *memory)
-{
+void bw_limits_memory_free(struct memory *memory) {
     if (memory == NULL)
         return;
     for (struct block *block = memory->blocks; block != NULL;) {

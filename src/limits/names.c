@@ -6,8 +6,7 @@
 #include <stdlib.h>
 #include <string.h>
 
-const char *bw_effect_name(enum bw_effect effect)
-{
+const char *bw_effect_name(enum bw_effect effect) {
     switch (effect) {
     case BW_RETINA_THERMAL:
         return "retina-thermal";
@@ -23,8 +22,7 @@ const char *bw_effect_name(enum bw_effect effect)
     return "unknown";
 }
 
-const char *bw_finish_name(enum bw_finish finish)
-{
+const char *bw_finish_name(enum bw_finish finish) {
     switch (finish) {
     case BW_MATT:
         return "matt";
@@ -38,33 +36,28 @@ const char *bw_finish_name(enum bw_finish finish)
     return "unknown";
 }
 
-const char *bw_limits_time_kind_name(enum time_kind kind)
-{
+const char *bw_limits_time_kind_name(enum time_kind kind) {
     static const char *const names[TIME_KINDS] = {"visible",     "glance",    "diffuse",    "skin",
                                                   "ultraviolet", "alignment", "working-day"};
     return names[kind];
 }
 
-const char *bw_limits_quantity_name(enum quantity quantity)
-{
+const char *bw_limits_quantity_name(enum quantity quantity) {
     static const char *const names[] = {"H", "E", "G", "L"};
     return names[quantity];
 }
 
-const char *bw_limits_quantity_unit(enum quantity quantity)
-{
+const char *bw_limits_quantity_unit(enum quantity quantity) {
     static const char *const units[] = {"J/m2", "W/m2", "J/(m2 sr)", "W/(m2 sr)"};
     return units[quantity];
 }
 
-const char *bw_limits_pulse_name(enum pulse_kind pulse)
-{
+const char *bw_limits_pulse_name(enum pulse_kind pulse) {
     static const char *const names[] = {"any", "short", "long"};
     return names[pulse];
 }
 
-const char *bw_limits_number(char out[LIMITS_NUMBER_SIZE], double value)
-{
+const char *bw_limits_number(char out[LIMITS_NUMBER_SIZE], double value) {
     char text[LIMITS_NUMBER_SIZE] = "";
     int digits = 1;
     if (!isfinite(value)) {
@@ -93,8 +86,7 @@ const char *bw_limits_number(char out[LIMITS_NUMBER_SIZE], double value)
     return out;
 }
 
-const char *bw_limits_span(char out[LIMITS_SPAN_SIZE], const struct span *span)
-{
+const char *bw_limits_span(char out[LIMITS_SPAN_SIZE], const struct span *span) {
     char low[LIMITS_NUMBER_SIZE], high[LIMITS_NUMBER_SIZE] = "";
     if (isfinite(span->high))
         bw_limits_number(high, span->high);

@@ -78,8 +78,7 @@ void bw_reading_fault(struct reading *reading, const struct bw_ini_entry *entry,
 /* The clause and known of the last two cells. */
 struct row_note bw_reading_note(struct reading *reading, struct cells *cells);
 /* Rows are numbered r01, r02 ... in the order of the page: a slipped or doubled line shows. */
-bool bw_reading_row_number(struct reading *reading, const struct bw_ini_entry *entry, const char *prefix,
-                           size_t *rows);
+bool bw_reading_row_number(struct reading *reading, const struct bw_ini_entry *entry, const char *prefix, size_t *rows);
 int bw_reading_factor(const struct reading *reading, const char *name); /* index; -1 if unknown */
 
 /* table_read_rows.c: factors, limits, apertures, cones, source size */

@@ -7,8 +7,7 @@
 #include <stdio.h>
 #include <string.h>
 
-void bw_cells_fault(struct cells *cells, const char *format, ...)
-{
+void bw_cells_fault(struct cells *cells, const char *format, ...) {
     char text[CELL_SIZE * 3];
     va_list arguments;
     va_start(arguments, format);
@@ -19,8 +18,7 @@ void bw_cells_fault(struct cells *cells, const char *format, ...)
 }
 
 /* Copies the text from..to without the blanks around it. Returns: false if it does not fit. */
-static bool copy_trimmed(char out[CELL_SIZE], const char *from, const char *to)
-{
+static bool copy_trimmed(char out[CELL_SIZE], const char *from, const char *to) {
     while (from < to && isspace((unsigned char)*from))
         from++;
     while (to > from && isspace((unsigned char)to[-1]))
@@ -33,8 +31,7 @@ static bool copy_trimmed(char out[CELL_SIZE], const char *from, const char *to)
     return true;
 }
 
-static size_t count_columns(const char *text)
-{
+static size_t count_columns(const char *text) {
     size_t count = 1;
     for (; *text != '\0'; text++)
         if (*text == '|')
@@ -43,8 +40,7 @@ static size_t count_columns(const char *text)
 }
 
 bool bw_cells_split(struct cells *cells, const struct bw_ini_entry *entry, struct bw_faults *faults,
-                    const char *columns)
-{
+                    const char *columns) {
     cells->entry = entry;
     cells->faults = faults;
     cells->good = true;
@@ -69,8 +65,7 @@ bool bw_cells_split(struct cells *cells, const struct bw_ini_entry *entry, struc
     return cells->good;
 }
 
-static double parse_quotient(const char *text)
-{
+static double parse_quotient(const char *text) {
     char top[CELL_SIZE];
     double dividend, divisor, value;
     const char *slash = strchr(text, '/');
@@ -81,8 +76,7 @@ static double parse_quotient(const char *text)
     return dividend / divisor;
 }
 
-static double number_within(struct cells *cells, const char *text, const char *what, double low, double high)
-{
+static double number_within(struct cells *cells, const char *text, const char *what, double low, double high) {
     char low_text[LIMITS_NUMBER_SIZE], high_text[LIMITS_NUMBER_SIZE];
     double value = parse_quotient(text);
     if (!isfinite(value)) {
@@ -97,14 +91,12 @@ static double number_within(struct cells *cells, const char *text, const char *w
     return value;
 }
 
-double bw_cells_number(struct cells *cells, size_t column, const char *what, double low, double high)
-{
+double bw_cells_number(struct cells *cells, size_t column, const char *what, double low, double high) {
     return number_within(cells, cells->cell[column], what, low, high);
 }
 
 bool bw_cells_span_texts(struct cells *cells, size_t column, const char *what, char low[CELL_SIZE],
-                         char high[CELL_SIZE], struct span *open)
-{
+                         char high[CELL_SIZE], struct span *open) {
     const char *text = cells->cell[column];
     const char *dots = strstr(text, "..");
     if (dots == NULL || dots[2] == '.') {
@@ -120,8 +112,7 @@ bool bw_cells_span_texts(struct cells *cells, size_t column, const char *what, c
            copy_trimmed(high, to + (open->open_high ? 1 : 0), text + strlen(text));
 }
 
-struct span bw_cells_span(struct cells *cells, size_t column, const char *what, double low, double high, int allowed)
-{
+struct span bw_cells_span(struct cells *cells, size_t column, const char *what, double low, double high, int allowed) {
     char low_text[CELL_SIZE], high_text[CELL_SIZE];
     struct span span = {limits_nan, limits_nan, false, false};
     if (!bw_cells_span_texts(cells, column, what, low_text, high_text, &span))
@@ -138,14 +129,12 @@ struct span bw_cells_span(struct cells *cells, size_t column, const char *what, 
     return span;
 }
 
-struct span bw_cells_wavelength(struct cells *cells, size_t column)
-{
+struct span bw_cells_wavelength(struct cells *cells, size_t column) {
     return bw_cells_span(cells, column, "wavelength", limits_wavelength_low_nm, limits_wavelength_high_nm,
                          EDGES_OPEN_HIGH);
 }
 
-size_t bw_cells_word(struct cells *cells, size_t column, const char *what, const char *const *words, size_t count)
-{
+size_t bw_cells_word(struct cells *cells, size_t column, const char *what, const char *const *words, size_t count) {
     const char *word = cells->cell[column];
     for (size_t i = 0; i < count; i++)
         if (strcmp(word, words[i]) == 0)
@@ -154,7 +143,10 @@ size_t bw_cells_word(struct cells *cells, size_t column, const char *what, const
     char list[CELL_SIZE] = "";
     for (size_t i = 0, length = 0; i < count && length < sizeof list; i++)
         length += (size_t)snprintf(list + length, sizeof list - length, "%s%s",
-                                   i == 0 ? "" : i + 1 == count ? " or " : ", ", words[i]);
+                                   i == 0           ? ""
+                                   : i + 1 == count ? " or "
+                                                    : ", ",
+                                   words[i]);
     if (nearest != NULL && strlen(word) > 2)
         bw_cells_fault(cells, "unknown %s '%s'; did you mean %s?", what, word, nearest);
     else
@@ -162,8 +154,7 @@ size_t bw_cells_word(struct cells *cells, size_t column, const char *what, const
     return count;
 }
 
-bool bw_cells_effect(struct cells *cells, size_t column, enum bw_effect *effect)
-{
+bool bw_cells_effect(struct cells *cells, size_t column, enum bw_effect *effect) {
     const char *const names[BW_EFFECTS] = {bw_effect_name(BW_RETINA_THERMAL), bw_effect_name(BW_RETINA_PHOTOCHEMICAL),
                                            bw_effect_name(BW_ULTRAVIOLET), bw_effect_name(BW_ANTERIOR),
                                            bw_effect_name(BW_SKIN_EFFECT)};

@@ -26,14 +26,12 @@ struct tiling {
     bool gap_reported;
 };
 
-static int compare_numbers(const void *a, const void *b)
-{
+static int compare_numbers(const void *a, const void *b) {
     const double *x = a, *y = b;
     return (*x > *y) - (*x < *y);
 }
 
-size_t bw_check_sort_edges(double *values, size_t count)
-{
+size_t bw_check_sort_edges(double *values, size_t count) {
     size_t kept = 0;
     qsort(values, count, sizeof *values, compare_numbers);
     for (size_t i = 0; i < count; i++)
@@ -43,20 +41,17 @@ size_t bw_check_sort_edges(double *values, size_t count)
 }
 
 /* Without rounding: the checker asks beside an edge, not at it. */
-static bool exactly_in(const struct span *span, double x)
-{
+static bool exactly_in(const struct span *span, double x) {
     return (span->open_low ? x > span->low : x >= span->low) && (span->open_high ? x < span->high : x <= span->high);
 }
 
-static bool tile_holds(const struct tiling *tiling, const struct tile *tile, double wavelength_nm, double time_s)
-{
+static bool tile_holds(const struct tiling *tiling, const struct tile *tile, double wavelength_nm, double time_s) {
     return exactly_in(&tile->wavelength_nm, wavelength_nm) &&
            time_s >= bw_limits_edge_s(tiling->table, &tile->from, wavelength_nm, tiling->subtense_mrad) &&
            time_s <= bw_limits_edge_s(tiling->table, &tile->to, wavelength_nm, tiling->subtense_mrad);
 }
 
-static void report_gap(struct tiling *tiling, double wavelength_nm, const double *nm, double low_s, double high_s)
-{
+static void report_gap(struct tiling *tiling, double wavelength_nm, const double *nm, double low_s, double high_s) {
     char low[LIMITS_NUMBER_SIZE], high[LIMITS_NUMBER_SIZE], from[LIMITS_NUMBER_SIZE], to[LIMITS_NUMBER_SIZE];
     if (tiling->gap_reported)
         return;
@@ -64,16 +59,15 @@ static void report_gap(struct tiling *tiling, double wavelength_nm, const double
     bw_limits_number(from, low_s);
     bw_limits_number(to, high_s);
     if (nm == NULL)
-        bw_faults_add(tiling->faults, tiling->line, tiling->section, "", "gap: no row covers exactly %s nm at %s .. %s s",
-                      bw_limits_number(low, wavelength_nm), from, to);
+        bw_faults_add(tiling->faults, tiling->line, tiling->section, "",
+                      "gap: no row covers exactly %s nm at %s .. %s s", bw_limits_number(low, wavelength_nm), from, to);
     else
         bw_faults_add(tiling->faults, tiling->line, tiling->section, "", "gap: no row covers %s .. %s nm at %s .. %s s",
                       bw_limits_number(low, nm[0]), bw_limits_number(high, nm[1]), from, to);
 }
 
 static void report_overlap(struct tiling *tiling, const struct tile *first, struct tile *second, const double *nm,
-                           double low_s, double high_s)
-{
+                           double low_s, double high_s) {
     char low[LIMITS_NUMBER_SIZE], high[LIMITS_NUMBER_SIZE], from[LIMITS_NUMBER_SIZE], to[LIMITS_NUMBER_SIZE];
     if (second->reported)
         return;
@@ -83,8 +77,7 @@ static void report_overlap(struct tiling *tiling, const struct tile *first, stru
                   bw_limits_number(high, nm[1]), bw_limits_number(from, low_s), bw_limits_number(to, high_s));
 }
 
-static void report_outside(struct tiling *tiling, struct tile *tile)
-{
+static void report_outside(struct tiling *tiling, struct tile *tile) {
     if (tile->reported)
         return;
     tile->reported = true;
@@ -93,8 +86,7 @@ static void report_outside(struct tiling *tiling, struct tile *tile)
 }
 
 /* One cell. nm: its wavelength edges, or NULL if it is a line at one wavelength. */
-static void check_cell(struct tiling *tiling, double wavelength_nm, const double *nm, double low_s, double high_s)
-{
+static void check_cell(struct tiling *tiling, double wavelength_nm, const double *nm, double low_s, double high_s) {
     double time_s = sqrt(low_s) * sqrt(high_s);
     bool covered = tile_holds(tiling, &tiling->cover, wavelength_nm, time_s);
     const struct tile *first = NULL;
@@ -112,8 +104,7 @@ static void check_cell(struct tiling *tiling, double wavelength_nm, const double
         report_gap(tiling, wavelength_nm, nm, low_s, high_s);
 }
 
-static void check_times(struct tiling *tiling, double wavelength_nm, const double *nm, double *times)
-{
+static void check_times(struct tiling *tiling, double wavelength_nm, const double *nm, double *times) {
     size_t count = 0;
     for (size_t i = 0; i <= tiling->count; i++) {
         const struct tile *tile = i < tiling->count ? &tiling->tiles[i] : &tiling->cover;
@@ -132,8 +123,7 @@ static void check_times(struct tiling *tiling, double wavelength_nm, const doubl
 }
 
 /* All cells for one source size. */
-static void check_tiling(struct tiling *tiling)
-{
+static void check_tiling(struct tiling *tiling) {
     double *edges = calloc(4 * tiling->count + 4, sizeof *edges);
     if (edges == NULL) {
         tiling->faults->out_of_memory = true;
@@ -156,15 +146,13 @@ static void check_tiling(struct tiling *tiling)
 
 /* ---- the limit sections ----------------------------------------------------------------------- */
 
-static bool names_subtense(const struct bw_table *table, const struct edge *edge)
-{
+static bool names_subtense(const struct bw_table *table, const struct edge *edge) {
     return edge->factor != EDGE_IS_NUMBER && table->factors[edge->factor].argument == BY_SUBTENSE_MRAD;
 }
 
 /* The sources to ask about: where time edges move with the subtense, the edges and middles of that factor's rows. */
 static size_t subtense_samples(const struct bw_table *table, const struct limit_section *section,
-                               double samples[CHECK_SAMPLES])
-{
+                               double samples[CHECK_SAMPLES]) {
     const struct edge *moving = NULL;
     size_t count = 0;
     for (size_t i = section->first; i < section->first + section->count; i++) {
@@ -184,8 +172,7 @@ static size_t subtense_samples(const struct bw_table *table, const struct limit_
     return count;
 }
 
-static void check_section(const struct bw_table *table, const struct limit_section *section, struct bw_faults *faults)
-{
+static void check_section(const struct bw_table *table, const struct limit_section *section, struct bw_faults *faults) {
     double samples[CHECK_SAMPLES];
     if (section->covers_line == 0) {
         bw_faults_add(faults, section->line, section->name, "covers",
@@ -220,21 +207,19 @@ static void check_section(const struct bw_table *table, const struct limit_secti
 
 /* ---- apertures and cones: over all that the effect's sections cover --------------------------- */
 
-static double lower_edge(const struct edge *edge)
-{
+static double lower_edge(const struct edge *edge) {
     return edge->factor == EDGE_IS_NUMBER ? edge->value_s : limits_infinity; /* a moving edge has a fixed one beside */
 }
 
-static bool effect_cover(const struct bw_table *table, enum bw_effect effect, struct tile *cover)
-{
+static bool effect_cover(const struct bw_table *table, enum bw_effect effect, struct tile *cover) {
     bool found = false;
     for (size_t i = 0; i < table->section_count; i++) {
         const struct limit_section *section = &table->sections[i];
         if (section->effect != effect)
             continue;
         if (!found) {
-            *cover = (struct tile){section->wavelength_nm, {limits_infinity, EDGE_IS_NUMBER}, {0.0, EDGE_IS_NUMBER},
-                                   NULL, false};
+            *cover = (struct tile){
+                section->wavelength_nm, {limits_infinity, EDGE_IS_NUMBER}, {0.0, EDGE_IS_NUMBER}, NULL, false};
             found = true;
         }
         if (section->wavelength_nm.low < cover->wavelength_nm.low)
@@ -253,8 +238,7 @@ static bool effect_cover(const struct bw_table *table, enum bw_effect effect, st
 }
 
 static void check_sizes(const struct bw_table *table, const char *name, const struct size_row *rows, size_t count,
-                        enum bw_effect effect, struct bw_faults *faults)
-{
+                        enum bw_effect effect, struct bw_faults *faults) {
     struct tiling tiling = {.table = table, .faults = faults, .section = name};
     if (!effect_cover(table, effect, &tiling.cover))
         return;
@@ -277,13 +261,12 @@ static void check_sizes(const struct bw_table *table, const char *name, const st
 }
 
 /* alpha_max covers all times that a rule set may cover. */
-static void check_alpha_max(const struct bw_table *table, struct bw_faults *faults)
-{
+static void check_alpha_max(const struct bw_table *table, struct bw_faults *faults) {
     const struct source_size *size = &table->source_size;
     struct tiling tiling = {.table = table, .faults = faults, .section = "source-size", .line = size->line};
     struct span all = {limits_wavelength_low_nm, limits_wavelength_high_nm, false, false};
-    tiling.cover = (struct tile){all, {limits_time_low_s, EDGE_IS_NUMBER}, {limits_time_high_s, EDGE_IS_NUMBER}, NULL,
-                                 false};
+    tiling.cover =
+        (struct tile){all, {limits_time_low_s, EDGE_IS_NUMBER}, {limits_time_high_s, EDGE_IS_NUMBER}, NULL, false};
     tiling.tiles = calloc(size->count + 1, sizeof *tiling.tiles);
     if (tiling.tiles == NULL) {
         faults->out_of_memory = true;
@@ -296,8 +279,7 @@ static void check_alpha_max(const struct bw_table *table, struct bw_faults *faul
     free(tiling.tiles);
 }
 
-void bw_limits_check(const struct bw_table *table, struct bw_faults *faults)
-{
+void bw_limits_check(const struct bw_table *table, struct bw_faults *faults) {
     size_t faults_before = faults->count;
     bw_check_factors(table, faults);
     bw_check_parts(table, faults);

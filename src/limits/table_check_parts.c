@@ -8,8 +8,7 @@
 /* ---- factors ---------------------------------------------------------------------------------- */
 
 /* Rows of a factor follow each other without gap or overlap. */
-static void check_factor_rows(const struct bw_table *table, const struct factor *factor, struct bw_faults *faults)
-{
+static void check_factor_rows(const struct bw_table *table, const struct factor *factor, struct bw_faults *faults) {
     char number[LIMITS_NUMBER_SIZE];
     if (factor->count == 0)
         bw_faults_add(faults, factor->line, factor->section, "", "has no rows");
@@ -22,8 +21,7 @@ static void check_factor_rows(const struct bw_table *table, const struct factor 
     }
 }
 
-static bool factor_reaches(const struct bw_table *table, int index, const struct span *wavelength_nm)
-{
+static bool factor_reaches(const struct bw_table *table, int index, const struct span *wavelength_nm) {
     const struct factor *factor = &table->factors[index];
     if (factor->count == 0)
         return true; /* reported */
@@ -34,15 +32,13 @@ static bool factor_reaches(const struct bw_table *table, int index, const struct
     return low <= wavelength_nm->low && high >= wavelength_nm->high;
 }
 
-static void check_use(const struct bw_table *table, int factor, const struct limit_row *row, struct bw_faults *faults)
-{
+static void check_use(const struct bw_table *table, int factor, const struct limit_row *row, struct bw_faults *faults) {
     if (factor >= 0 && !factor_reaches(table, factor, &row->wavelength_nm))
         bw_faults_add(faults, row->note.line, table->sections[row->section].name, row->note.key,
                       "factor %s does not reach over the whole row", table->factors[factor].name);
 }
 
-void bw_check_factors(const struct bw_table *table, struct bw_faults *faults)
-{
+void bw_check_factors(const struct bw_table *table, struct bw_faults *faults) {
     const struct span all = {limits_wavelength_low_nm, limits_wavelength_high_nm, false, false};
     for (size_t i = 0; i < table->factor_count; i++)
         check_factor_rows(table, &table->factors[i], faults);
@@ -61,8 +57,7 @@ void bw_check_factors(const struct bw_table *table, struct bw_faults *faults)
 
 /* ---- sections --------------------------------------------------------------------------------- */
 
-static bool uses_factor(const struct bw_table *table, int factor)
-{
+static bool uses_factor(const struct bw_table *table, int factor) {
     for (size_t i = 0; i < table->row_count; i++)
         for (size_t j = 0; j < table->rows[i].use_count; j++)
             if (table->rows[i].uses[j].factor == factor)
@@ -70,8 +65,7 @@ static bool uses_factor(const struct bw_table *table, int factor)
     return false;
 }
 
-static bool has_radiance(const struct bw_table *table, bool photochemical)
-{
+static bool has_radiance(const struct bw_table *table, bool photochemical) {
     for (size_t i = 0; i < table->row_count; i++) {
         const struct limit_row *row = &table->rows[i];
         bool here = table->sections[row->section].effect == BW_RETINA_PHOTOCHEMICAL;
@@ -81,8 +75,7 @@ static bool has_radiance(const struct bw_table *table, bool photochemical)
     return false;
 }
 
-static void check_source_size(const struct bw_table *table, struct bw_faults *faults)
-{
+static void check_source_size(const struct bw_table *table, struct bw_faults *faults) {
     const struct source_size *size = &table->source_size;
     bool needed = uses_factor(table, USE_CE);
     for (size_t i = 0; i < table->train_count; i++)
@@ -99,9 +92,8 @@ static void check_source_size(const struct bw_table *table, struct bw_faults *fa
         bw_faults_add(faults, size->line, "source-size", "max_01", "is missing; wants alpha_max by time");
 }
 
-static void check_times(const struct bw_table *table, struct bw_faults *faults)
-{
-    static const enum time_kind kinds[] = {TIME_VISIBLE, TIME_GLANCE, TIME_DIFFUSE,    TIME_SKIN,
+static void check_times(const struct bw_table *table, struct bw_faults *faults) {
+    static const enum time_kind kinds[] = {TIME_VISIBLE,   TIME_GLANCE,      TIME_DIFFUSE,    TIME_SKIN,
                                            TIME_ALIGNMENT, TIME_WORKING_DAY, TIME_ULTRAVIOLET};
     double low_nm, high_nm;
     bw_table_span(table, BW_EYE, &low_nm, &high_nm);
@@ -113,12 +105,12 @@ static void check_times(const struct bw_table *table, struct bw_faults *faults)
         if (needed && found == 0)
             bw_faults_add(faults, 0, "exposure", "", "has no row for %s", bw_limits_time_kind_name(kinds[i]));
         if (found > 1)
-            bw_faults_add(faults, 0, "exposure", "", "has more than one row for %s", bw_limits_time_kind_name(kinds[i]));
+            bw_faults_add(faults, 0, "exposure", "", "has more than one row for %s",
+                          bw_limits_time_kind_name(kinds[i]));
     }
 }
 
-void bw_check_parts(const struct bw_table *table, struct bw_faults *faults)
-{
+void bw_check_parts(const struct bw_table *table, struct bw_faults *faults) {
     if (table->section_count == 0)
         bw_faults_add(faults, 0, "", "", "has no limits; wants [eye EFFECT] and [skin] sections");
     if (table->aperture_count == 0)
@@ -141,11 +133,11 @@ void bw_check_parts(const struct bw_table *table, struct bw_faults *faults)
 
 /* The times that the target's sections cover at one wavelength follow each other without a hole. Edges that are
  * names stand between two numbers of the same section or of one beside it. */
-static bool times_connect(const struct bw_table *table, enum bw_target target, double wavelength_nm)
-{
+static bool times_connect(const struct bw_table *table, enum bw_target target, double wavelength_nm) {
     double reached = -1.0, lowest = limits_infinity;
     for (size_t i = 0; i < table->section_count; i++)
-        if (table->sections[i].target == target && bw_limits_in_span(&table->sections[i].wavelength_nm, wavelength_nm) &&
+        if (table->sections[i].target == target &&
+            bw_limits_in_span(&table->sections[i].wavelength_nm, wavelength_nm) &&
             table->sections[i].from.factor == EDGE_IS_NUMBER)
             lowest = fmin(lowest, table->sections[i].from.value_s);
     for (reached = lowest; reached < limits_infinity;) {
@@ -166,30 +158,27 @@ static bool times_connect(const struct bw_table *table, enum bw_target target, d
     return false;
 }
 
-static void check_target(const struct bw_table *table, enum bw_target target, struct bw_faults *faults)
-{
+static void check_target(const struct bw_table *table, enum bw_target target, struct bw_faults *faults) {
     char low[LIMITS_NUMBER_SIZE], high[LIMITS_NUMBER_SIZE];
     const struct band_index *index = &table->index[target];
     for (size_t i = 0; i < index->count; i++) {
         double middle = 0.5 * (index->bands[i].low_nm + index->bands[i].high_nm);
         if (!times_connect(table, target, middle))
-            bw_faults_add(faults, 0, target == BW_EYE ? "eye" : "skin", "",
-                          "gap: the sections leave a hole between %s and %s nm",
-                          bw_limits_number(low, index->bands[i].low_nm), bw_limits_number(high, index->bands[i].high_nm));
+            bw_faults_add(
+                faults, 0, target == BW_EYE ? "eye" : "skin", "", "gap: the sections leave a hole between %s and %s nm",
+                bw_limits_number(low, index->bands[i].low_nm), bw_limits_number(high, index->bands[i].high_nm));
     }
 }
 
 /* The reach of the sections of the same effect that cover all that this one covers: does it take in every source? */
-static bool sources_complete(const struct bw_table *table, const struct limit_section *section)
-{
+static bool sources_complete(const struct bw_table *table, const struct limit_section *section) {
     double reached = 0.0;
     for (bool more = true; more && reached < limits_subtense_high_mrad;) {
         more = false;
         for (size_t i = 0; i < table->section_count; i++) {
             const struct limit_section *other = &table->sections[i];
             bool contains = other->target == section->target && other->effect == section->effect &&
-                            other->area_m2.low <= 0.0 &&
-                            other->wavelength_nm.low <= section->wavelength_nm.low &&
+                            other->area_m2.low <= 0.0 && other->wavelength_nm.low <= section->wavelength_nm.low &&
                             other->wavelength_nm.high >= section->wavelength_nm.high &&
                             (section->from.factor != EDGE_IS_NUMBER || other->from.factor != EDGE_IS_NUMBER ||
                              other->from.value_s <= section->from.value_s) &&
@@ -204,8 +193,7 @@ static bool sources_complete(const struct bw_table *table, const struct limit_se
     return reached >= limits_subtense_high_mrad;
 }
 
-void bw_check_whole(const struct bw_table *table, struct bw_faults *faults)
-{
+void bw_check_whole(const struct bw_table *table, struct bw_faults *faults) {
     check_target(table, BW_EYE, faults);
     check_target(table, BW_SKIN, faults);
     for (size_t i = 0; i < table->section_count; i++)

@@ -10,8 +10,7 @@ struct samples {
     size_t count;
 };
 
-static void make_samples(struct samples *samples, double *edges, size_t count)
-{
+static void make_samples(struct samples *samples, double *edges, size_t count) {
     count = bw_check_sort_edges(edges, count);
     samples->count = 0;
     for (size_t i = 0; i < count && samples->count + 2 < CHECK_SAMPLES; i++) {
@@ -21,16 +20,14 @@ static void make_samples(struct samples *samples, double *edges, size_t count)
     }
 }
 
-static void add_span(double *edges, size_t *count, const struct span *span, double farthest)
-{
+static void add_span(double *edges, size_t *count, const struct span *span, double farthest) {
     if (*count + 2 > CHECK_SAMPLES / 2)
         return;
     edges[(*count)++] = fmin(span->low, farthest);
     edges[(*count)++] = fmin(span->high, farthest);
 }
 
-static struct span subtense_of(const struct train_row *row, double alpha_max_mrad)
-{
+static struct span subtense_of(const struct train_row *row, double alpha_max_mrad) {
     struct span span = row->subtense_mrad;
     if (row->low_is_alpha_max)
         span.low = alpha_max_mrad;
@@ -46,8 +43,7 @@ struct place {
 };
 
 /* Returns: false after a fault. */
-static bool check_place(const struct bw_table *table, const struct place *place, struct bw_faults *faults)
-{
+static bool check_place(const struct bw_table *table, const struct place *place, struct bw_faults *faults) {
     const struct train_row *first = NULL;
     char subtense[LIMITS_NUMBER_SIZE], pulses[LIMITS_NUMBER_SIZE], exposure[LIMITS_NUMBER_SIZE];
     for (size_t i = 0; i < table->train_count; i++) {
@@ -73,8 +69,7 @@ static bool check_place(const struct bw_table *table, const struct place *place,
 }
 
 static bool check_places(const struct bw_table *table, enum pulse_kind pulse, double alpha_max_mrad,
-                         struct bw_faults *faults)
-{
+                         struct bw_faults *faults) {
     static const struct span all_sources = {0.0, 1571.0, false, false}, all_pulses = {1.0, 1e15, false, false},
                              all_times = {0.0, 1e15, false, false};
     double edges[3][CHECK_SAMPLES];
@@ -95,7 +90,11 @@ static bool check_places(const struct bw_table *table, enum pulse_kind pulse, do
     for (size_t i = 0; i < sources.count; i++)
         for (size_t j = 0; j < pulses.count; j++)
             for (size_t k = 0; k < times.count; k++) {
-                struct place place = {pulse, alpha_max_mrad, sources.values[i], pulses.values[j], times.values[k],
+                struct place place = {pulse,
+                                      alpha_max_mrad,
+                                      sources.values[i],
+                                      pulses.values[j],
+                                      times.values[k],
                                       i % 2 == 1 && j % 2 == 1 && k % 2 == 1};
                 if (!check_place(table, &place, faults))
                     return false;
@@ -103,8 +102,7 @@ static bool check_places(const struct bw_table *table, enum pulse_kind pulse, do
     return true;
 }
 
-void bw_check_train(const struct bw_table *table, struct bw_faults *faults)
-{
+void bw_check_train(const struct bw_table *table, struct bw_faults *faults) {
     if (table->train_count == 0)
         return;
     /* Pulses whose alpha_max is the smallest, the largest and between: amax moves through the rows. */

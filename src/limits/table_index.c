@@ -5,14 +5,12 @@
 #include <limits.h>
 #include <stdlib.h>
 
-static int compare_numbers(const void *a, const void *b)
-{
+static int compare_numbers(const void *a, const void *b) {
     const double *x = a, *y = b;
     return (*x > *y) - (*x < *y);
 }
 
-static size_t sort_unique(double *values, size_t count)
-{
+static size_t sort_unique(double *values, size_t count) {
     size_t kept = 0;
     qsort(values, count, sizeof *values, compare_numbers);
     for (size_t i = 0; i < count; i++)
@@ -22,13 +20,11 @@ static size_t sort_unique(double *values, size_t count)
 }
 
 /* A row belongs to a band if it touches it: at an edge both neighbours must be found. */
-static bool touches(const struct limit_row *row, double low_nm, double high_nm)
-{
+static bool touches(const struct limit_row *row, double low_nm, double high_nm) {
     return row->wavelength_nm.low <= high_nm && row->wavelength_nm.high >= low_nm;
 }
 
-bool bw_limits_index(struct bw_table *table, struct memory *memory)
-{
+bool bw_limits_index(struct bw_table *table, struct memory *memory) {
     if (table->row_count > USHRT_MAX)
         return false;
     for (size_t target = 0; target < 2; target++) {

@@ -16,8 +16,7 @@ struct printer {
 };
 
 static void append(char line[LINE_SIZE], const char *format, ...) BW_PRINTF(2, 3);
-static void append(char line[LINE_SIZE], const char *format, ...)
-{
+static void append(char line[LINE_SIZE], const char *format, ...) {
     size_t length = strlen(line);
     va_list arguments;
     va_start(arguments, format);
@@ -26,8 +25,7 @@ static void append(char line[LINE_SIZE], const char *format, ...)
 }
 
 /* Text that may be long: broken between words. */
-static void print_wrapped(const struct printer *printer, const char *label, const char *text)
-{
+static void print_wrapped(const struct printer *printer, const char *label, const char *text) {
     size_t column = strlen(label), indent = column;
     bw_text_add(printer->out, "%s", label);
     while (*text != '\0') {
@@ -49,8 +47,7 @@ static void print_wrapped(const struct printer *printer, const char *label, cons
 }
 
 /* One row: what it says, and where that is printed; the place on a line of its own if it does not fit. */
-static void print_row(const struct printer *printer, char line[LINE_SIZE], const struct row_note *note)
-{
+static void print_row(const struct printer *printer, char line[LINE_SIZE], const struct row_note *note) {
     char place[LINE_SIZE] = "";
     size_t end = strlen(line);
     while (end > 0 && line[end - 1] == ' ')
@@ -68,15 +65,13 @@ static void print_row(const struct printer *printer, char line[LINE_SIZE], const
         bw_text_add(printer->out, "  %.78s\n", place);
 }
 
-static void print_heading(const struct printer *printer, const char *name, const char *columns)
-{
+static void print_heading(const struct printer *printer, const char *name, const char *columns) {
     bw_text_add(printer->out, "\n%s\n", name);
     if (columns[0] != '\0')
         bw_text_add(printer->out, "  (%s)\n", columns);
 }
 
-static void edge_text(const struct printer *printer, char out[LIMITS_NUMBER_SIZE], const struct edge *edge)
-{
+static void edge_text(const struct printer *printer, char out[LIMITS_NUMBER_SIZE], const struct edge *edge) {
     if (edge->factor == EDGE_IS_NUMBER) {
         bw_limits_number(out, edge->value_s);
         return;
@@ -87,8 +82,7 @@ static void edge_text(const struct printer *printer, char out[LIMITS_NUMBER_SIZE
 }
 
 static void add_times(const struct printer *printer, char line[LINE_SIZE], const struct edge *from,
-                      const struct edge *to)
-{
+                      const struct edge *to) {
     char low[LIMITS_NUMBER_SIZE], high[LIMITS_NUMBER_SIZE], both[LIMITS_SPAN_SIZE];
     edge_text(printer, low, from);
     edge_text(printer, high, to);
@@ -96,15 +90,13 @@ static void add_times(const struct printer *printer, char line[LINE_SIZE], const
     append(line, "%-18s ", both);
 }
 
-static void add_wavelength(char line[LINE_SIZE], const struct span *span)
-{
+static void add_wavelength(char line[LINE_SIZE], const struct span *span) {
     char text[LIMITS_SPAN_SIZE + 3];
     bw_limits_span(text, span);
     append(line, "%-12s nm  ", text); /* 1050 .. 1400 */
 }
 
-static void add_power(char line[LINE_SIZE], const char *base, const struct power *power)
-{
+static void add_power(char line[LINE_SIZE], const char *base, const struct power *power) {
     char text[LIMITS_NUMBER_SIZE];
     if (power->law == POWER_1 && !power->inverse)
         append(line, " %s", base);
@@ -114,8 +106,7 @@ static void add_power(char line[LINE_SIZE], const char *base, const struct power
 
 /* ---- factors and source size ------------------------------------------------------------------ */
 
-static void print_factor(const struct printer *printer, const struct factor *factor)
-{
+static void print_factor(const struct printer *printer, const struct factor *factor) {
     bool by_subtense = factor->argument == BY_SUBTENSE_MRAD;
     print_heading(printer, factor->section, by_subtense ? "alpha: angular subtense in mrad" : "w: wavelength in nm");
     for (size_t i = factor->first; i < factor->first + factor->count; i++) {
@@ -137,8 +128,7 @@ static void print_factor(const struct printer *printer, const struct factor *fac
 }
 
 static void print_sizes(const struct printer *printer, const struct size_row *rows, size_t count, const char *unit,
-                        bool effects, bool wavelengths)
-{
+                        bool effects, bool wavelengths) {
     for (size_t i = 0; i < count; i++) {
         char line[LINE_SIZE] = "", number[LIMITS_NUMBER_SIZE];
         if (effects)
@@ -153,8 +143,7 @@ static void print_sizes(const struct printer *printer, const struct size_row *ro
     }
 }
 
-static void print_source_size(const struct printer *printer)
-{
+static void print_source_size(const struct printer *printer) {
     const struct source_size *size = &printer->table->source_size;
     char line[LINE_SIZE] = "", number[LIMITS_NUMBER_SIZE];
     if (size->line == 0)
@@ -165,15 +154,15 @@ static void print_source_size(const struct printer *printer)
     bw_text_add(printer->out, "  alpha_max by time:\n");
     print_sizes(printer, size->rows, size->count, "mrad", false, false);
     line[0] = '\0';
-    append(line, "%s", size->beyond == BEYOND_SQUARE ? "beyond: alpha^2/(alpha_min alpha_max)"
-                                                     : "beyond: alpha_max/alpha_min, measured within alpha_max");
+    append(line, "%s",
+           size->beyond == BEYOND_SQUARE ? "beyond: alpha^2/(alpha_min alpha_max)"
+                                         : "beyond: alpha_max/alpha_min, measured within alpha_max");
     print_row(printer, line, &size->beyond_note);
 }
 
 /* ---- limits ----------------------------------------------------------------------------------- */
 
-static void print_limit_row(const struct printer *printer, const struct limit_row *row)
-{
+static void print_limit_row(const struct printer *printer, const struct limit_row *row) {
     char line[LINE_SIZE] = "", number[LIMITS_NUMBER_SIZE], name[LIMITS_NUMBER_SIZE];
     add_wavelength(line, &row->wavelength_nm);
     add_times(printer, line, &row->from, &row->to);
@@ -191,8 +180,7 @@ static void print_limit_row(const struct printer *printer, const struct limit_ro
     print_row(printer, line, &row->note);
 }
 
-static void print_section(const struct printer *printer, const struct limit_section *section)
-{
+static void print_section(const struct printer *printer, const struct limit_section *section) {
     char condition[LINE_SIZE] = "", text[LIMITS_SPAN_SIZE];
     if (section->subtense_mrad.low > 0.0 || section->subtense_mrad.high < limits_subtense_high_mrad)
         append(condition, "source of %s mrad", bw_limits_span(text, &section->subtense_mrad));
@@ -205,8 +193,7 @@ static void print_section(const struct printer *printer, const struct limit_sect
 
 /* ---- trains, sums, times ---------------------------------------------------------------------- */
 
-static void print_repetition(const struct printer *printer)
-{
+static void print_repetition(const struct printer *printer) {
     const struct repetition *repetition = &printer->table->repetition;
     char line[LINE_SIZE], number[LIMITS_NUMBER_SIZE], text[LIMITS_SPAN_SIZE];
     print_heading(printer, "repetition", "pulses within Ti count as one");
@@ -236,8 +223,7 @@ static void print_repetition(const struct printer *printer)
     }
 }
 
-static void add_subtense(char line[LINE_SIZE], const struct train_row *row)
-{
+static void add_subtense(char line[LINE_SIZE], const struct train_row *row) {
     char low[LIMITS_NUMBER_SIZE], high[LIMITS_NUMBER_SIZE], text[LIMITS_SPAN_SIZE + 32];
     bw_limits_number(low, row->subtense_mrad.low);
     bw_limits_number(high, row->subtense_mrad.high);
@@ -246,8 +232,7 @@ static void add_subtense(char line[LINE_SIZE], const struct train_row *row)
     append(line, "%-21s ", text);
 }
 
-static void add_exposure(char line[LINE_SIZE], const struct span *span)
-{
+static void add_exposure(char line[LINE_SIZE], const struct span *span) {
     char text[LIMITS_SPAN_SIZE], low[LIMITS_NUMBER_SIZE];
     if (isfinite(span->high))
         append(line, "%s s  ", bw_limits_span(text, span));
@@ -257,15 +242,15 @@ static void add_exposure(char line[LINE_SIZE], const struct span *span)
         append(line, "any time  ");
 }
 
-static void print_train(const struct printer *printer)
-{
+static void print_train(const struct printer *printer) {
     print_heading(printer, "train correction CP, at most 1", "pulse, source, N, exposure; short: not longer than Ti");
     for (size_t i = 0; i < printer->table->train_count; i++) {
         const struct train_row *row = &printer->table->train[i];
         char line[LINE_SIZE] = "", text[LIMITS_SPAN_SIZE], number[LIMITS_NUMBER_SIZE];
         append(line, "%-6s", bw_limits_pulse_name(row->pulse));
         add_subtense(line, row);
-        append(line, "N %-8s ", row->pulses.low > 1.0 || isfinite(row->pulses.high) ? bw_limits_span(text, &row->pulses) : "any");
+        append(line, "N %-8s ",
+               row->pulses.low > 1.0 || isfinite(row->pulses.high) ? bw_limits_span(text, &row->pulses) : "any");
         add_exposure(line, &row->exposure_s);
         if (row->power.law == POWER_0 || row->scale < 1.0 || row->scale > 1.0)
             append(line, " %s", bw_limits_number(number, row->scale));
@@ -276,8 +261,7 @@ static void print_train(const struct printer *printer)
     }
 }
 
-static void print_additivity(const struct printer *printer)
-{
+static void print_additivity(const struct printer *printer) {
     print_heading(printer, "additivity", "exposures at these wavelengths add");
     for (size_t i = 0; i < printer->table->additivity_count; i++) {
         const struct add_row *row = &printer->table->additivity[i];
@@ -289,8 +273,7 @@ static void print_additivity(const struct printer *printer)
     }
 }
 
-static void print_exposure_times(const struct printer *printer)
-{
+static void print_exposure_times(const struct printer *printer) {
     print_heading(printer, "customary exposure times", "");
     for (size_t i = 0; i < printer->table->time_count; i++) {
         const struct time_row *row = &printer->table->times[i];
@@ -302,8 +285,7 @@ static void print_exposure_times(const struct printer *printer)
     }
 }
 
-static void print_head(const struct printer *printer)
-{
+static void print_head(const struct printer *printer) {
     const struct bw_table *table = printer->table;
     size_t rows, from_memory;
     bw_table_counts(table, &rows, &from_memory);
@@ -317,8 +299,7 @@ static void print_head(const struct printer *printer)
     print_wrapped(printer, "  units    ", "H in J/m2, E in W/m2, t in s; where rows meet, the lower limit holds");
 }
 
-enum bw_status bw_table_print(const struct bw_table *table, struct bw_text *text)
-{
+enum bw_status bw_table_print(const struct bw_table *table, struct bw_text *text) {
     struct printer printer = {table, text};
     print_head(&printer);
     for (size_t i = 0; i < table->section_count; i++)
@@ -342,8 +323,7 @@ enum bw_status bw_table_print(const struct bw_table *table, struct bw_text *text
 
 /* ---- materials -------------------------------------------------------------------------------- */
 
-static void print_material(const struct printer *printer, const struct bw_material *material)
-{
+static void print_material(const struct printer *printer, const struct bw_material *material) {
     char line[LINE_SIZE] = "", number[LIMITS_NUMBER_SIZE];
     bw_text_add(printer->out, "\n%s\n", material->name);
     print_wrapped(printer, "  title          ", material->title);
@@ -360,12 +340,12 @@ static void print_material(const struct printer *printer, const struct bw_materi
     print_wrapped(printer, "  source         ", line);
 }
 
-enum bw_status bw_materials_print(struct bw_text *text)
-{
+enum bw_status bw_materials_print(struct bw_text *text) {
     struct printer printer = {NULL, text};
     bw_text_add(text, "materials\n");
-    print_wrapped(&printer, "  ", "Reflectances at 700 to 1100 nm: the upper end of the published range, 1 where none is "
-                                "published. For gloss and glass: one surface at normal incidence.");
+    print_wrapped(&printer, "  ",
+                  "Reflectances at 700 to 1100 nm: the upper end of the published range, 1 where none is "
+                  "published. For gloss and glass: one surface at normal incidence.");
     for (size_t i = 0; i < bw_materials_count(); i++)
         print_material(&printer, bw_materials_at(i));
     return text->failed ? BW_NO_MEMORY : BW_OK;

@@ -8,16 +8,14 @@
 #include <stdlib.h>
 #include <string.h>
 
-const char *bw_reading_copy(struct reading *reading, const char *string)
-{
+const char *bw_reading_copy(struct reading *reading, const char *string) {
     const char *copy = bw_limits_memory_copy(reading->memory, string);
     if (copy == NULL)
         reading->no_memory = true;
     return copy;
 }
 
-void bw_reading_fault(struct reading *reading, const struct bw_ini_entry *entry, const char *format, ...)
-{
+void bw_reading_fault(struct reading *reading, const struct bw_ini_entry *entry, const char *format, ...) {
     char text[CELL_SIZE * 3];
     va_list arguments;
     va_start(arguments, format);
@@ -26,8 +24,7 @@ void bw_reading_fault(struct reading *reading, const struct bw_ini_entry *entry,
     bw_faults_add(reading->faults, entry->line, entry->section, entry->key, "%s", text);
 }
 
-struct row_note bw_reading_note(struct reading *reading, struct cells *cells)
-{
+struct row_note bw_reading_note(struct reading *reading, struct cells *cells) {
     static const char *const words[] = {"read", "memory"};
     struct row_note note = {NULL, NULL, BW_MEMORY, cells->entry->line};
     note.key = bw_reading_copy(reading, cells->entry->key);
@@ -38,8 +35,7 @@ struct row_note bw_reading_note(struct reading *reading, struct cells *cells)
 }
 
 bool bw_reading_row_number(struct reading *reading, const struct bw_ini_entry *entry, const char *prefix,
-                           size_t *rows)
-{
+                           size_t *rows) {
     char want[32];
     snprintf(want, sizeof want, "%s%02zu", prefix, *rows + 1);
     if (strcmp(entry->key, want) == 0) {
@@ -54,8 +50,7 @@ bool bw_reading_row_number(struct reading *reading, const struct bw_ini_entry *e
     return false;
 }
 
-int bw_reading_factor(const struct reading *reading, const char *name)
-{
+int bw_reading_factor(const struct reading *reading, const char *name) {
     for (size_t i = 0; i < reading->table->factor_count; i++)
         if (strcmp(reading->factors[i].name, name) == 0)
             return (int)i;
@@ -63,16 +58,12 @@ int bw_reading_factor(const struct reading *reading, const char *name)
 }
 
 /* [table] id, title, source, edition, note_01 ... */
-static void read_table(struct reading *reading, const struct bw_ini_entry *entry)
-{
+static void read_table(struct reading *reading, const struct bw_ini_entry *entry) {
     struct bw_table *table = reading->table;
     const struct {
         const char *key;
         const char **place;
-    } keys[] = {{"id", &table->id},
-                {"title", &table->title},
-                {"source", &table->source},
-                {"edition", &table->edition}};
+    } keys[] = {{"id", &table->id}, {"title", &table->title}, {"source", &table->source}, {"edition", &table->edition}};
     for (size_t i = 0; i < sizeof keys / sizeof keys[0]; i++)
         if (strcmp(entry->key, keys[i].key) == 0) {
             if (*keys[i].place != NULL)
@@ -84,8 +75,7 @@ static void read_table(struct reading *reading, const struct bw_ini_entry *entry
         reading->notes[table->note_count - 1] = bw_reading_copy(reading, entry->value);
 }
 
-static void check_head(struct reading *reading)
-{
+static void check_head(struct reading *reading) {
     const struct bw_table *table = reading->table;
     const struct {
         const char *key, *value;
@@ -100,8 +90,7 @@ static void check_head(struct reading *reading)
 }
 
 /* Factor names first: a row may use a factor that stands farther down the page. */
-static void register_factors(struct reading *reading)
-{
+static void register_factors(struct reading *reading) {
     for (size_t i = 0; i < reading->ini->count; i++) {
         const struct bw_ini_entry *entry = &reading->ini->entries[i];
         if (entry->key[0] != '\0' || strncmp(entry->section, "factor ", 7) != 0)
@@ -124,8 +113,7 @@ static void register_factors(struct reading *reading)
     }
 }
 
-static void begin_factor(struct reading *reading, const struct bw_ini_entry *entry)
-{
+static void begin_factor(struct reading *reading, const struct bw_ini_entry *entry) {
     reading->factor = NULL;
     for (size_t i = 0; i < reading->table->factor_count; i++)
         if (reading->factors[i].line == entry->line && strcmp(reading->factors[i].section, entry->section) == 0)
@@ -135,8 +123,7 @@ static void begin_factor(struct reading *reading, const struct bw_ini_entry *ent
 }
 
 /* Sections that carry a name or an effect. */
-static void begin_named_section(struct reading *reading, const struct bw_ini_entry *entry)
-{
+static void begin_named_section(struct reading *reading, const struct bw_ini_entry *entry) {
     if (strncmp(entry->section, "factor ", 7) == 0) {
         reading->kind = SECTION_FACTOR;
         begin_factor(reading, entry);
@@ -145,13 +132,13 @@ static void begin_named_section(struct reading *reading, const struct bw_ini_ent
         reading->kind = SECTION_LIMITS;
         bw_read_limits_section(reading, entry);
     } else if (reading->kind == SECTION_UNKNOWN) {
-        bw_reading_fault(reading, entry, "unknown section; wants table, factor NAME, source-size, eye EFFECT, skin, "
-                                         "aperture, cone, repetition, train, additivity or exposure");
+        bw_reading_fault(reading, entry,
+                         "unknown section; wants table, factor NAME, source-size, eye EFFECT, skin, "
+                         "aperture, cone, repetition, train, additivity or exposure");
     }
 }
 
-static void begin_section(struct reading *reading, const struct bw_ini_entry *entry)
-{
+static void begin_section(struct reading *reading, const struct bw_ini_entry *entry) {
     static const struct {
         const char *name;
         enum section_kind kind;
@@ -176,8 +163,7 @@ static void begin_section(struct reading *reading, const struct bw_ini_entry *en
     begin_named_section(reading, entry);
 }
 
-static void read_key(struct reading *reading, const struct bw_ini_entry *entry)
-{
+static void read_key(struct reading *reading, const struct bw_ini_entry *entry) {
     switch (reading->kind) {
     case SECTION_TABLE:
         read_table(reading, entry);
@@ -217,16 +203,14 @@ static void read_key(struct reading *reading, const struct bw_ini_entry *entry)
     }
 }
 
-static void *take_list(struct reading *reading, size_t size)
-{
+static void *take_list(struct reading *reading, size_t size) {
     void *list = bw_limits_memory_take(reading->memory, reading->ini->count + 1, size);
     if (list == NULL)
         reading->no_memory = true;
     return list;
 }
 
-static void take_lists(struct reading *reading)
-{
+static void take_lists(struct reading *reading) {
     reading->notes = take_list(reading, sizeof *reading->notes);
     reading->factors = take_list(reading, sizeof *reading->factors);
     reading->factor_rows = take_list(reading, sizeof *reading->factor_rows);
@@ -261,8 +245,7 @@ static void take_lists(struct reading *reading)
 }
 
 /* Reads all sections. Rows with a fault stay out, so the gap and overlap checks run only on a table that reads well. */
-static void read_sections(struct reading *reading)
-{
+static void read_sections(struct reading *reading) {
     register_factors(reading);
     for (size_t i = 0; i < reading->ini->count && !reading->no_memory; i++) {
         const struct bw_ini_entry *entry = &reading->ini->entries[i];
@@ -274,8 +257,7 @@ static void read_sections(struct reading *reading)
     check_head(reading);
 }
 
-static enum bw_status fill(struct reading *reading, struct bw_error *error)
-{
+static enum bw_status fill(struct reading *reading, struct bw_error *error) {
     size_t faults_before = reading->faults->count;
     take_lists(reading);
     if (!reading->no_memory)
@@ -295,8 +277,7 @@ static enum bw_status fill(struct reading *reading, struct bw_error *error)
 }
 
 enum bw_status bw_table_load(const struct bw_ini *ini, struct bw_table **table, struct bw_faults *faults,
-                             struct bw_error *error)
-{
+                             struct bw_error *error) {
     *table = NULL;
     struct reading reading = {.ini = ini, .faults = faults, .kind = SECTION_NONE};
     reading.memory = bw_limits_memory_new();
@@ -316,8 +297,7 @@ enum bw_status bw_table_load(const struct bw_ini *ini, struct bw_table **table, 
     return BW_OK;
 }
 
-void bw_table_free(struct bw_table *table)
-{
+void bw_table_free(struct bw_table *table) {
     if (table != NULL && table->memory != NULL)
         bw_limits_memory_free(table->memory);
 }

@@ -9,8 +9,7 @@ static const double time_power_low = -1.0, time_power_high = 1.0;
 
 /* ---- [factor NAME] ---------------------------------------------------------------------------- */
 
-static void read_factor_argument(struct reading *reading, const struct bw_ini_entry *entry)
-{
+static void read_factor_argument(struct reading *reading, const struct bw_ini_entry *entry) {
     if (reading->factor->count > 0)
         bw_reading_fault(reading, entry, "stands after the rows; wants it before them");
     if (strcmp(entry->value, "subtense_mrad") == 0)
@@ -19,8 +18,7 @@ static void read_factor_argument(struct reading *reading, const struct bw_ini_en
         bw_reading_fault(reading, entry, "unknown argument '%s'; wants wavelength_nm or subtense_mrad", entry->value);
 }
 
-void bw_read_factor(struct reading *reading, const struct bw_ini_entry *entry)
-{
+void bw_read_factor(struct reading *reading, const struct bw_ini_entry *entry) {
     struct cells cells;
     if (reading->factor == NULL)
         return;
@@ -54,8 +52,7 @@ void bw_read_factor(struct reading *reading, const struct bw_ini_entry *entry)
 
 /* "eye retina-thermal point": target, effect, and a word of its own for rows that stand beside. */
 static bool parse_section_name(struct reading *reading, const struct bw_ini_entry *entry,
-                               struct limit_section *section)
-{
+                               struct limit_section *section) {
     static const enum bw_effect effects[] = {BW_RETINA_THERMAL, BW_RETINA_PHOTOCHEMICAL, BW_ULTRAVIOLET, BW_ANTERIOR};
     section->target = BW_SKIN;
     section->effect = BW_SKIN_EFFECT;
@@ -71,13 +68,14 @@ static bool parse_section_name(struct reading *reading, const struct bw_ini_entr
             return true;
         }
     }
-    bw_reading_fault(reading, entry, "unknown effect '%s'; wants retina-thermal, retina-photochemical, ultraviolet or "
-                                     "anterior", word);
+    bw_reading_fault(reading, entry,
+                     "unknown effect '%s'; wants retina-thermal, retina-photochemical, ultraviolet or "
+                     "anterior",
+                     word);
     return false;
 }
 
-void bw_read_limits_section(struct reading *reading, const struct bw_ini_entry *entry)
-{
+void bw_read_limits_section(struct reading *reading, const struct bw_ini_entry *entry) {
     struct bw_table *table = reading->table;
     struct limit_section section = {0};
     for (size_t i = 0; i < table->section_count; i++)
@@ -98,8 +96,7 @@ void bw_read_limits_section(struct reading *reading, const struct bw_ini_entry *
 
 /* A time range whose edges are numbers, or names of factors. */
 static void read_times(struct reading *reading, struct cells *cells, size_t column, bool names, struct edge *from,
-                       struct edge *to)
-{
+                       struct edge *to) {
     char texts[2][CELL_SIZE];
     struct span open;
     struct edge edges[2] = {{limits_nan, EDGE_IS_NUMBER}, {limits_nan, EDGE_IS_NUMBER}};
@@ -126,8 +123,7 @@ static void read_times(struct reading *reading, struct cells *cells, size_t colu
     *to = edges[1];
 }
 
-static void read_use(struct reading *reading, struct cells *cells, const char *token, struct factor_use *use)
-{
+static void read_use(struct reading *reading, struct cells *cells, const char *token, struct factor_use *use) {
     char name[CELL_SIZE];
     double exponent = 1.0;
     size_t length = strcspn(token, "^");
@@ -149,8 +145,7 @@ static void read_use(struct reading *reading, struct cells *cells, const char *t
     }
 }
 
-static void read_uses(struct reading *reading, struct cells *cells, size_t column, struct limit_row *row)
-{
+static void read_uses(struct reading *reading, struct cells *cells, size_t column, struct limit_row *row) {
     const char *text = cells->cell[column];
     char token[CELL_SIZE];
     if (strcmp(text, "-") == 0)
@@ -171,8 +166,7 @@ static void read_uses(struct reading *reading, struct cells *cells, size_t colum
     }
 }
 
-static void read_limit_row(struct reading *reading, const struct bw_ini_entry *entry, struct limit_section *section)
-{
+static void read_limit_row(struct reading *reading, const struct bw_ini_entry *entry, struct limit_section *section) {
     static const char *const quantities[] = {"H", "E", "G", "L"};
     struct cells cells;
     if (!bw_cells_split(&cells, entry, reading->faults,
@@ -187,8 +181,8 @@ static void read_limit_row(struct reading *reading, const struct bw_ini_entry *e
     double exponent = bw_cells_number(&cells, 4, "time power", time_power_low, time_power_high);
     bool energy = row.quantity == QUANTITY_H || row.quantity == QUANTITY_G;
     if (cells.good && (energy ? !(exponent >= 0.0) : !(exponent <= 0.0)))
-        bw_cells_fault(&cells, "time power %s makes %s; wants 0 to 1 with H and G, -1 to 0 with E and L",
-                       cells.cell[4], energy ? "the exposure fall with time" : "the irradiance rise with time");
+        bw_cells_fault(&cells, "time power %s makes %s; wants 0 to 1 with H and G, -1 to 0 with E and L", cells.cell[4],
+                       energy ? "the exposure fall with time" : "the irradiance rise with time");
     row.time_power = bw_limits_power_of(exponent);
     read_uses(reading, &cells, 5, &row);
     row.note = bw_reading_note(reading, &cells);
@@ -198,8 +192,7 @@ static void read_limit_row(struct reading *reading, const struct bw_ini_entry *e
     }
 }
 
-void bw_read_limits(struct reading *reading, const struct bw_ini_entry *entry)
-{
+void bw_read_limits(struct reading *reading, const struct bw_ini_entry *entry) {
     struct limit_section *section = &reading->sections[reading->table->section_count - 1];
     struct cells cells;
     if (strcmp(entry->key, "covers") == 0) {
@@ -210,8 +203,7 @@ void bw_read_limits(struct reading *reading, const struct bw_ini_entry *entry)
         section->covers_line = entry->line;
     } else if (strcmp(entry->key, "subtense_mrad") == 0) {
         if (bw_cells_split(&cells, entry, reading->faults, "subtense mrad"))
-            section->subtense_mrad =
-                bw_cells_span(&cells, 0, "subtense", 0.0, limits_subtense_high_mrad, EDGES_CLOSED);
+            section->subtense_mrad = bw_cells_span(&cells, 0, "subtense", 0.0, limits_subtense_high_mrad, EDGES_CLOSED);
     } else if (strcmp(entry->key, "area_m2") == 0) {
         if (section->target != BW_SKIN)
             bw_reading_fault(reading, entry, "is for the skin only; wants no area here");
@@ -225,16 +217,14 @@ void bw_read_limits(struct reading *reading, const struct bw_ini_entry *entry)
 /* ---- [aperture], [cone], [source-size] -------------------------------------------------------- */
 
 static void read_size(struct reading *reading, struct cells *cells, size_t column, const char *what,
-                      struct size_row *row)
-{
+                      struct size_row *row) {
     row->value = bw_cells_number(cells, column, what, 1e-6, 1e6);
     row->time_power =
         bw_limits_power_of(bw_cells_number(cells, column + 1, "time power", time_power_low, time_power_high));
     row->note = bw_reading_note(reading, cells);
 }
 
-void bw_read_aperture(struct reading *reading, const struct bw_ini_entry *entry)
-{
+void bw_read_aperture(struct reading *reading, const struct bw_ini_entry *entry) {
     struct cells cells;
     struct size_row row = {0};
     if (!bw_reading_row_number(reading, entry, "r", &reading->section_rows) ||
@@ -249,8 +239,7 @@ void bw_read_aperture(struct reading *reading, const struct bw_ini_entry *entry)
         reading->apertures[reading->table->aperture_count++] = row;
 }
 
-void bw_read_cone(struct reading *reading, const struct bw_ini_entry *entry)
-{
+void bw_read_cone(struct reading *reading, const struct bw_ini_entry *entry) {
     struct cells cells;
     struct size_row row = {.effect = BW_RETINA_PHOTOCHEMICAL};
     if (!bw_reading_row_number(reading, entry, "r", &reading->section_rows) ||
@@ -263,8 +252,7 @@ void bw_read_cone(struct reading *reading, const struct bw_ini_entry *entry)
         reading->cones[reading->table->cone_count++] = row;
 }
 
-static void read_alpha_max(struct reading *reading, const struct bw_ini_entry *entry)
-{
+static void read_alpha_max(struct reading *reading, const struct bw_ini_entry *entry) {
     struct cells cells;
     struct size_row row = {.wavelength_nm = {limits_wavelength_low_nm, limits_wavelength_high_nm, false, false}};
     if (!bw_cells_split(&cells, entry, reading->faults, "time s | mrad | time power | clause | known"))
@@ -275,8 +263,7 @@ static void read_alpha_max(struct reading *reading, const struct bw_ini_entry *e
         reading->alpha_max[reading->table->source_size.count++] = row;
 }
 
-void bw_read_source_size(struct reading *reading, const struct bw_ini_entry *entry)
-{
+void bw_read_source_size(struct reading *reading, const struct bw_ini_entry *entry) {
     static const char *const words[] = {"square", "acceptance"};
     struct source_size *size = &reading->table->source_size;
     struct cells cells;

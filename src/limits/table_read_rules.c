@@ -6,8 +6,7 @@
 
 /* ---- [repetition] ----------------------------------------------------------------------------- */
 
-static void read_ti(struct reading *reading, const struct bw_ini_entry *entry)
-{
+static void read_ti(struct reading *reading, const struct bw_ini_entry *entry) {
     struct cells cells;
     struct ti_row row = {0};
     if (!bw_cells_split(&cells, entry, reading->faults, "wavelength nm | s | clause | known"))
@@ -19,8 +18,7 @@ static void read_ti(struct reading *reading, const struct bw_ini_entry *entry)
         reading->ti[reading->table->repetition.ti_count++] = row;
 }
 
-static void read_applies(struct reading *reading, const struct bw_ini_entry *entry)
-{
+static void read_applies(struct reading *reading, const struct bw_ini_entry *entry) {
     struct cells cells;
     struct applies_row row = {0};
     if (!bw_cells_split(&cells, entry, reading->faults, "effect | wavelength nm | clause | known"))
@@ -32,8 +30,7 @@ static void read_applies(struct reading *reading, const struct bw_ini_entry *ent
         reading->applies[reading->table->repetition.applies_count++] = row;
 }
 
-static void read_count(struct reading *reading, const struct bw_ini_entry *entry)
-{
+static void read_count(struct reading *reading, const struct bw_ini_entry *entry) {
     struct repetition *repetition = &reading->table->repetition;
     struct cells cells;
     if (!bw_cells_split(&cells, entry, reading->faults, "all or a time factor | clause | known"))
@@ -49,8 +46,7 @@ static void read_count(struct reading *reading, const struct bw_ini_entry *entry
     repetition->count_note = bw_reading_note(reading, &cells);
 }
 
-void bw_read_repetition(struct reading *reading, const struct bw_ini_entry *entry)
-{
+void bw_read_repetition(struct reading *reading, const struct bw_ini_entry *entry) {
     struct repetition *repetition = &reading->table->repetition;
     struct cells cells;
     if (strcmp(entry->key, "count") == 0) {
@@ -72,8 +68,7 @@ void bw_read_repetition(struct reading *reading, const struct bw_ini_entry *entr
 /* ---- [train] ---------------------------------------------------------------------------------- */
 
 /* A range of subtense whose edges may be `amax`: alpha_max at the duration of the pulse. */
-static void read_train_subtense(struct cells *cells, size_t column, struct train_row *row)
-{
+static void read_train_subtense(struct cells *cells, size_t column, struct train_row *row) {
     char texts[2][CELL_SIZE];
     double values[2] = {limits_nan, limits_nan};
     if (!bw_cells_span_texts(cells, column, "subtense", texts[0], texts[1], &row->subtense_mrad))
@@ -92,8 +87,7 @@ static void read_train_subtense(struct cells *cells, size_t column, struct train
     row->subtense_mrad.high = values[1];
 }
 
-void bw_read_train(struct reading *reading, const struct bw_ini_entry *entry)
-{
+void bw_read_train(struct reading *reading, const struct bw_ini_entry *entry) {
     static const char *const kinds[] = {"any", "short", "long"};
     static const enum pulse_kind pulses[] = {PULSE_ANY, PULSE_SHORT, PULSE_LONG, PULSE_ANY};
     const int open = EDGES_OPEN_LOW | EDGES_OPEN_HIGH | EDGES_UNBOUNDED;
@@ -117,8 +111,7 @@ void bw_read_train(struct reading *reading, const struct bw_ini_entry *entry)
 
 /* ---- [additivity], [exposure] ----------------------------------------------------------------- */
 
-void bw_read_additivity(struct reading *reading, const struct bw_ini_entry *entry)
-{
+void bw_read_additivity(struct reading *reading, const struct bw_ini_entry *entry) {
     static const char *const words[] = {"eye", "skin", "eye skin"};
     struct cells cells;
     struct add_row row = {0};
@@ -136,10 +129,9 @@ void bw_read_additivity(struct reading *reading, const struct bw_ini_entry *entr
         reading->additivity[reading->table->additivity_count++] = row;
 }
 
-void bw_read_exposure(struct reading *reading, const struct bw_ini_entry *entry)
-{
-    static const enum time_kind kinds[TIME_KINDS + 1] = {TIME_VISIBLE, TIME_GLANCE,      TIME_DIFFUSE,
-                                                         TIME_SKIN,    TIME_ULTRAVIOLET, TIME_ALIGNMENT,
+void bw_read_exposure(struct reading *reading, const struct bw_ini_entry *entry) {
+    static const enum time_kind kinds[TIME_KINDS + 1] = {TIME_VISIBLE,     TIME_GLANCE,      TIME_DIFFUSE,
+                                                         TIME_SKIN,        TIME_ULTRAVIOLET, TIME_ALIGNMENT,
                                                          TIME_WORKING_DAY, TIME_GLANCE};
     const char *names[TIME_KINDS];
     struct cells cells;

@@ -21,8 +21,7 @@ struct inputs {
 
 /* ---- writing values --------------------------------------------------------------------------- */
 
-static void put_string(FILE *out, const char *string)
-{
+static void put_string(FILE *out, const char *string) {
     if (string == NULL) {
         fputs("NULL", out);
         return;
@@ -38,8 +37,7 @@ static void put_string(FILE *out, const char *string)
     fputc('"', out);
 }
 
-static void put_number(FILE *out, double value)
-{
+static void put_number(FILE *out, double value) {
     if (isnan(value))
         fputs("(double)NAN", out);
     else if (isinf(value))
@@ -48,13 +46,11 @@ static void put_number(FILE *out, double value)
         fprintf(out, "%.17g", value);
 }
 
-static void put_bool(FILE *out, bool value)
-{
+static void put_bool(FILE *out, bool value) {
     fputs(value ? "true" : "false", out);
 }
 
-static void put_span(FILE *out, const struct span *span)
-{
+static void put_span(FILE *out, const struct span *span) {
     fputc('{', out);
     put_number(out, span->low);
     fputs(", ", out);
@@ -62,22 +58,19 @@ static void put_span(FILE *out, const struct span *span)
     fprintf(out, ", %s, %s}", span->open_low ? "true" : "false", span->open_high ? "true" : "false");
 }
 
-static void put_edge(FILE *out, const struct edge *edge)
-{
+static void put_edge(FILE *out, const struct edge *edge) {
     fputc('{', out);
     put_number(out, edge->value_s);
     fprintf(out, ", %d}", edge->factor);
 }
 
-static void put_power(FILE *out, const struct power *power)
-{
+static void put_power(FILE *out, const struct power *power) {
     fputc('{', out);
     put_number(out, power->exponent);
     fprintf(out, ", (enum power_law)%d, %s}", (int)power->law, power->inverse ? "true" : "false");
 }
 
-static void put_note(FILE *out, const struct row_note *note)
-{
+static void put_note(FILE *out, const struct row_note *note) {
     fputc('{', out);
     put_string(out, note->key);
     fputs(", ", out);
@@ -86,27 +79,23 @@ static void put_note(FILE *out, const struct row_note *note)
 }
 
 /* The comma before each further member. */
-static void comma(FILE *out)
-{
+static void comma(FILE *out) {
     fputs(", ", out);
 }
 
 /* ---- writing rows ----------------------------------------------------------------------------- */
 
-static void begin_array(FILE *out, size_t table, const char *type, const char *name, size_t count)
-{
+static void begin_array(FILE *out, size_t table, const char *type, const char *name, size_t count) {
     fprintf(out, "static const %s t%zu_%s[%zu] = {\n", type, table, name, count == 0 ? (size_t)1 : count);
     if (count == 0) /* C has no empty arrays; its count keeps anyone from looking */
         fputs("    {0},\n", out);
 }
 
-static void end_array(FILE *out)
-{
+static void end_array(FILE *out) {
     fputs("};\n", out);
 }
 
-static void write_factors(FILE *out, size_t n, const struct bw_table *table)
-{
+static void write_factors(FILE *out, size_t n, const struct bw_table *table) {
     begin_array(out, n, "struct factor", "factors", table->factor_count);
     for (size_t i = 0; i < table->factor_count; i++) {
         const struct factor *factor = &table->factors[i];
@@ -137,8 +126,7 @@ static void write_factors(FILE *out, size_t n, const struct bw_table *table)
     end_array(out);
 }
 
-static void write_sections(FILE *out, size_t n, const struct bw_table *table)
-{
+static void write_sections(FILE *out, size_t n, const struct bw_table *table) {
     begin_array(out, n, "struct limit_section", "sections", table->section_count);
     for (size_t i = 0; i < table->section_count; i++) {
         const struct limit_section *section = &table->sections[i];
@@ -159,8 +147,7 @@ static void write_sections(FILE *out, size_t n, const struct bw_table *table)
     end_array(out);
 }
 
-static void write_limit_row(FILE *out, const struct limit_row *row)
-{
+static void write_limit_row(FILE *out, const struct limit_row *row) {
     fputs("    {", out);
     put_span(out, &row->wavelength_nm);
     comma(out);
@@ -184,8 +171,7 @@ static void write_limit_row(FILE *out, const struct limit_row *row)
     fputs("},\n", out);
 }
 
-static void write_sizes(FILE *out, size_t n, const char *name, const struct size_row *rows, size_t count)
-{
+static void write_sizes(FILE *out, size_t n, const char *name, const struct size_row *rows, size_t count) {
     begin_array(out, n, "struct size_row", name, count);
     for (size_t i = 0; i < count; i++) {
         fprintf(out, "    {(enum bw_effect)%d, ", (int)rows[i].effect);
@@ -205,8 +191,7 @@ static void write_sizes(FILE *out, size_t n, const char *name, const struct size
     end_array(out);
 }
 
-static void write_repetition(FILE *out, size_t n, const struct repetition *repetition)
-{
+static void write_repetition(FILE *out, size_t n, const struct repetition *repetition) {
     begin_array(out, n, "struct ti_row", "ti", repetition->ti_count);
     for (size_t i = 0; i < repetition->ti_count; i++) {
         fputs("    {", out);
@@ -229,8 +214,7 @@ static void write_repetition(FILE *out, size_t n, const struct repetition *repet
     end_array(out);
 }
 
-static void write_train(FILE *out, size_t n, const struct bw_table *table)
-{
+static void write_train(FILE *out, size_t n, const struct bw_table *table) {
     begin_array(out, n, "struct train_row", "train", table->train_count);
     for (size_t i = 0; i < table->train_count; i++) {
         const struct train_row *row = &table->train[i];
@@ -253,8 +237,7 @@ static void write_train(FILE *out, size_t n, const struct bw_table *table)
     end_array(out);
 }
 
-static void write_sums_and_times(FILE *out, size_t n, const struct bw_table *table)
-{
+static void write_sums_and_times(FILE *out, size_t n, const struct bw_table *table) {
     begin_array(out, n, "struct add_row", "additivity", table->additivity_count);
     for (size_t i = 0; i < table->additivity_count; i++) {
         const struct add_row *row = &table->additivity[i];
@@ -280,8 +263,7 @@ static void write_sums_and_times(FILE *out, size_t n, const struct bw_table *tab
     end_array(out);
 }
 
-static void write_index(FILE *out, size_t n, const char *bands, const char *rows, const struct band_index *index)
-{
+static void write_index(FILE *out, size_t n, const char *bands, const char *rows, const struct band_index *index) {
     begin_array(out, n, "struct band", bands, index->count);
     for (size_t i = 0; i < index->count; i++) {
         fputs("    {", out);
@@ -299,8 +281,7 @@ static void write_index(FILE *out, size_t n, const char *bands, const char *rows
 
 /* ---- writing a table -------------------------------------------------------------------------- */
 
-static void write_arrays(FILE *out, size_t n, const struct bw_table *table)
-{
+static void write_arrays(FILE *out, size_t n, const struct bw_table *table) {
     fprintf(out, "static const char *const t%zu_notes[%zu] = {", n, table->note_count + 1);
     for (size_t i = 0; i < table->note_count; i++) {
         put_string(out, table->notes[i]);
@@ -323,8 +304,7 @@ static void write_arrays(FILE *out, size_t n, const struct bw_table *table)
     write_index(out, n, "skin_bands", "skin_rows", &table->index[BW_SKIN]);
 }
 
-static void write_source_size(FILE *out, size_t n, const struct source_size *size)
-{
+static void write_source_size(FILE *out, size_t n, const struct source_size *size) {
     fprintf(out, "    .source_size = {%d, ", size->line);
     put_number(out, size->alpha_min_mrad);
     comma(out);
@@ -334,8 +314,7 @@ static void write_source_size(FILE *out, size_t n, const struct source_size *siz
     fprintf(out, ", t%zu_alpha_max, %zu},\n", n, size->count);
 }
 
-static void write_repetition_head(FILE *out, size_t n, const struct repetition *repetition)
-{
+static void write_repetition_head(FILE *out, size_t n, const struct repetition *repetition) {
     fprintf(out, "    .repetition = {%d, t%zu_ti, %zu, t%zu_applies, %zu, %d, ", repetition->line, n,
             repetition->ti_count, n, repetition->applies_count, repetition->counting_factor);
     put_note(out, &repetition->count_note);
@@ -346,8 +325,7 @@ static void write_repetition_head(FILE *out, size_t n, const struct repetition *
     fputs("},\n", out);
 }
 
-static void write_table(FILE *out, size_t n, const struct bw_table *table)
-{
+static void write_table(FILE *out, size_t n, const struct bw_table *table) {
     const struct {
         const char *member, *value;
     } texts[] = {{"id", table->id}, {"title", table->title}, {"source", table->source}, {"edition", table->edition}};
@@ -372,18 +350,18 @@ static void write_table(FILE *out, size_t n, const struct bw_table *table)
         fputs(",\n", out);
     }
     for (size_t i = 0; i < sizeof lists / sizeof lists[0]; i++)
-        fprintf(out, "    .%s = t%zu_%s,\n    .%s = %zu,\n", lists[i].member, n, lists[i].member,
-                lists[i].count_member, lists[i].count);
+        fprintf(out, "    .%s = t%zu_%s,\n    .%s = %zu,\n", lists[i].member, n, lists[i].member, lists[i].count_member,
+                lists[i].count);
     write_source_size(out, n, &table->source_size);
     write_repetition_head(out, n, &table->repetition);
-    fprintf(out, "    .index = {{t%zu_eye_bands, %zu, t%zu_eye_rows, %zu}, {t%zu_skin_bands, %zu, t%zu_skin_rows, %zu}},\n",
+    fprintf(out,
+            "    .index = {{t%zu_eye_bands, %zu, t%zu_eye_rows, %zu}, {t%zu_skin_bands, %zu, t%zu_skin_rows, %zu}},\n",
             n, table->index[BW_EYE].count, n, table->index[BW_EYE].rows_count, n, table->index[BW_SKIN].count, n,
             table->index[BW_SKIN].rows_count);
     fputs("    .memory = NULL,\n};\n\n", out);
 }
 
-static void write_material(FILE *out, const struct bw_material *material)
-{
+static void write_material(FILE *out, const struct bw_material *material) {
     static const char *const finishes[] = {"BW_MATT", "BW_MIRROR", "BW_GLOSS", "BW_GLASS"};
     const double numbers[] = {material->reflectance, material->matt_reflectance, material->transmittance,
                               material->refractive_index};
@@ -400,8 +378,7 @@ static void write_material(FILE *out, const struct bw_material *material)
     fprintf(out, ", %s},\n", material->known == BW_READ ? "BW_READ" : "BW_MEMORY");
 }
 
-static void write_all(FILE *out, const struct inputs *inputs)
-{
+static void write_all(FILE *out, const struct inputs *inputs) {
     fputs("/* Written by tablec from limits_tables/. Change the tables there. */\n"
           "#include \"internal.h\"\n\n",
           out);
@@ -414,15 +391,15 @@ static void write_all(FILE *out, const struct inputs *inputs)
     fputs("const struct bw_material bw_limits_built_in_materials[] = {\n", out);
     for (size_t i = 0; i < inputs->material_count; i++)
         write_material(out, &inputs->materials[i]);
-    fprintf(out, "    {\"\", \"\", BW_MIRROR, 0, 0, 0, 0, \"\", BW_MEMORY}};\n"
-                 "const size_t bw_limits_built_in_material_count = %zu;\n",
+    fprintf(out,
+            "    {\"\", \"\", BW_MIRROR, 0, 0, 0, 0, \"\", BW_MEMORY}};\n"
+            "const size_t bw_limits_built_in_material_count = %zu;\n",
             inputs->material_count);
 }
 
 /* ---- reading and the program ------------------------------------------------------------------ */
 
-static void print_faults(const char *path, const struct bw_faults *faults)
-{
+static void print_faults(const char *path, const struct bw_faults *faults) {
     for (size_t i = 0; i < faults->count; i++) {
         const struct bw_fault *fault = &faults->items[i];
         fprintf(stderr, "%s:%d:", path, fault->line);
@@ -434,8 +411,7 @@ static void print_faults(const char *path, const struct bw_faults *faults)
 }
 
 static enum bw_status read_rule_set(struct inputs *inputs, const struct bw_ini *ini, struct bw_faults *faults,
-                                    struct bw_error *error)
-{
+                                    struct bw_error *error) {
     if (inputs->table_count == TABLES_MAX)
         return bw_error_set(error, BW_INPUT, "more than %d rule sets", TABLES_MAX);
     struct bw_table *table = NULL;
@@ -453,8 +429,7 @@ static enum bw_status read_rule_set(struct inputs *inputs, const struct bw_ini *
 }
 
 static enum bw_status read_triples(struct inputs *inputs, const struct bw_ini *ini, struct bw_faults *faults,
-                                   struct bw_error *error)
-{
+                                   struct bw_error *error) {
     const char *first = ini->count == 0 ? "" : ini->entries[0].section;
     if (strcmp(first, "table") == 0)
         return read_rule_set(inputs, ini, faults, error);
@@ -463,8 +438,7 @@ static enum bw_status read_triples(struct inputs *inputs, const struct bw_ini *i
     return bw_error_set(error, BW_INPUT, "unknown kind of table [%s]; wants [table] or one [materials] first", first);
 }
 
-static int read_file(struct inputs *inputs, const char *path)
-{
+static int read_file(struct inputs *inputs, const char *path) {
     struct bw_ini ini = {0};
     struct bw_faults faults = {0};
     struct bw_error error = {0};
@@ -481,15 +455,13 @@ static int read_file(struct inputs *inputs, const char *path)
     return status == BW_OK ? 0 : status == BW_INPUT ? 2 : 3;
 }
 
-static int compare_ids(const void *a, const void *b)
-{
+static int compare_ids(const void *a, const void *b) {
     const struct bw_table *const *first = a, *const *second = b;
     return strcmp((*first)->id, (*second)->id);
 }
 
 /* Writes beside the file and renames, so that a failure leaves no half table behind. */
-static int write_file(const struct inputs *inputs, const char *path)
-{
+static int write_file(const struct inputs *inputs, const char *path) {
     char beside[4096];
     if (snprintf(beside, sizeof beside, "%s.part", path) >= (int)sizeof beside) {
         fprintf(stderr, "tablec: the path %s is too long\n", path);
@@ -511,8 +483,7 @@ static int write_file(const struct inputs *inputs, const char *path)
     return 0;
 }
 
-int main(int argc, char **argv)
-{
+int main(int argc, char **argv) {
     struct inputs inputs = {0};
     int code = 0;
     if (argc < 4 || strcmp(argv[1], "--out") != 0) {

@@ -9,8 +9,7 @@ struct edges {
 };
 
 /* Inserts in order, once. */
-static void add(struct edges *edges, double value)
-{
+static void add(struct edges *edges, double value) {
     size_t at = 0;
     if (isnan(value) || !(value >= 0.0))
         return;
@@ -26,8 +25,7 @@ static void add(struct edges *edges, double value)
     edges->count++;
 }
 
-static void add_size_rows(struct edges *edges, const struct size_row *rows, size_t count, double wavelength_nm)
-{
+static void add_size_rows(struct edges *edges, const struct size_row *rows, size_t count, double wavelength_nm) {
     for (size_t i = 0; i < count; i++) {
         if (!bw_limits_in_span(&rows[i].wavelength_nm, wavelength_nm))
             continue;
@@ -37,8 +35,7 @@ static void add_size_rows(struct edges *edges, const struct size_row *rows, size
 }
 
 size_t bw_limits_time_edges(const struct bw_table *table, enum bw_target target, const struct bw_exposure *exposure,
-                            double *edges_s, size_t capacity)
-{
+                            double *edges_s, size_t capacity) {
     struct edges edges = {edges_s, 0, capacity};
     double wavelength_nm = exposure->wavelength_nm, subtense_mrad = exposure->subtense_rad * 1e3;
     bool sized = false;

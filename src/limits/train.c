@@ -5,8 +5,7 @@
 #include <stdio.h>
 
 bool bw_limits_grouping_time(const struct bw_table *table, double wavelength_nm, double *ti_s,
-                             struct bw_source_note *source)
-{
+                             struct bw_source_note *source) {
     const struct repetition *repetition = &table->repetition;
     bool found = false;
     *ti_s = 0.0;
@@ -18,22 +17,20 @@ bool bw_limits_grouping_time(const struct bw_table *table, double wavelength_nm,
         found = true;
         *ti_s = row->ti_s;
         if (source != NULL)
-            *source = (struct bw_source_note){table->id, "repetition", row->note.key, row->note.clause,
-                                              row->note.known};
+            *source =
+                (struct bw_source_note){table->id, "repetition", row->note.key, row->note.clause, row->note.known};
     }
     return found;
 }
 
-double bw_limits_counting_time(const struct bw_table *table, const struct bw_exposure *exposure)
-{
+double bw_limits_counting_time(const struct bw_table *table, const struct bw_exposure *exposure) {
     if (table->repetition.counting_factor == COUNT_ALL)
         return limits_infinity;
     return bw_limits_factor_at(table, table->repetition.counting_factor, exposure->wavelength_nm,
                                exposure->subtense_rad * 1e3);
 }
 
-bool bw_limits_train_applies(const struct bw_table *table, enum bw_effect effect, double wavelength_nm)
-{
+bool bw_limits_train_applies(const struct bw_table *table, enum bw_effect effect, double wavelength_nm) {
     const struct repetition *repetition = &table->repetition;
     for (size_t i = 0; i < repetition->applies_count; i++)
         if (repetition->applies[i].effect == effect &&
@@ -42,14 +39,12 @@ bool bw_limits_train_applies(const struct bw_table *table, enum bw_effect effect
     return false;
 }
 
-double bw_limits_train_longest_pulse(const struct bw_table *table)
-{
+double bw_limits_train_longest_pulse(const struct bw_table *table) {
     return table->repetition.longest_pulse_s;
 }
 
 static bool train_row_holds(const struct train_row *row, const struct bw_train_count *count, double pulses,
-                            double alpha_max_mrad)
-{
+                            double alpha_max_mrad) {
     bool is_short = count->pulse_s <= count->ti_s * (1.0 + limits_edge_rounding);
     struct span subtense = row->subtense_mrad;
     if (row->pulse != PULSE_ANY && (row->pulse == PULSE_SHORT) != is_short)
@@ -62,8 +57,7 @@ static bool train_row_holds(const struct train_row *row, const struct bw_train_c
            bw_limits_in_span(&row->exposure_s, count->exposure_s);
 }
 
-static void train_formula(char out[LIMITS_SOURCE_SIZE], const struct train_row *row)
-{
+static void train_formula(char out[LIMITS_SOURCE_SIZE], const struct train_row *row) {
     char scale[LIMITS_NUMBER_SIZE], power[LIMITS_NUMBER_SIZE], low[LIMITS_NUMBER_SIZE];
     bw_limits_number(scale, row->scale);
     bw_limits_number(power, row->power.exponent);
@@ -78,8 +72,7 @@ static void train_formula(char out[LIMITS_SOURCE_SIZE], const struct train_row *
 }
 
 static void train_working(const struct bw_table *table, const struct train_row *row, double pulses, double lowest,
-                          struct bw_working *working)
-{
+                          struct bw_working *working) {
     char formula[LIMITS_SOURCE_SIZE], source[LIMITS_SOURCE_SIZE], number[LIMITS_NUMBER_SIZE];
     train_formula(formula, row);
     bw_working_step(working, "CP", lowest, "", bw_limits_source_text(source, table->id, "train", &row->note), formula,
@@ -87,8 +80,7 @@ static void train_working(const struct bw_table *table, const struct train_row *
 }
 
 double bw_limits_train_correction(const struct bw_table *table, const struct bw_train_count *count,
-                                  struct bw_source_note *source, struct bw_working *working)
-{
+                                  struct bw_source_note *source, struct bw_working *working) {
     const struct train_row *lowest_row = NULL;
     double lowest = limits_nan;
     if (isnan(count->pulse_s) || isnan(count->ti_s) || isnan(count->pulses))

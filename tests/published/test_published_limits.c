@@ -62,14 +62,13 @@ static struct limit_case limit_cases[] = {
      "instrument manual, IEC 60825-1 ed. 1.2: 1.09e-2 J/m2"},
     {"W9 780 nm, average rule, row below 10 s", eu, BW_EYE, 780, 9.9999999, 0, RADIANT_EXPOSURE, 9.14e-4 * 160000,
      0.005e-4 * 160000, "instrument manual, IEC 60825-1 ed. 1.2: 160000 pulses, 9.14e-4 J/m2 each"},
-    {"904 nm, 5 kHz, 10 s, average, icnirp", icnirp, BW_EYE, 904, 10, 0, RADIANT_EXPOSURE, 5.12e-3 * 50000, 0.005e-3 * 50000,
-     "limits of the three sets compared, our arithmetic: 5.12e-3 J/m2 per pulse"},
+    {"904 nm, 5 kHz, 10 s, average, icnirp", icnirp, BW_EYE, 904, 10, 0, RADIANT_EXPOSURE, 5.12e-3 * 50000,
+     0.005e-3 * 50000, "limits of the three sets compared, our arithmetic: 5.12e-3 J/m2 per pulse"},
     {"101.2 J/m2 just below 10 s", iec, BW_EYE, 532, 9.9999999, 0, RADIANT_EXPOSURE, 101.2, 0.05, "printed step"},
     {"100 J/m2 from 10 s", iec, BW_EYE, 532, 10, 0, RADIANT_EXPOSURE, 100, 0, "printed step"},
 };
 
-static void test_limit(void **state)
-{
+static void test_limit(void **state) {
     const struct limit_case *c = *state;
     const struct bw_exposure exposure = {c->wavelength_nm, c->exposure_s, c->subtense_mrad * 1e-3, 0.0};
     struct bw_limit_set limits;
@@ -87,8 +86,7 @@ static void test_limit(void **state)
 }
 
 /* W2: the aperture of the eye. Printed 5.19e-3 W/cm2, cut off, not rounded: 5.197e-3. */
-static void test_aperture(void **state)
-{
+static void test_aperture(void **state) {
     const struct bw_exposure exposure = {633.0, 0.25, 0.0, 0.0};
     struct bw_limit_set limits;
     (void)state;
@@ -115,8 +113,7 @@ static struct train_case train_cases[] = {
      "limits of the three sets compared, our arithmetic: C5 = 0.4, 2.05e-3 J/m2"},
 };
 
-static void test_train(void **state)
-{
+static void test_train(void **state) {
     const struct train_case *c = *state;
     const struct bw_table *table = bw_tables_find(c->table);
     const struct bw_exposure exposure = {c->wavelength_nm, c->pulse_s, 0.0, 0.0};
@@ -143,16 +140,14 @@ static struct crossing_case crossing_cases[] = {
     {"312 nm", 312, 2500, 4.0e-2}, {"313 nm", 313, 4000, 2.6e-1}, {"314 nm", 314, 6300, 1.6},
 };
 
-static double ultraviolet_limit(double wavelength_nm, double exposure_s)
-{
+static double ultraviolet_limit(double wavelength_nm, double exposure_s) {
     const struct bw_exposure exposure = {wavelength_nm, exposure_s, 0.0, 0.0};
     struct bw_limit_set limits;
     assert_int_equal(bw_limits_eye(bw_tables_find(eu), &exposure, &limits, NULL, NULL), BW_OK);
     return limits.limits[0].radiant_exposure_j_m2;
 }
 
-static void test_crossing(void **state)
-{
+static void test_crossing(void **state) {
     const struct crossing_case *c = *state;
     double half_digit = 0.5 * pow(10.0, floor(log10(c->crossing_s)) - 1.0);
     double before_s = c->crossing_s - half_digit, after_s = c->crossing_s + half_digit;
@@ -163,8 +158,7 @@ static void test_crossing(void **state)
 
 #define COUNT(list) (sizeof(list) / sizeof(list)[0])
 
-int main(void)
-{
+int main(void) {
     static struct CMUnitTest tests[COUNT(limit_cases) + COUNT(train_cases) + COUNT(crossing_cases) + 1];
     size_t n = 0;
     for (size_t i = 0; i < COUNT(limit_cases); i++)

@@ -12,71 +12,70 @@
 #include <beamward/limits.h>
 
 /* Line numbers of the faults below count from here: [table] is line 1. */
-static const char good[] =
-    "[table]\n"
-    "id = small\n"
-    "title = a small rule set\n"
-    "source = invented for this test\n"
-    "edition = first\n"
-    "[factor ca]\n"
-    "r01 = 400 .. 700 | 1 | 0 | 0 | 0 | A | memory\n"
-    "r02 = 700 .. 1400 | 0 | 1 | 0.002 | 700 | A | memory\n"
-    "[factor t2]\n"
-    "argument = subtense_mrad\n" /* 10 */
-    "r01 = 0 .. 1.5 | 10 | 0 | 0 | 0 | A | memory\n"
-    "r02 = 1.5 .. 100 | 0 | 10 | 1/98.5 | 1.5 | A | memory\n"
-    "r03 = 100 .. 1571 | 100 | 0 | 0 | 0 | A | memory\n"
-    "[source-size]\n"
-    "alpha_min = 1.5 | A | memory\n"
-    "max_01 = 1e-13 .. 3e4 | 100 | 0 | A | memory\n"
-    "beyond = square | A | memory\n"
-    "[eye retina-thermal]\n"
-    "covers = 400 .. 1400 | 1e-13 .. 10\n"
-    "r01 = 400 .. 1400 | 1e-13 .. 1e-5 | H | 2e-3 | 0 | ca ce | B | memory\n" /* 20 */
-    "r02 = 400 .. 700 | 1e-5 .. 10 | H | 18 | 0.75 | ce | B | memory\n"
-    "r03 = 700 .. 1400 | 1e-5 .. 10 | H | 18 | 0.75 | ca ce | B | memory\n"
-    "[eye retina-thermal point]\n"
-    "covers = 400 .. 1400 | 10 .. 3e4\n"
-    "subtense_mrad = 0 .. 1.5\n"
-    "r01 = 400 .. 1400 | 10 .. 3e4 | E | 10 | 0 | ca | B | memory\n"
-    "[eye retina-thermal extended]\n"
-    "covers = 400 .. 1400 | 10 .. 3e4\n"
-    "subtense_mrad = 1.5 .. 1571\n"
-    "r01 = 400 .. 1400 | 10 .. t2 | H | 18 | 0.75 | ca ce | B | memory\n" /* 30 */
-    "r02 = 400 .. 1400 | t2 .. 3e4 | E | 18 | 0 | ca ce t2^-0.25 | B | memory\n"
-    "[eye retina-photochemical]\n"
-    "covers = 400 .. 600 | 10 .. 3e4\n"
-    "r01 = 400 .. 600 | 10 .. 3e4 | G | 1e6 | 0 | - | B | memory\n"
-    "[skin]\n"
-    "covers = 400 .. 1400 | 1e-13 .. 3e4\n"
-    "r01 = 400 .. 1400 | 1e-13 .. 3e4 | E | 2000 | 0 | ca | C | read\n"
-    "[skin large-area]\n"
-    "area_m2 = 0.1 ..\n"
-    "covers = 400 .. 1400 | 10 .. 3e4\n" /* 40 */
-    "r01 = 400 .. 1400 | 10 .. 3e4 | E | 10 | 0 | area^-1 | C | read\n"
-    "[aperture]\n"
-    "r01 = retina-thermal | 400 .. 1400 | 1e-13 .. 3e4 | 7 | 0 | D | memory\n"
-    "r02 = retina-photochemical | 400 .. 600 | 10 .. 3e4 | 7 | 0 | D | memory\n"
-    "r03 = skin | 400 .. 1400 | 1e-13 .. 3e4 | 3.5 | 0 | D | memory\n"
-    "[cone]\n"
-    "r01 = 400 .. 600 | 10 .. 3e4 | 11 | 0 | D | memory\n"
-    "[repetition]\n"
-    "ti_01 = 400 .. 1400 | 5e-6 | E | memory\n"
-    "count = t2 | E | memory\n" /* 50 */
-    "applies_01 = retina-thermal | 400 .. 1400 | E | memory\n"
-    "[train]\n"
-    "r01 = short | 0 .. 1571 | 1 .. | 0 .. | 1 | 0 | 0 | E | memory\n"
-    "r02 = long | 0 .. amax | 1 .. | 0 .. | 1 | -0.25 | 0.4 | E | memory\n"
-    "r03 = long | >amax .. 1571 | 1 .. | 0 .. | 1 | 0 | 0 | E | memory\n"
-    "[additivity]\n"
-    "r01 = 400 .. 1400 | 400 .. 1400 | eye skin | F | memory\n"
-    "[exposure]\n"
-    "r01 = visible | 400 .. 700 | 0.25 | G | memory\n"
-    "r02 = glance | 400 .. 1400 | 100 | G | memory\n" /* 60 */
-    "r03 = diffuse | 400 .. 1400 | 600 | G | memory\n"
-    "r04 = skin | 400 .. 1400 | 100 | G | memory\n"
-    "r05 = alignment | 400 .. 700 | 2 | G | memory\n"
-    "r06 = working-day | 400 .. 1400 | 3e4 | G | memory\n";
+static const char good[] = "[table]\n"
+                           "id = small\n"
+                           "title = a small rule set\n"
+                           "source = invented for this test\n"
+                           "edition = first\n"
+                           "[factor ca]\n"
+                           "r01 = 400 .. 700 | 1 | 0 | 0 | 0 | A | memory\n"
+                           "r02 = 700 .. 1400 | 0 | 1 | 0.002 | 700 | A | memory\n"
+                           "[factor t2]\n"
+                           "argument = subtense_mrad\n" /* 10 */
+                           "r01 = 0 .. 1.5 | 10 | 0 | 0 | 0 | A | memory\n"
+                           "r02 = 1.5 .. 100 | 0 | 10 | 1/98.5 | 1.5 | A | memory\n"
+                           "r03 = 100 .. 1571 | 100 | 0 | 0 | 0 | A | memory\n"
+                           "[source-size]\n"
+                           "alpha_min = 1.5 | A | memory\n"
+                           "max_01 = 1e-13 .. 3e4 | 100 | 0 | A | memory\n"
+                           "beyond = square | A | memory\n"
+                           "[eye retina-thermal]\n"
+                           "covers = 400 .. 1400 | 1e-13 .. 10\n"
+                           "r01 = 400 .. 1400 | 1e-13 .. 1e-5 | H | 2e-3 | 0 | ca ce | B | memory\n" /* 20 */
+                           "r02 = 400 .. 700 | 1e-5 .. 10 | H | 18 | 0.75 | ce | B | memory\n"
+                           "r03 = 700 .. 1400 | 1e-5 .. 10 | H | 18 | 0.75 | ca ce | B | memory\n"
+                           "[eye retina-thermal point]\n"
+                           "covers = 400 .. 1400 | 10 .. 3e4\n"
+                           "subtense_mrad = 0 .. 1.5\n"
+                           "r01 = 400 .. 1400 | 10 .. 3e4 | E | 10 | 0 | ca | B | memory\n"
+                           "[eye retina-thermal extended]\n"
+                           "covers = 400 .. 1400 | 10 .. 3e4\n"
+                           "subtense_mrad = 1.5 .. 1571\n"
+                           "r01 = 400 .. 1400 | 10 .. t2 | H | 18 | 0.75 | ca ce | B | memory\n" /* 30 */
+                           "r02 = 400 .. 1400 | t2 .. 3e4 | E | 18 | 0 | ca ce t2^-0.25 | B | memory\n"
+                           "[eye retina-photochemical]\n"
+                           "covers = 400 .. 600 | 10 .. 3e4\n"
+                           "r01 = 400 .. 600 | 10 .. 3e4 | G | 1e6 | 0 | - | B | memory\n"
+                           "[skin]\n"
+                           "covers = 400 .. 1400 | 1e-13 .. 3e4\n"
+                           "r01 = 400 .. 1400 | 1e-13 .. 3e4 | E | 2000 | 0 | ca | C | read\n"
+                           "[skin large-area]\n"
+                           "area_m2 = 0.1 ..\n"
+                           "covers = 400 .. 1400 | 10 .. 3e4\n" /* 40 */
+                           "r01 = 400 .. 1400 | 10 .. 3e4 | E | 10 | 0 | area^-1 | C | read\n"
+                           "[aperture]\n"
+                           "r01 = retina-thermal | 400 .. 1400 | 1e-13 .. 3e4 | 7 | 0 | D | memory\n"
+                           "r02 = retina-photochemical | 400 .. 600 | 10 .. 3e4 | 7 | 0 | D | memory\n"
+                           "r03 = skin | 400 .. 1400 | 1e-13 .. 3e4 | 3.5 | 0 | D | memory\n"
+                           "[cone]\n"
+                           "r01 = 400 .. 600 | 10 .. 3e4 | 11 | 0 | D | memory\n"
+                           "[repetition]\n"
+                           "ti_01 = 400 .. 1400 | 5e-6 | E | memory\n"
+                           "count = t2 | E | memory\n" /* 50 */
+                           "applies_01 = retina-thermal | 400 .. 1400 | E | memory\n"
+                           "[train]\n"
+                           "r01 = short | 0 .. 1571 | 1 .. | 0 .. | 1 | 0 | 0 | E | memory\n"
+                           "r02 = long | 0 .. amax | 1 .. | 0 .. | 1 | -0.25 | 0.4 | E | memory\n"
+                           "r03 = long | >amax .. 1571 | 1 .. | 0 .. | 1 | 0 | 0 | E | memory\n"
+                           "[additivity]\n"
+                           "r01 = 400 .. 1400 | 400 .. 1400 | eye skin | F | memory\n"
+                           "[exposure]\n"
+                           "r01 = visible | 400 .. 700 | 0.25 | G | memory\n"
+                           "r02 = glance | 400 .. 1400 | 100 | G | memory\n" /* 60 */
+                           "r03 = diffuse | 400 .. 1400 | 600 | G | memory\n"
+                           "r04 = skin | 400 .. 1400 | 100 | G | memory\n"
+                           "r05 = alignment | 400 .. 700 | 2 | G | memory\n"
+                           "r06 = working-day | 400 .. 1400 | 3e4 | G | memory\n";
 
 struct bad_case {
     const char *name;
@@ -170,7 +169,8 @@ static struct bad_case bad_cases[] = {
      "has 9 columns; wants 8: wavelength nm | time s | quantity | value | time power | factors | clause | known"},
     {"cell empty", "| 2000 | 0 | ca", "| 2000 |  | ca", 37, "skin", "r01",
      "column 5 is empty; wants 8: wavelength nm | time s | quantity | value | time power | factors | clause | known"},
-    {"cells slipped", "| E | 2000 | 0 |", "| 2000 | E | 0 |", 37, "skin", "r01", "unknown quantity '2000'; wants H, E, G or L"},
+    {"cells slipped", "| E | 2000 | 0 |", "| 2000 | E | 0 |", 37, "skin", "r01",
+     "unknown quantity '2000'; wants H, E, G or L"},
     {"unknown quantity", "| E | 2000 |", "| W | 2000 |", 37, "skin", "r01", "unknown quantity 'W'; wants H, E, G or L"},
     {"value with a unit", "| 2000 | 0 | ca", "| 2000 W/m2 | 0 | ca", 37, "skin", "r01",
      "value '2000 W/m2' is not a number; wants a plain decimal number such as 5e-3"},
@@ -225,8 +225,10 @@ static struct bad_case bad_cases[] = {
     {"unknown effect in a row", "= retina-photochemical |", "= retina-photochemica |", 44, "aperture", "r02",
      "unknown effect 'retina-photochemica'; did you mean retina-photochemical?"},
     /* missing parts */
-    {"no source size", "[source-size]\nalpha_min = 1.5 | A | memory\nmax_01 = 1e-13 .. 3e4 | 100 | 0 | A | memory\n"
-     "beyond = square | A | memory\n", "", 0, "source-size", "", "section is missing; ce and amax need it"},
+    {"no source size",
+     "[source-size]\nalpha_min = 1.5 | A | memory\nmax_01 = 1e-13 .. 3e4 | 100 | 0 | A | memory\n"
+     "beyond = square | A | memory\n",
+     "", 0, "source-size", "", "section is missing; ce and amax need it"},
     {"no alpha_min", "alpha_min = 1.5 | A | memory\n", "", 14, "source-size", "alpha_min", "is missing"},
     {"no law beyond", "beyond = square | A | memory\n", "", 14, "source-size", "beyond",
      "is missing; wants square or acceptance"},
@@ -242,8 +244,7 @@ static struct bad_case bad_cases[] = {
 };
 
 /* Loads the text. Returned: the first fault, if any (to be freed by the caller). */
-static enum bw_status load(const char *text, struct bw_table **table, struct bw_faults *faults)
-{
+static enum bw_status load(const char *text, struct bw_table **table, struct bw_faults *faults) {
     struct bw_ini ini = {0};
     struct bw_error error = {0};
     *table = NULL;
@@ -254,8 +255,7 @@ static enum bw_status load(const char *text, struct bw_table **table, struct bw_
     return status;
 }
 
-static char *replaced(const struct bad_case *c)
-{
+static char *replaced(const struct bad_case *c) {
     const char *at = strstr(good, c->out);
     if (at == NULL)
         fail_msg("the good table has no '%s'", c->out);
@@ -266,8 +266,7 @@ static char *replaced(const struct bad_case *c)
     return text;
 }
 
-static void test_bad(void **state)
-{
+static void test_bad(void **state) {
     const struct bad_case *c = *state;
     char *text = replaced(c);
     struct bw_table *table;
@@ -292,8 +291,7 @@ static void test_bad(void **state)
     fail_msg("want %d [%s] %s: %s", c->line, c->section, c->key, c->text);
 }
 
-static void test_good(void **state)
-{
+static void test_good(void **state) {
     struct bw_table *table;
     struct bw_faults faults = {0};
     const struct bw_exposure exposure = {500.0, 100.0, 0.0, 0.0}, wide = {500.0, 100.0, 0.022, 0.0};
@@ -320,8 +318,7 @@ static void test_good(void **state)
 }
 
 /* All faults of a file are reported together, in the order of its lines. */
-static void test_all_at_once(void **state)
-{
+static void test_all_at_once(void **state) {
     struct bw_table *table;
     struct bw_faults faults = {0};
     (void)state;
@@ -333,8 +330,7 @@ static void test_all_at_once(void **state)
     bw_faults_free(&faults);
 }
 
-static void test_empty(void **state)
-{
+static void test_empty(void **state) {
     struct bw_table *table;
     struct bw_ini ini = {0};
     struct bw_faults faults = {0};
@@ -348,8 +344,7 @@ static void test_empty(void **state)
 
 enum { BAD = sizeof bad_cases / sizeof bad_cases[0] };
 
-int main(void)
-{
+int main(void) {
     static struct CMUnitTest tests[BAD + 3];
     for (size_t i = 0; i < BAD; i++)
         tests[i] = (struct CMUnitTest){bad_cases[i].name, test_bad, NULL, NULL, &bad_cases[i]};

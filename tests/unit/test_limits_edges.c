@@ -17,12 +17,11 @@ static const enum bw_effect effects[BW_EFFECTS] = {BW_RETINA_THERMAL, BW_RETINA_
 
 /* H of one effect; 0 if it has no row there. aperture_mm may be NULL. */
 static double effect_limit(const char *table, enum bw_effect effect, double wavelength_nm, double exposure_s,
-                           double subtense_mrad, double *aperture_mm)
-{
+                           double subtense_mrad, double *aperture_mm) {
     const struct bw_exposure exposure = {wavelength_nm, exposure_s, subtense_mrad * 1e-3, 0.0};
     struct bw_limit_set limits;
-    if (bw_limits(bw_tables_find(table), effect == BW_SKIN_EFFECT ? BW_SKIN : BW_EYE, &exposure, &limits, NULL,
-                  NULL) != BW_OK)
+    if (bw_limits(bw_tables_find(table), effect == BW_SKIN_EFFECT ? BW_SKIN : BW_EYE, &exposure, &limits, NULL, NULL) !=
+        BW_OK)
         return 0.0;
     for (size_t i = 0; i < limits.count; i++)
         if (limits.limits[i].effect == effect) {
@@ -68,7 +67,8 @@ static struct edge_case edge_cases[] = {
     {"1050 nm, CA the lower", "icnirp-2013", BW_RETINA_THERMAL, 1050, 1e-6, 0, 1e-2, 1e-12, 7, "2e-3 * 5"},
     {"just above 1050 nm", "icnirp-2013", BW_RETINA_THERMAL, 1050.001, 1e-6, 0, 2e-2, 1e-12, 7, "2e-2"},
     {"1150 nm", "eu-2006-25", BW_RETINA_THERMAL, 1150, 1e-6, 0, 5e-2, 1e-12, 7, "CC = 1"},
-    {"1200 nm, CC the lower", "icnirp-2013", BW_RETINA_THERMAL, 1200, 1e-6, 0, 0.158866, 1e-5, 7, "10^0.9 against 8.01"},
+    {"1200 nm, CC the lower", "icnirp-2013", BW_RETINA_THERMAL, 1200, 1e-6, 0, 0.158866, 1e-5, 7,
+     "10^0.9 against 8.01"},
     {"1200 nm, CC the lower", "eu-2006-25", BW_RETINA_THERMAL, 1200, 1e-6, 0, 0.397164, 1e-5, 7, "10^0.9 against 8"},
     {"1250 nm begins the cap", "icnirp-2013", BW_ANTERIOR, 1250, 1e-8, 0, 1000, 1e-12, 1, "200 * 5"},
     {"just below 1250 nm no cap", "icnirp-2013", BW_ANTERIOR, 1249.999, 1e-8, 0, 0, 0, 0, ""},
@@ -105,8 +105,7 @@ static struct edge_case edge_cases[] = {
     {"both ends of ansi", "ansi-z136-1-2014", BW_RETINA_THERMAL, 400, 1e-6, 0, 2e-3, 1e-12, 7, "2e-3"},
 };
 
-static void test_edge(void **state)
-{
+static void test_edge(void **state) {
     const struct edge_case *c = *state;
     double aperture_mm = 0.0;
     double got = effect_limit(c->table, c->effect, c->wavelength_nm, c->exposure_s, c->subtense_mrad, &aperture_mm);
@@ -167,19 +166,18 @@ static const struct step_case step_cases[] = {
 enum { STEPS = sizeof step_cases / sizeof step_cases[0] };
 
 /* One wavelength in each band of any rule set; 810 stands for 700 to 1050, where a step carries CA. */
-static const double wavelengths_nm[] = {250,   302.7, 303.5, 304.5, 308.5, 311.5, 314.5, 350,   430,  550,
-                                        650,   810,   1100,  1175,  1225,  1300,  1450,  1600,  2000, 10600, 2e5};
+static const double wavelengths_nm[] = {250, 302.7, 303.5, 304.5, 308.5, 311.5, 314.5, 350,  430,   550, 650,
+                                        810, 1100,  1175,  1225,  1300,  1450,  1600,  2000, 10600, 2e5};
 enum { WAVELENGTHS = sizeof wavelengths_nm / sizeof wavelengths_nm[0] };
 
-static bool names_table(const char *tables, const char *table)
-{
+static bool names_table(const char *tables, const char *table) {
     return strcmp(tables, "*") == 0 || strstr(tables, table) != NULL;
 }
 
-/* T1 of IEC moves with the wavelength: 1e-15 * 10^(0.8 (w - 295)); there 5.6e3 T1^0.25 = 0.99584 * 10^(0.2 (w - 295)). */
+/* T1 of IEC moves with the wavelength: 1e-15 * 10^(0.8 (w - 295)); there 5.6e3 T1^0.25 = 0.99584 * 10^(0.2 (w - 295)).
+ */
 static bool is_uv_takeover(const char *table, enum bw_effect effect, double wavelength_nm, double time_s,
-                           struct step_case *step)
-{
+                           struct step_case *step) {
     double takeover_s = 1e-15 * pow(10.0, 0.8 * (wavelength_nm - 295.0));
     if (strcmp(table, "iec-60825-1-2014") != 0 || (effect != BW_ULTRAVIOLET && effect != BW_SKIN_EFFECT) ||
         !(wavelength_nm > 302.5 && wavelength_nm < 315.0) || !(fabs(time_s / takeover_s - 1.0) <= 1e-9))
@@ -191,8 +189,7 @@ static bool is_uv_takeover(const char *table, enum bw_effect effect, double wave
 /* The listed step at this time, within the given relative distance. seen (may be NULL) is ticked.
  * Returns: false if none is printed there. */
 static bool find_step(const char *table, enum bw_effect effect, double wavelength_nm, double time_s, double near,
-                      struct step_case *step, bool seen[STEPS])
-{
+                      struct step_case *step, bool seen[STEPS]) {
     for (size_t i = 0; i < STEPS; i++) {
         *step = step_cases[i];
         bool carries_ca = step->low_nm >= step->high_nm && wavelength_nm > 700.0 && wavelength_nm < 1050.0;
@@ -208,8 +205,7 @@ static bool find_step(const char *table, enum bw_effect effect, double wavelengt
 }
 
 /* At every edge of a row: a step only where one is listed, and then of the listed height. */
-static void check_edges_of(const char *table, enum bw_effect effect, double wavelength_nm, bool seen[STEPS])
-{
+static void check_edges_of(const char *table, enum bw_effect effect, double wavelength_nm, bool seen[STEPS]) {
     const struct bw_exposure exposure = {wavelength_nm, 1.0, 0.0, 0.0};
     double edges_s[BW_EDGES_MAX];
     size_t count = bw_limits_time_edges(bw_tables_find(table), effect == BW_SKIN_EFFECT ? BW_SKIN : BW_EYE, &exposure,
@@ -232,8 +228,7 @@ static void check_edges_of(const char *table, enum bw_effect effect, double wave
     }
 }
 
-static void test_steps(void **state)
-{
+static void test_steps(void **state) {
     static const char *const tables[] = {"ansi-z136-1-2014", "eu-2006-25", "icnirp-2013", "iec-60825-1-2014"};
     bool seen[STEPS] = {false};
     (void)state;
@@ -248,8 +243,7 @@ static void test_steps(void **state)
 }
 
 /* The ceiling of the Directive steps with the source: 18 CA CC CE T2^-0.25 is cut to 1000 W/m2. */
-static void test_ceiling_step(void **state)
-{
+static void test_ceiling_step(void **state) {
     (void)state;
     double t2 = 10.0 * pow(10.0, 58.5 / 98.5), uncut = 18.0 * 5.0 * 40.0 * pow(t2, -0.25);
     double before = effect_limit("eu-2006-25", BW_RETINA_THERMAL, 1064.0, t2 * (1.0 - 1e-9), 60.0, NULL);
@@ -257,8 +251,8 @@ static void test_ceiling_step(void **state)
     assert_true(uncut > 1000.0);
     assert_true(fabs(before / t2 / uncut - 1.0) <= 1e-8);
     assert_true(fabs(after / t2 / 1000.0 - 1.0) <= 1e-8);
-    assert_true(fabs(effect_limit("icnirp-2013", BW_RETINA_THERMAL, 1064.0, 1000.0, 60.0, NULL) / 1000.0 / uncut - 1.0) <=
-                1e-12); /* no ceiling there */
+    assert_true(fabs(effect_limit("icnirp-2013", BW_RETINA_THERMAL, 1064.0, 1000.0, 60.0, NULL) / 1000.0 / uncut -
+                     1.0) <= 1e-12); /* no ceiling there */
 }
 
 /* ---- the course with time --------------------------------------------------------------------- */
@@ -266,8 +260,7 @@ static void test_ceiling_step(void **state)
 /* The limit as an even source meets it whole. IEC measures only what comes from within alpha_max(t), which grows with
  * time, and so its printed limit does too: compared with the whole source it is alpha^2/alpha_max^2 times as high. */
 static double whole_limit(const char *table, enum bw_effect effect, double wavelength_nm, double exposure_s,
-                          double subtense_mrad)
-{
+                          double subtense_mrad) {
     double limit = effect_limit(table, effect, wavelength_nm, exposure_s, subtense_mrad, NULL);
     if (effect != BW_RETINA_THERMAL || strcmp(table, "iec-60825-1-2014") != 0)
         return limit;
@@ -277,16 +270,14 @@ static double whole_limit(const char *table, enum bw_effect effect, double wavel
 }
 
 /* The Directive cuts extended sources to 1000 W/m2 beyond T2: a step that moves with the source. */
-static bool is_ceiling(const char *table, double wavelength_nm, double subtense_mrad, double from_s, double to_s)
-{
+static bool is_ceiling(const char *table, double wavelength_nm, double subtense_mrad, double from_s, double to_s) {
     double t2 = 10.0 * pow(10.0, (subtense_mrad - 1.5) / 98.5);
-    return strcmp(table, "eu-2006-25") == 0 && wavelength_nm > 700.0 && wavelength_nm < 1400.0 &&
-           subtense_mrad > 1.5 && t2 >= from_s && t2 <= to_s;
+    return strcmp(table, "eu-2006-25") == 0 && wavelength_nm > 700.0 && wavelength_nm < 1400.0 && subtense_mrad > 1.5 &&
+           t2 >= from_s && t2 <= to_s;
 }
 
 /* From 1e-13 to 3e4 s in steps of 0.5 %: H never falls, E never rises, but over a listed step. */
-static void check_course(const char *table, enum bw_effect effect, double wavelength_nm, double subtense_mrad)
-{
+static void check_course(const char *table, enum bw_effect effect, double wavelength_nm, double subtense_mrad) {
     const double ratio = 1.005;
     double last_s = 1e-13, last = whole_limit(table, effect, wavelength_nm, last_s, subtense_mrad);
     for (double time_s = last_s * ratio; time_s <= 3e4; time_s *= ratio) {
@@ -295,11 +286,12 @@ static void check_course(const char *table, enum bw_effect effect, double wavele
         double middle_s = sqrt(last_s * time_s), change = limit / last;
         bool listed = find_step(table, effect, wavelength_nm, middle_s, 0.0026, &step, NULL);
         double takeover_s = 1e-15 * pow(10.0, 0.8 * (wavelength_nm - 295.0));
-        listed = listed || is_ceiling(table, wavelength_nm, subtense_mrad, last_s, time_s) || (takeover_s >= last_s && takeover_s <= time_s &&
-                            is_uv_takeover(table, effect, wavelength_nm, takeover_s, &step));
+        listed = listed || is_ceiling(table, wavelength_nm, subtense_mrad, last_s, time_s) ||
+                 (takeover_s >= last_s && takeover_s <= time_s &&
+                  is_uv_takeover(table, effect, wavelength_nm, takeover_s, &step));
         if (last > 0.0 && !listed && !(change >= 1.0 - 1e-12 && change <= time_s / last_s * (1.0 + 1e-12)))
-            fail_msg("%s %s %g nm %g mrad: from %.9g J/m2 at %g s to %.9g J/m2 at %g s", table,
-                     bw_effect_name(effect), wavelength_nm, subtense_mrad, last, last_s, limit, time_s);
+            fail_msg("%s %s %g nm %g mrad: from %.9g J/m2 at %g s to %.9g J/m2 at %g s", table, bw_effect_name(effect),
+                     wavelength_nm, subtense_mrad, last, last_s, limit, time_s);
         if (last > 0.0 && !(limit > 0.0))
             fail_msg("%s %s %g nm: the limit ends at %g s", table, bw_effect_name(effect), wavelength_nm, time_s);
         last = limit;
@@ -307,8 +299,7 @@ static void check_course(const char *table, enum bw_effect effect, double wavele
     }
 }
 
-static void test_course(void **state)
-{
+static void test_course(void **state) {
     const char *table = *state;
     static const double subtenses_mrad[] = {0.0, 4.0, 40.0};
     for (size_t w = 0; w < WAVELENGTHS; w++)
@@ -318,8 +309,7 @@ static void test_course(void **state)
 }
 
 /* A larger source never has a lower limit, and never one higher than its area gives. */
-static void test_source_size(void **state)
-{
+static void test_source_size(void **state) {
     const char *table = *state;
     static const double times_s[] = {1e-9, 1e-3, 0.25, 5.0, 30.0, 3e3, 2e4};
     static const enum bw_effect retinal[] = {BW_RETINA_THERMAL, BW_RETINA_PHOTOCHEMICAL};
@@ -344,52 +334,131 @@ struct argument_case {
     const char *text;
 };
 static struct argument_case argument_cases[] = {
-    {"wavelength NaN", "eu-2006-25", BW_EYE, {(double)NAN, 1, 0, 0}, BW_ARGUMENT,
+    {"wavelength NaN",
+     "eu-2006-25",
+     BW_EYE,
+     {(double)NAN, 1, 0, 0},
+     BW_ARGUMENT,
      "wavelength nan nm is not a wavelength; wants 180 to 1e6 nm"},
-    {"wavelength negative", "eu-2006-25", BW_EYE, {-1, 1, 0, 0}, BW_ARGUMENT,
+    {"wavelength negative",
+     "eu-2006-25",
+     BW_EYE,
+     {-1, 1, 0, 0},
+     BW_ARGUMENT,
      "wavelength -1 nm is not a wavelength; wants 180 to 1e6 nm"},
-    {"wavelength 0", "eu-2006-25", BW_EYE, {0, 1, 0, 0}, BW_OUT_OF_RANGE,
+    {"wavelength 0",
+     "eu-2006-25",
+     BW_EYE,
+     {0, 1, 0, 0},
+     BW_OUT_OF_RANGE,
      "no row of eu-2006-25 covers 0 nm; it covers 180 to 1e6 nm"},
-    {"wavelength 170", "iec-60825-1-2014", BW_EYE, {170, 1, 0, 0}, BW_OUT_OF_RANGE,
+    {"wavelength 170",
+     "iec-60825-1-2014",
+     BW_EYE,
+     {170, 1, 0, 0},
+     BW_OUT_OF_RANGE,
      "no row of iec-60825-1-2014 covers 170 nm; it covers 180 to 1e6 nm"},
-    {"wavelength 179.999", "icnirp-2013", BW_SKIN, {179.999, 1, 0, 0}, BW_OUT_OF_RANGE,
+    {"wavelength 179.999",
+     "icnirp-2013",
+     BW_SKIN,
+     {179.999, 1, 0, 0},
+     BW_OUT_OF_RANGE,
      "no row of icnirp-2013 covers 179.999 nm; it covers 180 to 1e6 nm"},
-    {"wavelength above 1 mm", "icnirp-2013", BW_EYE, {1000001, 1, 0, 0}, BW_OUT_OF_RANGE,
+    {"wavelength above 1 mm",
+     "icnirp-2013",
+     BW_EYE,
+     {1000001, 1, 0, 0},
+     BW_OUT_OF_RANGE,
      "no row of icnirp-2013 covers 1000001 nm; it covers 180 to 1e6 nm"},
-    {"wavelength infinite", "icnirp-2013", BW_EYE, {HUGE_VAL, 1, 0, 0}, BW_OUT_OF_RANGE,
+    {"wavelength infinite",
+     "icnirp-2013",
+     BW_EYE,
+     {HUGE_VAL, 1, 0, 0},
+     BW_OUT_OF_RANGE,
      "no row of icnirp-2013 covers unbounded nm; it covers 180 to 1e6 nm"},
-    {"ansi below 400", "ansi-z136-1-2014", BW_EYE, {399.9, 1, 0, 0}, BW_OUT_OF_RANGE,
+    {"ansi below 400",
+     "ansi-z136-1-2014",
+     BW_EYE,
+     {399.9, 1, 0, 0},
+     BW_OUT_OF_RANGE,
      "no row of ansi-z136-1-2014 covers 399.9 nm; it covers 400 to 1200 nm"},
-    {"ansi above 1200", "ansi-z136-1-2014", BW_SKIN, {1320, 1, 0, 0}, BW_OUT_OF_RANGE,
+    {"ansi above 1200",
+     "ansi-z136-1-2014",
+     BW_SKIN,
+     {1320, 1, 0, 0},
+     BW_OUT_OF_RANGE,
      "no row of ansi-z136-1-2014 covers 1320 nm; it covers 400 to 1200 nm"},
-    {"time NaN", "eu-2006-25", BW_EYE, {810, (double)NAN, 0, 0}, BW_ARGUMENT,
+    {"time NaN",
+     "eu-2006-25",
+     BW_EYE,
+     {810, (double)NAN, 0, 0},
+     BW_ARGUMENT,
      "exposure time nan s is not a time; wants 1e-13 to 3e4 s"},
-    {"time negative", "eu-2006-25", BW_EYE, {810, -1, 0, 0}, BW_ARGUMENT,
+    {"time negative",
+     "eu-2006-25",
+     BW_EYE,
+     {810, -1, 0, 0},
+     BW_ARGUMENT,
      "exposure time -1 s is not a time; wants 1e-13 to 3e4 s"},
-    {"time 0", "eu-2006-25", BW_EYE, {810, 0, 0, 0}, BW_OUT_OF_RANGE,
+    {"time 0",
+     "eu-2006-25",
+     BW_EYE,
+     {810, 0, 0, 0},
+     BW_OUT_OF_RANGE,
      "no row of eu-2006-25 covers 0 s; it covers 1e-13 to 3e4 s"},
-    {"time too short", "eu-2006-25", BW_EYE, {810, 0.99e-13, 0, 0}, BW_OUT_OF_RANGE,
+    {"time too short",
+     "eu-2006-25",
+     BW_EYE,
+     {810, 0.99e-13, 0, 0},
+     BW_OUT_OF_RANGE,
      "no row of eu-2006-25 covers 9.9e-14 s; it covers 1e-13 to 3e4 s"},
-    {"time too long", "eu-2006-25", BW_EYE, {810, 30001, 0, 0}, BW_OUT_OF_RANGE,
+    {"time too long",
+     "eu-2006-25",
+     BW_EYE,
+     {810, 30001, 0, 0},
+     BW_OUT_OF_RANGE,
      "no row of eu-2006-25 covers 30001 s; it covers 1e-13 to 3e4 s"},
-    {"time infinite", "eu-2006-25", BW_SKIN, {810, HUGE_VAL, 0, 0}, BW_OUT_OF_RANGE,
+    {"time infinite",
+     "eu-2006-25",
+     BW_SKIN,
+     {810, HUGE_VAL, 0, 0},
+     BW_OUT_OF_RANGE,
      "no row of eu-2006-25 covers unbounded s; it covers 1e-13 to 3e4 s"},
-    {"subtense NaN", "eu-2006-25", BW_EYE, {810, 1, (double)NAN, 0}, BW_ARGUMENT,
+    {"subtense NaN",
+     "eu-2006-25",
+     BW_EYE,
+     {810, 1, (double)NAN, 0},
+     BW_ARGUMENT,
      "angular subtense nan rad is out of range; wants 0 to pi/2 rad"},
-    {"subtense beyond a right angle", "eu-2006-25", BW_EYE, {810, 1, 1.58, 0}, BW_ARGUMENT,
+    {"subtense beyond a right angle",
+     "eu-2006-25",
+     BW_EYE,
+     {810, 1, 1.58, 0},
+     BW_ARGUMENT,
      "angular subtense 1.58 rad is out of range; wants 0 to pi/2 rad"},
-    {"subtense negative", "eu-2006-25", BW_EYE, {810, 1, -1e-3, 0}, BW_ARGUMENT,
+    {"subtense negative",
+     "eu-2006-25",
+     BW_EYE,
+     {810, 1, -1e-3, 0},
+     BW_ARGUMENT,
      "angular subtense -0.001 rad is out of range; wants 0 to pi/2 rad"},
-    {"area NaN", "icnirp-2013", BW_SKIN, {10600, 100, 0, (double)NAN}, BW_ARGUMENT,
+    {"area NaN",
+     "icnirp-2013",
+     BW_SKIN,
+     {10600, 100, 0, (double)NAN},
+     BW_ARGUMENT,
      "exposed area nan m2 is not an area; wants 0 (small) or more"},
-    {"area infinite", "icnirp-2013", BW_SKIN, {10600, 100, 0, HUGE_VAL}, BW_ARGUMENT,
+    {"area infinite",
+     "icnirp-2013",
+     BW_SKIN,
+     {10600, 100, 0, HUGE_VAL},
+     BW_ARGUMENT,
      "exposed area inf m2 is not an area; wants 0 (small) or more"},
     {"subtense a right angle", "eu-2006-25", BW_EYE, {810, 100, 1.5707963267948966, 0}, BW_OK, ""},
     {"wavelength off by rounding", "eu-2006-25", BW_EYE, {179.99999999999997, 1, 0, 0}, BW_OK, ""},
 };
 
-static void test_argument(void **state)
-{
+static void test_argument(void **state) {
     const struct argument_case *c = *state;
     struct bw_limit_set limits;
     struct bw_error error = {0};
@@ -402,8 +471,7 @@ static void test_argument(void **state)
     assert_true(isnan(limits.limits[0].radiant_exposure_j_m2));
 }
 
-static void test_governing(void **state)
-{
+static void test_governing(void **state) {
     struct bw_limit_set limits;
     const struct bw_exposure blue = {440.0, 1000.0, 0.0, 0.0}, infrared = {1390.0, 1e-3, 0.0, 0.0};
     (void)state;
@@ -416,8 +484,7 @@ static void test_governing(void **state)
 }
 
 /* The cone that the exposure is measured in: only IEC's source-size rows are not open. */
-static void test_acceptance(void **state)
-{
+static void test_acceptance(void **state) {
     struct bw_limit_set limits;
     const struct bw_exposure exposure = {810.0, 0.01, 0.05, 0.0}, wide = {480.0, 50.0, 0.05, 0.0};
     (void)state;
@@ -443,15 +510,19 @@ struct list_case {
 };
 static struct list_case list_cases[] = {
     {"eu 550 nm, point", "eu-2006-25", BW_EYE, 550, 0, 8, {1e-13, 1e-11, 1e-9, 1.8e-5, 10, 100, 1e4, 3e4}},
-    {"iec 810 nm, 30 mrad", "iec-60825-1-2014", BW_EYE, 810, 30, 8,
+    {"iec 810 nm, 30 mrad",
+     "iec-60825-1-2014",
+     BW_EYE,
+     810,
+     30,
+     8,
      {1e-13, 1e-11, 5e-6, 625e-6, 0.25, 10, 19.46884, 3e4}},
     {"iec 310 nm", "iec-60825-1-2014", BW_EYE, 310, 0, 4, {1e-13, 1e-9, 1e-3, 3e4}},
     {"icnirp 10.6 um", "icnirp-2013", BW_EYE, 10600, 0, 6, {1e-13, 1e-9, 1e-7, 0.35, 10, 3e4}},
     {"ansi skin", "ansi-z136-1-2014", BW_SKIN, 905, 0, 5, {1e-13, 1e-9, 1e-7, 10, 3e4}},
 };
 
-static void test_list(void **state)
-{
+static void test_list(void **state) {
     const struct list_case *c = *state;
     const struct bw_exposure exposure = {c->wavelength_nm, 1.0, c->subtense_mrad * 1e-3, 0.0};
     double edges_s[BW_EDGES_MAX];
@@ -469,8 +540,7 @@ enum {
     LISTS = sizeof list_cases / sizeof list_cases[0]
 };
 
-int main(void)
-{
+int main(void) {
     static char tables[][40] = {"ansi-z136-1-2014", "eu-2006-25", "icnirp-2013", "iec-60825-1-2014"};
     static struct CMUnitTest tests[EDGES + ARGUMENTS + LISTS + 12];
     size_t n = 0;

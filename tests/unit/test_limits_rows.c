@@ -24,8 +24,7 @@ static struct row_case cases[] = {
 };
 enum { CASES = sizeof cases / sizeof cases[0] };
 
-static void test_row(void **state)
-{
+static void test_row(void **state) {
     const struct row_case *c = *state;
     const struct bw_exposure exposure = {c->wavelength_nm, c->exposure_s, c->subtense_mrad * 1e-3, c->area_m2};
     struct bw_limit_set limits;
@@ -52,8 +51,7 @@ static void test_row(void **state)
 
 /* ---- no row is left out ----------------------------------------------------------------------- */
 
-static bool is_asked(const char *table, const char *section, const char *row)
-{
+static bool is_asked(const char *table, const char *section, const char *row) {
     for (size_t i = 0; i < CASES; i++)
         if (strcmp(cases[i].table, table) == 0 && strcmp(cases[i].section, section) == 0 &&
             strcmp(cases[i].row, row) == 0)
@@ -61,8 +59,7 @@ static bool is_asked(const char *table, const char *section, const char *row)
     return false;
 }
 
-static void test_all_rows_are_asked(void **state)
-{
+static void test_all_rows_are_asked(void **state) {
     const char *table = *state;
     char path[120];
     struct bw_ini ini = {0};
@@ -86,8 +83,7 @@ static void test_all_rows_are_asked(void **state)
     bw_faults_free(&faults);
 }
 
-int main(void)
-{
+int main(void) {
     static const char *const tables[] = {"ansi-z136-1-2014", "eu-2006-25", "icnirp-2013", "iec-60825-1-2014"};
     enum { TABLES = 4 };
     static char names[CASES][160], ids[TABLES][40];

@@ -12,7 +12,8 @@
 
 #include <beamward/limits.h>
 
-static const char eu[] = "eu-2006-25", icnirp[] = "icnirp-2013", iec[] = "iec-60825-1-2014", ansi[] = "ansi-z136-1-2014";
+static const char eu[] = "eu-2006-25", icnirp[] = "icnirp-2013", iec[] = "iec-60825-1-2014",
+                  ansi[] = "ansi-z136-1-2014";
 
 /* ---- grouping time ---------------------------------------------------------------------------- */
 
@@ -46,8 +47,7 @@ static struct ti_case ti_cases[] = {
     {"NaN", eu, (double)NAN, 0, "not covered"},
 };
 
-static void test_ti(void **state)
-{
+static void test_ti(void **state) {
     const struct ti_case *c = *state;
     struct bw_source_note note = {0};
     double ti_s = -1.0;
@@ -84,14 +84,12 @@ static struct applies_case applies_cases[] = {
     {"ansi beyond its range", ansi, BW_RETINA_THERMAL, 1300, false},
 };
 
-static void test_applies(void **state)
-{
+static void test_applies(void **state) {
     const struct applies_case *c = *state;
     assert_int_equal(bw_limits_train_applies(bw_tables_find(c->table), c->effect, c->wavelength_nm), c->want);
 }
 
-static void test_counting(void **state)
-{
+static void test_counting(void **state) {
     const struct bw_exposure point = {905, 100, 0, 0}, middle = {905, 100, 0.05075, 0}, large = {905, 100, 0.2, 0};
     (void)state;
     assert_true(isinf(bw_limits_counting_time(bw_tables_find(eu), &point))); /* no cut at T2 */
@@ -149,8 +147,7 @@ static struct train_case train_cases[] = {
     {"NaN exposure", iec, 1e-7, 5e-6, 10, (double)NAN, 0, (double)NAN, ""},
 };
 
-static void test_train(void **state)
-{
+static void test_train(void **state) {
     const struct train_case *c = *state;
     const struct bw_train_count count = {c->pulse_s, c->ti_s, c->pulses, c->exposure_s, c->subtense_mrad * 1e-3};
     struct bw_source_note note = {0};
@@ -177,18 +174,17 @@ struct add_case {
     bool want_eye, want_skin;
 };
 static struct add_case add_cases[] = {
-    {"254 and 308", eu, 254, 308, true, true},     {"254 and 355", eu, 254, 355, false, false},
-    {"254 and 810", eu, 254, 810, false, false},   {"308 and 10600", eu, 308, 10600, false, false},
-    {"350 and 355", eu, 350, 355, true, true},     {"355 and 810", eu, 355, 810, false, true},
-    {"355 and 1550", eu, 355, 1550, true, true},   {"650 and 905", eu, 650, 905, true, true},
-    {"905 and 650", iec, 905, 650, true, true},    {"905 and 1550", icnirp, 905, 1550, false, true},
+    {"254 and 308", eu, 254, 308, true, true},        {"254 and 355", eu, 254, 355, false, false},
+    {"254 and 810", eu, 254, 810, false, false},      {"308 and 10600", eu, 308, 10600, false, false},
+    {"350 and 355", eu, 350, 355, true, true},        {"355 and 810", eu, 355, 810, false, true},
+    {"355 and 1550", eu, 355, 1550, true, true},      {"650 and 905", eu, 650, 905, true, true},
+    {"905 and 650", iec, 905, 650, true, true},       {"905 and 1550", icnirp, 905, 1550, false, true},
     {"1550 and 10600", iec, 1550, 10600, true, true}, {"1550 and 905", iec, 1550, 905, false, true},
-    {"810 and 980", ansi, 810, 980, true, true},   {"810 and 1300", ansi, 810, 1300, false, false},
+    {"810 and 980", ansi, 810, 980, true, true},      {"810 and 1300", ansi, 810, 1300, false, false},
     {"NaN", eu, (double)NAN, 810, false, false},
 };
 
-static void test_add(void **state)
-{
+static void test_add(void **state) {
     const struct add_case *c = *state;
     assert_int_equal(bw_limits_add(bw_tables_find(c->table), BW_EYE, c->first_nm, c->second_nm), c->want_eye);
     assert_int_equal(bw_limits_add(bw_tables_find(c->table), BW_SKIN, c->first_nm, c->second_nm), c->want_skin);
@@ -231,15 +227,28 @@ static struct time_case time_cases[] = {
     {"working day", eu, BW_WORKING_DAY, {635}, 1, 3e4, false, BW_READ, ""},
     {"working day, ansi", ansi, BW_WORKING_DAY, {905}, 1, 3e4, false, BW_MEMORY, ""},
     {"no wavelength", eu, BW_GLANCE, {0}, 0, 0, false, BW_READ, "no wavelength given for the exposure time"},
-    {"NaN", eu, BW_GLANCE, {650, (double)NAN}, 2, 0, false, BW_READ,
+    {"NaN",
+     eu,
+     BW_GLANCE,
+     {650, (double)NAN},
+     2,
+     0,
+     false,
+     BW_READ,
      "wavelength nan nm is not a wavelength; wants 180 to 1e6 nm"},
     {"outside", eu, BW_GLANCE, {650, 170}, 2, 0, false, BW_READ, "eu-2006-25 names no exposure time for 170 nm"},
-    {"ansi, ultraviolet", ansi, BW_GLANCE, {355}, 1, 0, false, BW_READ,
+    {"ansi, ultraviolet",
+     ansi,
+     BW_GLANCE,
+     {355},
+     1,
+     0,
+     false,
+     BW_READ,
      "ansi-z136-1-2014 names no exposure time for 355 nm"},
 };
 
-static void test_time(void **state)
-{
+static void test_time(void **state) {
     const struct time_case *c = *state;
     struct bw_exposure_time time;
     struct bw_error error = {0};
@@ -261,8 +270,7 @@ static void test_time(void **state)
 
 /* ---- the lists -------------------------------------------------------------------------------- */
 
-static void test_tables(void **state)
-{
+static void test_tables(void **state) {
     static const char *const ids[] = {"ansi-z136-1-2014", "eu-2006-25", "icnirp-2013", "iec-60825-1-2014"};
     (void)state;
     assert_int_equal(bw_tables_count(), 4);
@@ -280,8 +288,7 @@ static void test_tables(void **state)
     assert_null(bw_tables_find("eu"));
 }
 
-static void test_spans(void **state)
-{
+static void test_spans(void **state) {
     double low_nm, high_nm;
     (void)state;
     bw_table_span(bw_tables_find(eu), BW_EYE, &low_nm, &high_nm);
@@ -291,8 +298,7 @@ static void test_spans(void **state)
 }
 
 /* Lines of at most 80 bytes, and the marks of what is only from memory. */
-static void check_page(const struct bw_text *text)
-{
+static void check_page(const struct bw_text *text) {
     for (const char *line = text->data; line != NULL && *line != '\0';) {
         size_t length = strcspn(line, "\n");
         if (length > 80)
@@ -301,8 +307,7 @@ static void check_page(const struct bw_text *text)
     }
 }
 
-static void test_print(void **state)
-{
+static void test_print(void **state) {
     (void)state;
     for (size_t i = 0; i < bw_tables_count(); i++) {
         struct bw_text text = {0};
@@ -331,16 +336,20 @@ struct material_case {
     double reflectance, matt_reflectance, transmittance, refractive_index;
 };
 static struct material_case material_cases[] = {
-    {"painted-wall", BW_MATT, 0.9, 0.9, 0, 0},     {"skin", BW_MATT, 0.65, 0.65, 0, 0},
-    {"brushed-steel", BW_MIRROR, 0.65, 0, 0, 0},   {"mirror", BW_MIRROR, 0.97, 0, 0, 0},
-    {"glass", BW_GLASS, 0.0426, 0, 1, 1.52},       {"gloss-paint", BW_GLOSS, 0.0426, 0.9, 0, 1.52},
-    {"unknown", BW_MIRROR, 1, 0, 0, 0},            {"wood", BW_MATT, 1, 1, 0, 0},
-    {"fabric", BW_MATT, 1, 1, 1, 0},               {"opaque-screen", BW_MATT, 1, 1, 0, 0},
+    {"painted-wall", BW_MATT, 0.9, 0.9, 0, 0},
+    {"skin", BW_MATT, 0.65, 0.65, 0, 0},
+    {"brushed-steel", BW_MIRROR, 0.65, 0, 0, 0},
+    {"mirror", BW_MIRROR, 0.97, 0, 0, 0},
+    {"glass", BW_GLASS, 0.0426, 0, 1, 1.52},
+    {"gloss-paint", BW_GLOSS, 0.0426, 0.9, 0, 1.52},
+    {"unknown", BW_MIRROR, 1, 0, 0, 0},
+    {"wood", BW_MATT, 1, 1, 0, 0},
+    {"fabric", BW_MATT, 1, 1, 1, 0},
+    {"opaque-screen", BW_MATT, 1, 1, 0, 0},
     {"polished-steel", BW_MIRROR, 1, 0, 0, 0},
 };
 
-static void test_material(void **state)
-{
+static void test_material(void **state) {
     const struct material_case *c = *state;
     const struct bw_material *material = bw_materials_find(c->name);
     assert_non_null(material);
@@ -353,8 +362,7 @@ static void test_material(void **state)
     assert_int_equal(material->known, BW_MEMORY);
 }
 
-static void test_materials(void **state)
-{
+static void test_materials(void **state) {
     struct bw_text text = {0};
     (void)state;
     assert_int_equal(bw_materials_count(), sizeof material_cases / sizeof material_cases[0]);
@@ -369,8 +377,7 @@ static void test_materials(void **state)
 
 #define COUNT(list) (sizeof(list) / sizeof(list)[0])
 
-int main(void)
-{
+int main(void) {
     static struct CMUnitTest tests[COUNT(ti_cases) + COUNT(applies_cases) + COUNT(train_cases) + COUNT(add_cases) +
                                    COUNT(time_cases) + COUNT(material_cases) + 8];
     size_t n = 0;

@@ -34,8 +34,7 @@ static const struct step_case eye_steps[] = {
     {false, "H", "E t", "440.522 * 100", 44052.1871, 1e-4, "J/m2", ""},
     {false, "D", "7", "", 7, 0, "mm", "eu-2006-25, aperture r05, Table 2.3, from memory"},
     {true, "", "Limit: eu-2006-25, eye retina-thermal ceiling, row r01", "", 0, 0, "", ""},
-    {false, "E", "1000", "1000", 1000, 0, "W/m2",
-     "eu-2006-25, eye retina-thermal ceiling r01, Table 2.3, from memory"},
+    {false, "E", "1000", "1000", 1000, 0, "W/m2", "eu-2006-25, eye retina-thermal ceiling r01, Table 2.3, from memory"},
     {false, "H", "E t", "1000 * 100", 1e5, 0, "J/m2", ""},
     {false, "D", "7", "", 7, 0, "mm", "eu-2006-25, aperture r05, Table 2.3, from memory"},
     {true, "", "Lowest limit for the eye: retina-thermal", "", 0, 0, "", ""},
@@ -56,8 +55,7 @@ static const struct step_case far_steps[] = {
      "J/m2", "iec-60825-1-2014, eye anterior r15, Annex A, eye, from memory"},
 };
 
-static void check_steps(const struct bw_working *working, const struct step_case *want, size_t count)
-{
+static void check_steps(const struct bw_working *working, const struct step_case *want, size_t count) {
     for (size_t i = 0; i < count && i < working->count; i++) {
         const struct bw_step *step = &working->steps[i];
         assert_int_equal(step->heading, want[i].heading);
@@ -74,8 +72,7 @@ static void check_steps(const struct bw_working *working, const struct step_case
     assert_int_equal(working->count, count);
 }
 
-static void test_steps(void **state)
-{
+static void test_steps(void **state) {
     const struct bw_exposure near = {905.0, 100.0, 0.03, 0.0}, far = {10600.0, 0.5, 0.0, 0.0};
     struct bw_limit_set limits;
     struct bw_working working = {0};
@@ -91,16 +88,14 @@ static void test_steps(void **state)
 
 /* ---- all over: with and without working the same, and its steps hold the limit's own values ----- */
 
-static const struct bw_step *find_step(const struct bw_working *working, double value)
-{
+static const struct bw_step *find_step(const struct bw_working *working, double value) {
     for (size_t i = 0; i < working->count; i++)
         if (!working->steps[i].heading && fabs(working->steps[i].value - value) <= 0.0)
             return &working->steps[i];
     return NULL;
 }
 
-static void check_everywhere(const struct bw_table *table, enum bw_target target, const struct bw_exposure *exposure)
-{
+static void check_everywhere(const struct bw_table *table, enum bw_target target, const struct bw_exposure *exposure) {
     struct bw_limit_set plain, worked;
     struct bw_working working = {0};
     if (bw_limits(table, target, exposure, &plain, NULL, NULL) != BW_OK)
@@ -124,9 +119,9 @@ static void check_everywhere(const struct bw_table *table, enum bw_target target
     bw_working_free(&working);
 }
 
-static void test_everywhere(void **state)
-{
-    static const double wavelengths_nm[] = {200, 310, 355, 400, 440, 532, 700, 905, 1064, 1180, 1300, 1400, 1550, 10600};
+static void test_everywhere(void **state) {
+    static const double wavelengths_nm[] = {200, 310,  355,  400,  440,  532,  700,
+                                            905, 1064, 1180, 1300, 1400, 1550, 10600};
     static const double times_s[] = {1e-12, 1e-8, 1e-3, 0.25, 10, 50, 2e4}, subtenses_rad[] = {0, 4e-3, 0.15};
     static const double areas_m2[] = {0, 0.05, 1};
     (void)state;
@@ -140,8 +135,7 @@ static void test_everywhere(void **state)
                 }
 }
 
-int main(void)
-{
+int main(void) {
     const struct CMUnitTest tests[] = {cmocka_unit_test(test_steps), cmocka_unit_test(test_everywhere)};
     return cmocka_run_group_tests_name("limits working", tests, NULL, NULL) == 0 ? EXIT_SUCCESS : EXIT_FAILURE;
 }
