@@ -1,8 +1,6 @@
 /* Which emission a failed preparation is about, so that the message names it. */
 #include "internal.h"
 
-#include <stdio.h>
-
 static enum bw_status try_viewing(const struct assess_job *job, const struct bw_emission *emission,
                                   enum bw_target target, double exposure_s, struct bw_error *cause) {
     struct bw_train_limit_set limits;
@@ -34,10 +32,9 @@ enum bw_status assess_blame(const struct assess_job *job, const struct bw_distan
     for (size_t i = 0; cause->status != BW_NO_MEMORY && i < handpiece->output.count; i++) {
         const struct bw_emission *emission = &handpiece->output.emissions[i];
         struct bw_error own = {0};
-        char number[BW_NUMBER_SIZE];
         if (fails_alone(job, distance, emission, &own))
-            return bw_error_set(job->error, own.status, "laser %s, emission %s (%s nm): %s", laser->name,
-                                emission->name, bw_format(number, emission->wavelength_nm, 6, BW_NEAREST), own.text);
+            return bw_error_set(job->error, own.status, "laser %s, emission %s (%.6g nm): %s", laser->name,
+                                emission->name, emission->wavelength_nm, own.text);
     }
     return bw_error_set(job->error, cause->status, "laser %s, handpiece %s: %s", laser->name, handpiece->name,
                         cause->text);

@@ -5,6 +5,11 @@
 #include <stdio.h>
 #include <string.h>
 
+static const char *seconds_words(char out[BW_NUMBER_SIZE], double exposure_s) {
+    snprintf(out, BW_NUMBER_SIZE, "%.6g", exposure_s); /* as given: an input, not a result */
+    return out;
+}
+
 static void unbounded(const struct assess_job *job, const char *subject, const struct bw_distance_result *distance) {
     if (!distance->nohd.unbounded && !distance->skin.unbounded && !distance->diffuse.unbounded)
         return;
@@ -23,7 +28,7 @@ static void skin(const struct assess_job *job, const char *subject, const struct
     assess_finding(job, BW_CAUTION, subject,
                    "Skin in the beam for %s s gets up to %s times the skin limit; the hazard reaches %s. Keep hands "
                    "and all skin that is not treated out of the beam.",
-                   bw_format(seconds, distance->skin_time.exposure_s, 3, BW_NEAREST),
+                   seconds_words(seconds, distance->skin_time.exposure_s),
                    bw_format(times, distance->skin_ratio_at_exit, 2, BW_UP),
                    bw_length_words(reach, distance->skin.distance_m, job->the_case->us_units));
 }
@@ -35,7 +40,7 @@ static void diffuse(const struct assess_job *job, const char *subject, const str
     assess_finding(job, BW_CAUTION, subject,
                    "Looking for %s s at the lit spot on a white matt surface is above the eye limit up to %s from "
                    "it: whoever only watches needs goggles too.",
-                   bw_format(seconds, distance->diffuse_time.exposure_s, 3, BW_NEAREST),
+                   seconds_words(seconds, distance->diffuse_time.exposure_s),
                    bw_length_words(reach, distance->diffuse.distance_m, job->the_case->us_units));
 }
 
@@ -46,8 +51,8 @@ static void exposure(const struct assess_job *job, const char *subject, const st
                        subject,
                        "The exposure time, %s s, comes from the case file; customary for an accidental glance is %s "
                        "s%s",
-                       bw_format(given, distance->glance.exposure_s, 4, BW_NEAREST),
-                       bw_format(customary, distance->customary.exposure_s, 4, BW_NEAREST),
+                       seconds_words(given, distance->glance.exposure_s),
+                       seconds_words(customary, distance->customary.exposure_s),
                        distance->glance.exposure_s >= distance->customary.exposure_s
                            ? "."
                            : ". Write down why it is shorter.");
@@ -56,7 +61,7 @@ static void exposure(const struct assess_job *job, const char *subject, const st
                        "The exposure time of %s s for visible light rests on the aversion response (blinking, turning "
                        "away). The German radiation protection commission (SSK, 15 March 2006) says that newer results "
                        "do not bear this assumption out.",
-                       bw_format(given, distance->glance.exposure_s, 3, BW_NEAREST));
+                       seconds_words(given, distance->glance.exposure_s));
 }
 
 static void meter(const struct assess_job *job) {

@@ -57,7 +57,7 @@ static void dark(const struct assess_job *job, const struct bw_goggles *goggles)
     snprintf(subject, sizeof subject, "eyewear %s", goggles->name);
     assess_finding(job, BW_NOTE, subject,
                    "Lets through %s %% of the light: below 20 %% the room needs extra lighting (from memory).",
-                   bw_format(percent, 100. * goggles->luminous_transmittance, 3, BW_DOWN));
+                   bw_format(percent, 100. * goggles->luminous_transmittance, 2, BW_DOWN));
 }
 
 void assess_eyewear_findings(const struct assess_job *job) {

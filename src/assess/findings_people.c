@@ -6,11 +6,11 @@
 static void add_densities(struct bw_text *out, const struct bw_person_result *person) {
     const char *before = "";
     for (size_t i = 0; i < person->od_count; i++) {
-        char od[BW_NUMBER_SIZE], wavelength[BW_NUMBER_SIZE];
+        char od[BW_NUMBER_SIZE];
         if (person->od[i].od <= 0.)
             continue;
-        bw_text_add(out, "%sOD %s at %s nm", before, bw_format_fixed(od, person->od[i].od, 1, BW_UP),
-                    bw_format(wavelength, person->od[i].wavelength_nm, 6, BW_NEAREST));
+        bw_text_add(out, "%sOD %s at %.6g nm", before, bw_format_fixed(od, person->od[i].od, 1, BW_UP),
+                    person->od[i].wavelength_nm);
         before = ", ";
     }
 }

@@ -3,6 +3,7 @@
 
 #include <math.h>
 #include <stdio.h>
+#include <string.h>
 
 static const double metre_per_foot = 0.3048;
 
@@ -70,19 +71,14 @@ void assess_handpiece_words(const struct assess_job *job, const struct bw_distan
     snprintf(out, BW_TITLE_SIZE, "%s %s", assess_laser(job, distance)->name, assess_handpiece(job, distance)->name);
 }
 
-static void add_wavelength(struct bw_text *out, double wavelength_nm) {
-    char number[BW_NUMBER_SIZE];
-    bw_text_add(out, "%s nm", bw_format(number, wavelength_nm, 6, BW_NEAREST));
-}
-
 void assess_emission_densities(struct bw_text *out, const struct bw_output *output, const double *od) {
     const char *before = "";
     char number[BW_NUMBER_SIZE];
     for (size_t i = 0; i < output->count; i++) {
         if (od[i] <= 0.)
             continue;
-        bw_text_add(out, "%sOD %s at ", before, bw_format_fixed(number, od[i], 1, BW_UP));
-        add_wavelength(out, output->emissions[i].wavelength_nm);
+        bw_text_add(out, "%sOD %s at %.6g nm", before, bw_format_fixed(number, od[i], 1, BW_UP),
+                    output->emissions[i].wavelength_nm);
         before = ", ";
     }
 }
@@ -92,9 +88,10 @@ void assess_failures(struct bw_text *out, const struct bw_output *output, const 
     for (size_t i = 0; i < verdict->count; i++) {
         if (verdict->emissions[i].verdict == BW_SUFFICIENT)
             continue;
-        bw_text_add(out, "%s%s (", before, output->emissions[i].name);
-        add_wavelength(out, output->emissions[i].wavelength_nm);
-        bw_text_add(out, "): %s", verdict->emissions[i].reason);
+        bw_text_add(out, "%s%s", before, output->emissions[i].name);
+        if (!strstr(verdict->emissions[i].reason, " nm"))
+            bw_text_add(out, " (%.6g nm)", output->emissions[i].wavelength_nm);
+        bw_text_add(out, ": %s", verdict->emissions[i].reason);
         before = "; ";
     }
 }

@@ -44,7 +44,7 @@ static void limit_row(struct bw_text *out, const struct bw_emission *emission, c
     html_cell(out, NULL, skin ? "skin" : "eye, %s", bw_effect_name(limit->limit.effect));
     for (int i = 0; i < BW_RULES; i++)
         html_cell(out, "n", "%s", isnan(limit->rules_j_m2[i]) ? "" : bw_format(number, limit->rules_j_m2[i], 3, BW_DOWN));
-    html_cell(out, NULL, "%s", emission->continuous ? "continuous" : bw_train_rule_name(limit->rule));
+    html_cell(out, "keep", "%s", emission->continuous ? "continuous" : bw_train_rule_name(limit->rule));
     html_cell(out, "n", "%s", bw_format(number, limit->irradiance_w_m2, 3, BW_DOWN));
     html_cell(out, "n", "%s", report_plain(words, 1e3 * limit->limit.aperture_m));
     html_cell(out, NULL, "%s, %s (%s)", limit->limit.source.row, limit->limit.source.clause,

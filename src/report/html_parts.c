@@ -84,7 +84,7 @@ void html_cell(struct bw_text *out, const char *class, const char *format, ...) 
 }
 
 const char *html_verdict_class(enum bw_verdict verdict) {
-    return verdict == BW_SUFFICIENT ? "good" : "bad";
+    return verdict == BW_SUFFICIENT ? "good v" : "bad v";
 }
 
 const char *html_verdict_words(enum bw_verdict verdict) {

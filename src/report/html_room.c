@@ -42,11 +42,11 @@ static void person(struct bw_text *out, const struct bw_result *result, const st
     html_cell(out, "n", "%s", report_ratio(words, each->place.ratio));
     html_cell(out, NULL, "%s", bw_path_words(path, &each->place, result->the_case->us_units));
     densities(out, each);
-    html_cell(out, NULL, "%s", person->has_eyewear ? result->the_case->eyewear[person->eyewear].name : "nothing");
+    html_cell(out, "name", "%s", person->has_eyewear ? result->the_case->eyewear[person->eyewear].name : "nothing");
     if (each->has_verdict)
         html_cell(out, html_verdict_class(each->verdict), "%s", html_verdict_words(each->verdict));
     else if (each->needs_eyewear)
-        html_cell(out, "bad", "%s", "\xE2\x9C\x97 unprotected");
+        html_cell(out, "bad v", "%s", "\xE2\x9C\x97 unprotected");
     else
         html_cell(out, "good", "%s", "\xE2\x9C\x93 outside the zone");
     html_row_end(out);
@@ -89,7 +89,7 @@ static void openings(struct bw_text *out, const struct bw_result *result, const 
         html_row(out, NULL);
         html_cell(out, NULL, "%s %s", letter, room->openings[i].name);
         html_cell(out, NULL, "%s", report_opening_kind(room->openings[i].kind));
-        html_cell(out, NULL, "%s", cover_words(&room->openings[i]));
+        html_cell(out, "name", "%s", cover_words(&room->openings[i]));
         html_cell(out, each->leaves ? "n bad" : "n", "%s", report_ratio(words, each->ratio_beyond));
         html_cell(out, NULL, "%s", bw_path_words(path, &each->worst, result->the_case->us_units));
         html_cell(out, each->leaves ? "bad" : NULL, "%s", each->needs);
@@ -102,7 +102,7 @@ static void material(struct bw_text *out, const char *what, const struct bw_mate
     char words[REPORT_QUANTITY_SIZE];
     html_row(out, NULL);
     html_cell(out, NULL, "%s", what);
-    html_cell(out, NULL, "%s", material->name);
+    html_cell(out, "name", "%s", material->name);
     html_cell(out, NULL, "%s", bw_finish_name(material->finish));
     html_cell(out, "n", "%s", report_plain(words, 100. * material->reflectance));
     html_cell(out, "n", "%s", report_plain(words, 100. * material->matt_reflectance));

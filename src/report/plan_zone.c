@@ -118,7 +118,8 @@ static bool label_line(struct plan *plan, const struct bw_contour *line, const c
     for (size_t i = 0; i < LABEL_TRIES; i++) {
         double share = 0.5 + (i % 2 ? 0.5 : -0.5) * (double)i / LABEL_TRIES;
         size_t point = (size_t)(share * (double)(line->count - 1));
-        if (plan_label_on(plan, plan_at(plan, line->points[point]), text))
+        bool inside = bw_polygon_contains(&plan->room->outline, line->points[point]);
+        if (inside && plan_label_on(plan, plan_at(plan, line->points[point]), text))
             return true;
     }
     return false;
