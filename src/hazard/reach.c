@@ -70,7 +70,7 @@ static struct bw_reach solve(struct search *search) {
     double waist_m = bw_hazard_last_waist_m(search->hazard, search->only), distance_m = 0.;
     double at_infinity = ratio_at(search, HUGE_VAL), at_waist = ratio_at(search, waist_m);
     /* What spreads is nothing at infinity; what is collimated stays. Down to exactly 1 from above never ends either. */
-    if (!(at_infinity <= 1.) || (!(at_infinity < 1.) && !(at_waist <= 1.)))
+    if (!(at_infinity < 1.) && !(at_waist <= 1.))
         return (struct bw_reach){HUGE_VAL, true};
     if (!(at_waist <= 1.)) {
         distance_m = beyond_waist(search, waist_m);

@@ -212,6 +212,7 @@ static struct window_case {
     {"window: 0.25 s of 16 kHz are 4000", 16000., 31.25e-6, .25, 4000., 4000.},
     {"window: 0.3 s of 10 Hz are 3", 10., 1e-9, .3, 3., 3.},
     {"window: 0.7 s of 10 Hz are 7", 10., 1e-12, .7, 7., 7.},
+    {"window: 0.07 s of 100 Hz are 7, not 7.000000000000001", 100., 1e-12, .07, 7., 7.},
     {"window: 3e4 s of 90 MHz", 90e6, 1e-13, 3e4, 2.7e12, 2.7e12},
 };
 

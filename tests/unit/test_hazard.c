@@ -419,6 +419,26 @@ static void test_diffuse(void **state) {
     near(ratio.total, 1., 1e-9, "ratio at the distance");
 }
 
+/* 0.2 s pulses, 300 of them in T2 = 100 s, spot 10 cm. Nearer than 1 m (alpha above 100 mrad) no train correction
+ * holds and the average, 18 (100/1.5) 100^-1/4 = 379.5 W/m2, is kept with a ratio of 0.92. From there to
+ * alpha_max(0.2 s) = 200 x 0.2^1/2 = 89.4 mrad the correction is about 300^-1/4 and the ratio 1.2; then it is 0.4, and
+ * the ratio below 1. */
+static void test_diffuse_step(void **state) {
+    (void)state;
+    struct bw_output output = {.count = 0};
+    struct bw_hazard hazard;
+    struct bw_spot spot;
+    struct bw_reach reach;
+    struct bw_ratio ratio;
+    add_train(&output, 650., 1100. / .6, .2, 3., (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, .1, 0., 0., .1});
+    prepare(&hazard, &output, BW_EYE, 100.);
+    assert_int_equal(bw_hazard_spot(&output, 0., 1., &spot), BW_OK);
+    assert_int_equal(bw_hazard_diffuse_ratio(&hazard, &spot, .1 / 2. / tan(.0501), &ratio, NULL), BW_OK);
+    assert_true(ratio.total <= 1.);
+    assert_int_equal(bw_hazard_diffuse_reach(&hazard, &spot, &reach, NULL, NULL), BW_OK);
+    near(reach.distance_m, .1 / 2. / tan(.2 * sqrt(.2) / 2.), 1e-9, "where the correction eases");
+}
+
 /* The farthest place that a fine scan finds, for random outputs, spots and rule sets. */
 static void test_diffuse_scan(void **state) {
     (void)state;
@@ -619,7 +639,7 @@ static void test_working(void **state) {
 }
 
 static struct CMUnitTest
-    tests[COUNT(forms) + COUNT(ends) + COUNT(sums) + COUNT(shares) + COUNT(diffuses) + COUNT(times) + 13];
+    tests[COUNT(forms) + COUNT(ends) + COUNT(sums) + COUNT(shares) + COUNT(diffuses) + COUNT(times) + 14];
 
 #define ADD_ROWS(rows, function)                                                                                       \
     for (size_t i = 0; i < COUNT(rows); i++)                                                                           \
@@ -644,6 +664,7 @@ int main(void) {
         cmocka_unit_test(test_tissues),
         cmocka_unit_test(test_density_and_distance_agree),
         cmocka_unit_test(test_density_bad_ratio),
+        cmocka_unit_test(test_diffuse_step),
         cmocka_unit_test(test_diffuse_scan),
         cmocka_unit_test(test_diffuse_at_contact),
         cmocka_unit_test(test_time_scan),

@@ -81,6 +81,15 @@ static struct rule_case {
     {"skin has no train rule", "iec-60825-1-2014", 904., 200e-9, 5e3, 10., 0., BW_SKIN, BW_EFFECTS,
      /* 1.1e4 CA (2e-7)^1/4; 1.1e4 CA 10^1/4 / 50000 */
      5.9518254221e2, 1.0009687324, NONE, BW_RULE_AVERAGE},
+    {"the kink where alpha_max passes the subtense", "icnirp-2013", 810., 1e-6, 200., .0201, 20e-3, BW_EYE, BW_EFFECTS,
+     /* alpha_max = 200 t^1/2 reaches 20 mrad at 10 ms, where three pulses bind: 18 CA (20/1.5) 0.010001^0.75 / 3.
+        Single: 2e-3 CA 20^2/(1.5 x 5); rule 3 does not correct pulses below Ti */
+     .17702260343, 4.1987745625, .17702260343, BW_RULE_SINGLE},
+    {"a step down between two pulses", "icnirp-2013", 810., 1e-9, 250e3, 7e-6, 0., BW_EYE, BW_EFFECTS,
+     /* two pulses, 4 us apart; at 5 us the printed rows step down to 18 CA (5e-6)^0.75 = 1.9034e-3 CA */
+     3.3191738149e-3, 1.57931955e-3, 1.57931955e-3, BW_RULE_AVERAGE},
+    {"a single pulse keeps its limit at such a step", "icnirp-2013", 810., 1e-9, 1., 5e-6, 0., BW_EYE, BW_EFFECTS,
+     3.3191738149e-3, 3.3191738149e-3, 3.3191738149e-3, BW_RULE_AVERAGE},
     {"one pulse in the exposure", "icnirp-2013", 904., 200e-9, 1., .25, 0., BW_EYE, BW_EFFECTS,
      /* 2e-3 CA; 18 CA 0.25^0.75; 2e-3 CA */
      5.1171717738e-3, 16.282740878, 5.1171717738e-3, BW_RULE_SINGLE},
