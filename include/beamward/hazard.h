@@ -22,7 +22,7 @@ const char *bw_train_rule_name(enum bw_train_rule rule); /* "single", "average",
 struct bw_train_limit {
     struct bw_limit limit;       /* the printed row that governs, at the time where it governs */
     enum bw_train_rule rule;     /* which governs; continuous: BW_RULE_AVERAGE */
-    double rules_j_m2[BW_RULES]; /* limit per pulse by each rule (continuous: over the exposure time); NAN where a rule does not apply */
+    double rules_j_m2[BW_RULES]; /* limit per pulse by each rule (continuous: of the exposure time); NAN where a rule does not apply */
     double per_pulse_j_m2;       /* the lowest of them */
     double irradiance_w_m2;      /* the same as a limit of the time-mean irradiance (average power) */
     double aperture_m;           /* to average the exposure over: the row's, or smaller where a shorter window with a
@@ -89,15 +89,15 @@ struct bw_ratio {
     size_t governing;               /* index of the largest term within the largest sum */
 };
 
-/* Hazard ratio on the axis of the direct beam; share = product of reflectances and transmittances passed. */
+/* Hazard ratio on the axis of the direct beam. NAN for a bad distance or if nothing was prepared. */
 double bw_hazard_ratio(const struct bw_hazard *hazard, double distance_m);
 void bw_hazard_ratio_detail(const struct bw_hazard *hazard, double distance_m, struct bw_ratio *ratio);
 /* The same for a place off the axis by offset_m: an upper bound that never rises with the offset. */
 double bw_hazard_ratio_off_axis(const struct bw_hazard *hazard, double distance_m, double offset_m);
-/* Envelope: the largest ratio at this distance or farther (focused beams). */
+/* Envelope: the largest ratio at this distance or farther (focused beams); at most 1e-4 above it, never below. */
 double bw_hazard_ratio_envelope(const struct bw_hazard *hazard, double distance_m);
 
-/* A diffuse reflection: the spot (d63 spot_m of the emission whose spot is smallest) as an extended source,
+/* A diffuse reflection: the spot of each emission (d63) as an extended source of its own subtense,
  * E = rho P / (pi r^2), never more than rho times the irradiance of the spot. */
 struct bw_spot {
     double reflectance; /* 0 to 1 */
@@ -121,7 +121,7 @@ enum bw_status bw_hazard_diffuse_reach(const struct bw_hazard *hazard, const str
 
 /* Optical density that each emission needs so that all together keep the limit: the allowance is shared
  * equally among those that need any (each residual is at most c, where the sum of min(ratio, c) is 1); a ratio
- * below c keeps its own. OD = log10(ratio / c), 0 where none is needed. `reduction` (1 = none) scales the ratios. */
+ * below c keeps its own. OD = log10(ratio / c), 0 where none is needed. */
 void bw_hazard_optical_density(const struct bw_hazard *hazard, const double term_ratios[BW_TERMS_MAX],
                                double od[BW_EMISSIONS_MAX]);
 /* Term ratios at a distance, for bw_hazard_optical_density. */

@@ -27,6 +27,11 @@ static void write_rule(const struct train_case *train, const struct tally *tally
     const struct window *window = &finding->window;
     double limit_j_m2 = bw_hazard_whole_limit_j_m2(&finding->limit, train->viewing->subtense_rad);
     const char *source = finding->limit.source.clause;
+    if (train->viewing->subtense_rad > finding->limit.acceptance_rad)
+        bw_working_step(working, "H", limit_j_m2, "J/m2", source,
+                        "H (alpha / acceptance)^2, of the whole exposure: the cone admits only its share",
+                        "%.6g J/m2 x (%.6g / %.6g)^2, t = %.9g s", finding->limit.radiant_exposure_j_m2,
+                        train->viewing->subtense_rad, finding->limit.acceptance_rad, window->time_s);
     if (train->emission->continuous)
         bw_working_step(working, symbols[rule], value, "J/m2", source, "H(t), t the exposure", "%.6g J/m2, t = %.9g s",
                         limit_j_m2, window->time_s);
