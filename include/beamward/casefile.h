@@ -54,6 +54,10 @@ void bw_case_free(struct bw_case *the_case);
 
 /* A commented starter case file that runs as it is. */
 const char *bw_case_starter(void);
+/* The examples of examples/ that run as they are, in order of name: their text, or NULL for an unknown name. */
+size_t bw_case_examples_count(void);
+const char *bw_case_example_name(size_t index);
+const char *bw_case_example(const char *name);
 
 #ifdef __cplusplus
 }

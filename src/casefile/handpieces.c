@@ -1,0 +1,94 @@
+/* Handpieces: each takes all emissions of its laser, through its own beam or one of the emission's own. */
+#include "internal.h"
+
+#include <stdio.h>
+#include <string.h>
+
+static const struct range exposures_s = {1e-13, 3e4}; /* what the published tables cover */
+
+static void read_emission_beam(struct reading *reading, struct section *section, const struct bw_laser *laser,
+                               struct bw_handpiece *handpiece) {
+    const struct section *emission = sections_refer(reading, section, SECTION_EMISSION, laser->name, section->names[2]);
+    struct bw_beam beam = {0};
+    enum presence presence = read_beam(reading, section, &beam);
+    if (presence == ABSENT && section->key_count == 0)
+        fault_section(reading, section,
+                      "has no beam; beam_diameter_mm and divergence_mrad would be right, or fibre_na "
+                      "and fibre_core_mm");
+    section->made = true;
+    if (!emission || emission->index >= BW_EMISSIONS_MAX)
+        return;
+    handpiece->output.beams[emission->index] = beam;
+    handpiece->emission_beam_given[emission->index] = true;
+}
+
+static void read_emission_beams(struct reading *reading, const struct bw_laser *laser, struct bw_handpiece *handpiece) {
+    size_t at = 0;
+    for (struct section *section; (section = sections_next(reading, &at, SECTION_BEAM, laser->name, handpiece->name));)
+        read_emission_beam(reading, section, laser, handpiece);
+}
+
+static bool all_have_beams(const struct bw_handpiece *handpiece) {
+    for (size_t i = 0; i < handpiece->output.count; i++)
+        if (!handpiece->emission_beam_given[i])
+            return false;
+    return handpiece->output.count > 0;
+}
+
+static void read_handpiece(struct reading *reading, const struct section *section, const struct bw_laser *laser,
+                           struct bw_handpiece *handpiece) {
+    struct bw_beam beam = {0};
+    struct bw_output *output = &handpiece->output;
+    snprintf(handpiece->name, sizeof handpiece->name, "%s", section->names[1]);
+    handpiece->line = section->head->line;
+    value_text(reading, section, "title", handpiece->title, sizeof handpiece->title);
+    handpiece->has_exposure = value_number(reading, section, "exposure", exposures_s, &handpiece->exposure_s) == GIVEN;
+    output->count = laser->emission_count < BW_EMISSIONS_MAX ? laser->emission_count : BW_EMISSIONS_MAX;
+    memcpy(output->emissions, laser->emissions, output->count * sizeof *output->emissions);
+    read_emission_beams(reading, laser, handpiece);
+    enum presence presence = read_beam(reading, section, &beam);
+    if (presence == ABSENT && !all_have_beams(handpiece) && !reading->lost_keys && !reading->lost[SECTION_BEAM])
+        fault_section(reading, section,
+                      "has no beam; beam_diameter_mm and divergence_mrad would be right, or fibre_na "
+                      "and fibre_core_mm");
+    for (size_t i = 0; i < output->count; i++)
+        if (!handpiece->emission_beam_given[i])
+            output->beams[i] = beam;
+}
+
+static void read_handpieces_of(struct reading *reading, struct section *of) {
+    struct bw_laser *laser = &reading->the_case->lasers[of->index];
+    size_t at = 0, count = sections_count(reading, SECTION_HANDPIECE, laser->name, NULL);
+    laser->handpieces = reading_allocate(reading, count, sizeof *laser->handpieces);
+    if (count == 0 && !reading->lost[SECTION_HANDPIECE])
+        fault_section(reading, of, "has no handpiece; [handpiece %s NAME] with its beam would be right", laser->name);
+    for (struct section *section;
+         laser->handpieces && (section = sections_next(reading, &at, SECTION_HANDPIECE, laser->name, NULL));) {
+        section->index = laser->handpiece_count++;
+        section->parent = of->index;
+        section->made = true;
+        read_handpiece(reading, section, laser, &laser->handpieces[section->index]);
+    }
+}
+
+/* Handpieces of lasers that are not there, beams of handpieces that are not there. */
+static void check_owners(struct reading *reading) {
+    struct section *section;
+    struct bw_beam beam;
+    for (size_t at = 0; (section = sections_next(reading, &at, SECTION_HANDPIECE, NULL, NULL));)
+        if (!section->made) {
+            sections_refer(reading, section, SECTION_LASER, section->names[0], NULL);
+            read_beam(reading, section, &beam);
+        }
+    for (size_t at = 0; (section = sections_next(reading, &at, SECTION_BEAM, NULL, NULL));)
+        if (!section->made && sections_refer(reading, section, SECTION_LASER, section->names[0], NULL))
+            sections_refer(reading, section, SECTION_HANDPIECE, section->names[0], section->names[1]);
+}
+
+void read_handpieces(struct reading *reading) {
+    size_t at = 0;
+    for (struct section *section; (section = sections_next(reading, &at, SECTION_LASER, NULL, NULL));)
+        if (section->made)
+            read_handpieces_of(reading, section);
+    check_owners(reading);
+}
