@@ -15,7 +15,7 @@ INCLUDE_INI = -I/usr/include/iniparser
 RULE_SETS = $(wildcard limits_tables/*.ini)
 
 # What is built from C, one archive a module, so that a test links its module and the floors below.
-sources = $(filter-out src/limits/tablec.c,$(wildcard src/$(1)/*.c))
+sources = $(filter-out src/limits/tablec.c src/casefile/embed.c,$(wildcard src/$(1)/*.c))
 objects = $(patsubst src/%.c,$(BUILD)/obj/%.o,$(call sources,$(1)))
 archive = $(BUILD)/lib/$(1).a
 floors_from = $(if $(filter $(1),$(firstword $(2))),$(2),$(call floors_from,$(1),$(wordlist 2,99,$(2))))
@@ -114,6 +114,7 @@ $(call archive,$(1)): $(call objects,$(1)) $$($(1)_EXTRA)
 	ar rcs $$@ $$^
 endef
 limits_EXTRA = $(BUILD)/obj/limits/tables_data.o
+casefile_EXTRA = $(BUILD)/obj/casefile/texts_data.o
 $(foreach m,$(MODULES),$(eval $(call module_rule,$(m))))
 
 # The tables: a host program checks them and writes them out as C.
@@ -128,6 +129,19 @@ $(BUILD)/generated/tables_data.c: $(TABLEC) $(RULE_SETS)
 $(BUILD)/obj/limits/tables_data.o: $(BUILD)/generated/tables_data.c src/limits/internal.h
 	@mkdir -p $(@D)
 	$(COMPILE) -Isrc/limits -c $< -o $@
+
+# The starter and the examples: a host program writes them out as C. One with deliberate mistakes is no start.
+EMBED = $(BUILD)/embed
+CASE_TEXTS = src/casefile/starter.ini $(filter-out examples/mistakes.ini,$(sort $(wildcard examples/*.ini)))
+$(EMBED): src/casefile/embed.c
+	@mkdir -p $(@D)
+	$(COMPILE) $< -o $@
+$(BUILD)/generated/texts_data.c: $(EMBED) $(CASE_TEXTS)
+	@mkdir -p $(@D)
+	$(EMBED) $@ $(CASE_TEXTS)
+$(BUILD)/obj/casefile/texts_data.o: $(BUILD)/generated/texts_data.c src/casefile/internal.h
+	@mkdir -p $(@D)
+	$(COMPILE) -Isrc/casefile -c $< -o $@
 
 LIBS = -liniparser -lm
 $(PROGRAM): $(call objects,cli) $(call archives_from,report)
