@@ -42,7 +42,7 @@ void plan_take_line(struct plan *plan, struct bw_point from, struct bw_point to)
 
 /* Sans-serif faces differ; this errs to the wide side. */
 double plan_text_width(const char *text) {
-    return (double)report_width(text) * PLAN_FONT * 0.6;
+    return (double)report_width(text) * PLAN_FONT * 0.58;
 }
 
 static bool overlaps(struct plan_box a, struct plan_box b) {
@@ -96,10 +96,20 @@ void plan_cut(char *out, size_t size, const char *text, size_t columns) {
     bw_text_free(&cut);
 }
 
-static void draw(struct plan *plan, struct plan_box box, const char *text) {
+/* The text stands at the side of its box that is nearer to the mark. */
+static void draw(struct plan *plan, struct plan_box box, double mark_x, const char *text) {
+    const char *anchor = "middle";
+    double x = (box.left + box.right) / 2, y = (box.top + box.bottom) / 2 + PLAN_FONT * 0.36;
+    if (mark_x < box.left) {
+        anchor = "start";
+        x = box.left + PADDING;
+    } else if (mark_x > box.right) {
+        anchor = "end";
+        x = box.right - PADDING;
+    }
     bw_text_add(&plan->over, "<rect x=\"%.1f\" y=\"%.1f\" width=\"%.1f\" height=\"%.1f\" class=\"halo\"/>", box.left,
                 box.top, box.right - box.left, box.bottom - box.top);
-    plan_text(&plan->over, (box.left + box.right) / 2, (box.top + box.bottom) / 2 + PLAN_FONT * 0.36, "middle", text);
+    plan_text(&plan->over, x, y, anchor, text);
 }
 
 static struct plan_box box_around(double x, double y, const char *text) {
@@ -145,7 +155,7 @@ bool plan_label(struct plan *plan, struct bw_point mark, double radius, const ch
         return false;
     take_box(plan, best);
     leader(plan, mark, radius, best);
-    draw(plan, best, text);
+    draw(plan, best, mark.x_m, text);
     return true;
 }
 
@@ -154,6 +164,6 @@ bool plan_label_on(struct plan *plan, struct bw_point at, const char *text) {
     if (!is_free(plan, box) || crossings(plan, box) > 0)
         return false;
     take_box(plan, box);
-    draw(plan, box, text);
+    draw(plan, box, at.x_m, text);
     return true;
 }

@@ -81,8 +81,8 @@ static void line_entry(struct legend *legend, const char *class, const char *tex
 }
 
 static void zone_entries(struct legend *legend) {
-    static const char *const texts[BW_LEVELS] = {"edge of the zone: the eye limit", "goggles of OD 1 needed here",
-                                                 "goggles of OD 3 needed here", "goggles of OD 5 needed here"};
+    static const char *const texts[BW_LEVELS] = {"edge of the zone: the eye limit", "OD 1: 10 times the eye limit",
+                                                 "OD 3: 1000 times the eye limit", "OD 5: 1e5 times the eye limit"};
     struct bw_point at = next_entry(legend, "hazard zone (NHZ), eye");
     bw_text_add(&legend->plan->over,
                 "<rect x=\"%.1f\" y=\"%.1f\" width=\"34\" height=\"15\" fill=\"url(#hatch-%zu)\" class=\"frame\"/>\n",
@@ -131,11 +131,11 @@ static void mark_entries(struct legend *legend) {
     if (bad_person)
         mark_entry(legend, true, true, "person not protected");
     if (good_person)
-        mark_entry(legend, true, false, "person protected, or outside the zone");
+        mark_entry(legend, true, false, "person protected or outside the zone");
     if (bad_opening)
         mark_entry(legend, false, true, "opening: the hazard leaves");
     if (good_opening)
-        mark_entry(legend, false, false, "opening: nothing above the limit leaves");
+        mark_entry(legend, false, false, "opening: below the eye limit");
 }
 
 static void surface_entries(struct legend *legend) {
