@@ -4,9 +4,11 @@ VERSION = 0.1.0
 BUILD  ?= build
 CC     ?= cc
 CFLAGS ?= -O2 -g
+# A line a file; `make SAY=` shows the whole commands.
+SAY    ?= @echo '  $@';
 WARN    = -Wall -Wextra -Wpedantic -Werror -Wconversion -Wshadow -Wdouble-promotion -Wvla -Wfloat-equal \
           -Wformat=2 -Wundef -Wwrite-strings -Wcast-qual -Wswitch-enum -Wstrict-prototypes -Wmissing-prototypes
-COMPILE = $(CC) -std=c11 -D_POSIX_C_SOURCE=200809L $(WARN) -ffp-contract=off -Iinclude -MMD -MP $(CFLAGS)
+COMPILE = $(SAY)$(CC) -std=c11 -D_POSIX_C_SOURCE=200809L $(WARN) -ffp-contract=off -Iinclude -MMD -MP $(CFLAGS)
 
 # The house, top floor first: each module uses only those to its right.
 MODULES = report assess casefile room eyewear hazard beam limits base
@@ -111,7 +113,7 @@ define module_rule
 $(call archive,$(1)): $(call objects,$(1)) $$($(1)_EXTRA)
 	@mkdir -p $$(@D)
 	@rm -f $$@
-	ar rcs $$@ $$^
+	$$(SAY)ar rcs $$@ $$^
 endef
 limits_EXTRA = $(BUILD)/obj/limits/tables_data.o
 casefile_EXTRA = $(BUILD)/obj/casefile/texts_data.o
@@ -122,10 +124,10 @@ TABLEC = $(BUILD)/tablec
 TABLEC_PARTS = tablec table_read table_read_rows table_read_rules table_cells table_check table_check_parts \
                table_check_train table_index material_read formulas names memory table_facts
 $(TABLEC): $(TABLEC_PARTS:%=$(BUILD)/obj/limits/%.o) $(call archive,base)
-	$(CC) $(CFLAGS) $^ -liniparser -lm -o $@
+	$(SAY)$(CC) $(CFLAGS) $^ -liniparser -lm -o $@
 $(BUILD)/generated/tables_data.c: $(TABLEC) $(RULE_SETS)
 	@mkdir -p $(@D)
-	$(TABLEC) --out $@ $(RULE_SETS)
+	$(SAY)$(TABLEC) --out $@ $(RULE_SETS)
 $(BUILD)/obj/limits/tables_data.o: $(BUILD)/generated/tables_data.c src/limits/internal.h
 	@mkdir -p $(@D)
 	$(COMPILE) -Isrc/limits -c $< -o $@
@@ -138,23 +140,23 @@ $(EMBED): src/casefile/embed.c
 	$(COMPILE) $< -o $@
 $(BUILD)/generated/texts_data.c: $(EMBED) $(CASE_TEXTS)
 	@mkdir -p $(@D)
-	$(EMBED) $@ $(CASE_TEXTS)
+	$(SAY)$(EMBED) $@ $(CASE_TEXTS)
 $(BUILD)/obj/casefile/texts_data.o: $(BUILD)/generated/texts_data.c src/casefile/internal.h
 	@mkdir -p $(@D)
 	$(COMPILE) -Isrc/casefile -c $< -o $@
 
 LIBS = -liniparser -lm
 $(PROGRAM): $(call objects,cli) $(call archives_from,report)
-	$(CC) $(CFLAGS) $^ $(LIBS) -lmd -o $@
+	$(SAY)$(CC) $(CFLAGS) $^ $(LIBS) -lmd -o $@
 
 # tests/unit/test_X.c links module X and the floors below; the others link everything.
 .SECONDEXPANSION:
 $(BUILD)/tests/unit/test_%: $(BUILD)/testobj/unit/test_%.o $$(call archives_from,$$(firstword $$(subst _, ,$$*)))
 	@mkdir -p $(@D)
-	$(CC) $(CFLAGS) $^ $(LIBS) -lcmocka -lgsl -lgslcblas -lm -o $@
+	$(SAY)$(CC) $(CFLAGS) $^ $(LIBS) -lcmocka -lgsl -lgslcblas -lm -o $@
 $(BUILD)/tests/%: $(BUILD)/testobj/%.o $(call archives_from,report)
 	@mkdir -p $(@D)
-	$(CC) $(CFLAGS) $^ $(LIBS) -lcmocka -lgsl -lgslcblas -lm -o $@
+	$(SAY)$(CC) $(CFLAGS) $^ $(LIBS) -lcmocka -lgsl -lgslcblas -lm -o $@
 $(BUILD)/testobj/%.o: tests/%.c
 	@mkdir -p $(@D)
 	$(COMPILE) -Itests -DTEST_PROGRAM='"$(PROGRAM)"' -c $< -o $@

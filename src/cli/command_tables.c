@@ -17,7 +17,7 @@ static enum cli_exit list_tables(void) {
         double low_nm, high_nm;
         bw_table_counts(table, &rows, &from_memory);
         bw_table_span(table, BW_EYE, &low_nm, &high_nm);
-        bw_text_add(&text, "%-18s %g to %g nm, %zu rows, %zu of them from memory\n    %s\n", bw_table_id(table),
+        bw_text_add(&text, "%-18s %.0f to %.0f nm, %zu rows, %zu of them from memory\n    %s\n", bw_table_id(table),
                     low_nm, high_nm, rows, from_memory, bw_table_title(table));
     }
     bw_text_add(&text, "%-18s %zu materials and their reflectances\n", "materials", bw_materials_count());
