@@ -62,17 +62,16 @@ enum decision { DARK, DECIDED, OPEN };
 static enum decision decide(const struct bundle *bundle, const struct barrier *barrier, struct part *part) {
     if (barrier->kind == BARRIER_FACING)
         return any_on_side(&bundle->b, barrier->segment, barrier->side) ? DECIDED : DARK;
-    enum crossing crossing = bw_room_crossing(bundle, barrier->segment);
+    enum crossing crossing = barrier->kind == BARRIER_CHORD ? bw_room_elbow(bundle, barrier->segment, barrier->elbow)
+                                                            : bw_room_crossing(bundle, barrier->segment);
     if (barrier->kind == BARRIER_MIRROR)
         return crossing == CROSS_NONE ? DARK : crossing == CROSS_ALL ? DECIDED : OPEN;
     if (crossing != CROSS_ALL)
         return crossing == CROSS_NONE ? DECIDED : OPEN;
     if (barrier->kind == BARRIER_STOPS)
         part->share *= barrier->passes;
-    else if (bw_room_outside_elbow(bundle, barrier->segment, barrier->elbow))
-        part->chord_share = fmin(part->chord_share, barrier->passes);
     else
-        return OPEN;
+        part->chord_share = fmin(part->chord_share, barrier->passes);
     return part->share > 0 && part->chord_share > 0 ? DECIDED : DARK;
 }
 
@@ -133,9 +132,15 @@ static void measure_angles(const struct image *image, const struct target *targe
 
 /* ---- bounds ----------------------------------------------------------------------------------------------------- */
 
+double bw_room_bound_at(const struct light *light, double length_m) {
+    if (light->spot != NULL)
+        return bw_room_diffuse_at(light->spot, length_m);
+    return light->curve != NULL ? bw_room_curve_at(light->curve, length_m)
+                                : bw_hazard_ratio_envelope(light->hazard, length_m);
+}
+
 static double ratio_bound(const struct light *light, double length_m, double beside_rad) {
-    double on_axis = light->curve != NULL ? bw_room_curve_at(light->curve, length_m)
-                                          : bw_hazard_ratio_envelope(light->hazard, length_m);
+    double on_axis = bw_room_bound_at(light, length_m);
     if (light->beside == NULL || !(beside_rad > 0))
         return on_axis;
     return fmin(on_axis, bw_room_beside_at(light->beside, length_m, beside_rad));
@@ -188,12 +193,9 @@ double bw_room_value(const struct light *light, const struct part *part) {
     double ratio = part->bound;
     if (!light->exact || light->measure != MEASURE_RATIO)
         return ratio;
-    if (light->kind == BW_PATH_DIFFUSE) {
-        double exactly = HUGE_VAL;
-        if (bw_room_diffuse_envelope(light->hazard, light->spot, light->emission, part->length_m, light->far_m, &exactly,
-                                     NULL) == BW_OK)
-            ratio = part->total_share * exactly;
-    } else if (part->aside_rad > 0 && light->beside != NULL)
+    if (light->spot != NULL)
+        ratio = part->total_share * bw_room_diffuse_exactly(light->spot, part->length_m);
+    else if (part->aside_rad > 0 && light->beside != NULL)
         ratio = part->total_share * bw_room_beside_exactly(light->hazard, part->length_m, part->aside_rad);
     else
         ratio = part->total_share * bw_hazard_ratio_envelope(light->hazard, part->length_m);

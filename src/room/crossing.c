@@ -100,23 +100,45 @@ enum crossing bw_room_crossing(const struct bundle *bundle, struct bw_segment s)
 }
 
 static bool beyond(const struct quad *quad, struct bw_segment s, int inner, double margin_m) {
-    double length_m = hypot(s.to.x_m - s.from.x_m, s.to.y_m - s.from.y_m);
+    double dx = s.to.x_m - s.from.x_m, dy = s.to.y_m - s.from.y_m, length_m = sqrt(dx * dx + dy * dy);
     double margin = (margin_m - hair_m) * length_m;
     struct range range = sides(quad, s);
     return inner > 0 ? range.high <= -margin : range.low >= margin;
 }
 
-static bool outside(const struct quad *quad, struct bw_segment chord, struct bw_point elbow, double radius_m) {
+/* 1: the quad lies outside the triangle of the elbow, -1: inside, 0: not certain. */
+static int outside(const struct quad *quad, struct bw_segment chord, struct bw_point elbow, double radius_m) {
     double area = cross(chord.from, chord.to, elbow);
     if (fabs(area) <= hair_m * (fabs(chord.to.x_m - chord.from.x_m) + fabs(chord.to.y_m - chord.from.y_m)))
-        return true; /* a straight joint: no inside */
+        return 1; /* a straight joint: no inside */
     int inner = area > 0 ? 1 : -1;
-    return beyond(quad, chord, inner, radius_m) || beyond(quad, (struct bw_segment){chord.to, elbow}, inner, 0) ||
-           beyond(quad, (struct bw_segment){elbow, chord.from}, inner, 0);
+    struct bw_segment to = {chord.to, elbow}, from = {elbow, chord.from};
+    if (beyond(quad, chord, inner, radius_m) || beyond(quad, to, inner, 0) || beyond(quad, from, inner, 0))
+        return 1;
+    return beyond(quad, chord, -inner, radius_m) && beyond(quad, to, -inner, 0) && beyond(quad, from, -inner, 0) ? -1 : 0;
 }
 
-/* Two stops that meet at an elbow: a link that crosses the chord between their far ends goes through the triangle, and
- * if neither of its ends lies within, it leaves by one of the two stops. */
-bool bw_room_outside_elbow(const struct bundle *bundle, struct bw_segment chord, struct bw_point elbow) {
-    return outside(&bundle->a, chord, elbow, bundle->a_radius_m) && outside(&bundle->b, chord, elbow, 0);
+static bool apart_from_elbow(const struct bundle *bundle, struct bw_segment chord, struct bw_point elbow) {
+    return fmin(fmin(chord.from.x_m, chord.to.x_m), elbow.x_m) > bundle->high.x_m ||
+           fmax(fmax(chord.from.x_m, chord.to.x_m), elbow.x_m) < bundle->low.x_m ||
+           fmin(fmin(chord.from.y_m, chord.to.y_m), elbow.y_m) > bundle->high.y_m ||
+           fmax(fmax(chord.from.y_m, chord.to.y_m), elbow.y_m) < bundle->low.y_m;
+}
+
+/* Do all links cross one or the other of two stops that meet at the elbow, and whose ends the chord joins?
+ * Notes: 1) A link that crosses the chord and has neither end within the triangle leaves it by one of the two stops.
+ *        2) A link with one end within and one outside that does not cross the chord goes through one of them.
+ *        CROSS_NONE here means that this joint will never tell anything. */
+enum crossing bw_room_elbow(const struct bundle *bundle, struct bw_segment chord, struct bw_point elbow) {
+    if (apart_from_elbow(bundle, chord, elbow))
+        return CROSS_NONE;
+    int a = outside(&bundle->a, chord, elbow, bundle->a_radius_m), b = outside(&bundle->b, chord, elbow, 0);
+    if (a == 0 || b == 0)
+        return CROSS_SOME;
+    if (a < 0 && b < 0)
+        return CROSS_NONE;
+    enum crossing crossing = bw_room_crossing(bundle, chord);
+    if (a > 0 && b > 0)
+        return crossing;
+    return crossing == CROSS_NONE ? CROSS_ALL : CROSS_SOME;
 }

@@ -81,91 +81,94 @@ enum bw_status bw_room_direct_curve(const struct bw_hazard *hazard, double far_m
 
 /* ---- diffuse ---------------------------------------------------------------------------------------------------- */
 
-/* On its way to a waist a beam gets narrower: a surface farther off may bear a smaller spot. */
-enum bw_status bw_room_least_spot(const struct bw_output *output, double path_m, struct bw_spot *spot) {
-    enum bw_status status = bw_hazard_spot(output, path_m, 1., spot);
-    for (size_t i = 0; status == BW_OK && i < output->count; i++)
-        if (output->beams[i].waist_m > path_m)
-            spot->diameter_m[i] = fmin(spot->diameter_m[i], bw_beam_diameter_m(&output->beams[i], output->beams[i].waist_m));
-    return status;
-}
-
 static double pick(const struct bw_ratio *ratio, size_t only) {
     return only < BW_EMISSIONS_MAX ? ratio->emission[only] : ratio->total;
 }
 
-/* Train corrections change their law at these subtenses (limits tables, [train]), and then a larger spot may have a
- * stricter limit: so all spots from the smallest up are asked at both ends of each law. */
+/* Train corrections change their law at these subtenses (limits tables, [train]): there a larger spot, or a place farther
+ * off, may be the stricter. Between them a smaller spot is stricter, and the ratio falls with the distance: E falls as
+ * 1/r^2, and no limit grows faster than the square of the subtense. */
 static const double steps_rad[] = {1.5e-3, 5e-3, 100e-3};
 enum { STEPS = 3 };
+static const double just_beyond = 1 + 1e-9;
 
-static bool is_pulsed(const struct bw_output *output) {
-    bool pulsed = false;
-    for (size_t i = 0; i < output->count; i++)
-        pulsed = pulsed || !output->emissions[i].continuous;
-    return pulsed;
-}
-
-enum bw_status bw_room_diffuse_at(const struct bw_hazard *hazard, const struct bw_spot *spot, size_t only,
-                                  double distance_m, double *ratio, struct bw_error *error) {
+/* All spots from the smallest up: each law at the end where it is strictest. */
+static enum bw_status diffuse_at(const struct spot_curve *spot, double distance_m, double *ratio,
+                                 struct bw_error *error) {
+    const struct bw_output *output = spot->hazard->output;
     struct bw_ratio at;
-    enum bw_status status = bw_hazard_diffuse_ratio(hazard, spot, distance_m, &at, error);
-    *ratio = pick(&at, only);
-    for (size_t k = 0; status == BW_OK && is_pulsed(hazard->output) && k < STEPS; k++) {
-        struct bw_spot other = *spot;
-        double step_m = 2 * distance_m * tan(steps_rad[k] / 2) * (1 + 1e-9);
+    enum bw_status status = bw_hazard_diffuse_ratio(spot->hazard, &spot->spot, distance_m, &at, error);
+    *ratio = pick(&at, spot->emission);
+    for (size_t k = 0; status == BW_OK && k < STEPS; k++) {
+        struct bw_spot other = spot->spot;
+        double step_m = 2 * distance_m * tan(steps_rad[k] / 2) * just_beyond;
         bool larger = false;
-        for (size_t i = 0; i < hazard->output->count; i++) {
-            larger = larger || step_m > spot->diameter_m[i];
-            other.diameter_m[i] = fmax(step_m, spot->diameter_m[i]);
-        }
+        for (size_t i = 0; i < output->count; i++)
+            if (!output->emissions[i].continuous && step_m > spot->spot.diameter_m[i]) {
+                other.diameter_m[i] = step_m;
+                larger = true;
+            }
         if (!larger)
             continue;
-        status = bw_hazard_diffuse_ratio(hazard, &other, distance_m, &at, error);
-        *ratio = fmax(*ratio, pick(&at, only));
+        status = bw_hazard_diffuse_ratio(spot->hazard, &other, distance_m, &at, error);
+        *ratio = fmax(*ratio, pick(&at, spot->emission));
     }
     return status;
 }
 
-/* The same, or the ratio somewhat farther (but within reach of the curve) where a train correction sets in. */
-enum bw_status bw_room_diffuse_envelope(const struct bw_hazard *hazard, const struct bw_spot *spot, size_t only,
-                                        double distance_m, double far_m, double *ratio, struct bw_error *error) {
-    enum bw_status status = bw_room_diffuse_at(hazard, spot, only, distance_m, ratio, error);
-    for (size_t i = 0; is_pulsed(hazard->output) && i < hazard->output->count; i++)
+/* The largest at this distance or where a train correction sets in farther off. */
+static double envelope_at(const struct spot_curve *spot, double distance_m) {
+    double ratio = HUGE_VAL;
+    if (diffuse_at(spot, distance_m, &ratio, NULL) != BW_OK || isnan(ratio))
+        return HUGE_VAL; /* unknown is not safe */
+    for (size_t i = 0; i < spot->step_count; i++)
+        if (spot->steps[i].distance_m > distance_m)
+            ratio = fmax(ratio, spot->steps[i].ratio);
+    return ratio;
+}
+
+double bw_room_diffuse_exactly(const struct spot_curve *spot, double distance_m) {
+    return envelope_at(spot, distance_m);
+}
+
+/* A bin is filled when first asked for: a limit costs far more than all else. */
+double bw_room_diffuse_at(struct spot_curve *spot, double distance_m) {
+    struct curve *curve = &spot->curve;
+    size_t bin = bw_room_curve_bin(curve, distance_m);
+    if (isnan(curve->bound[bin]))
+        curve->bound[bin] = envelope_at(spot, bin > 0 ? lower_edge_m(curve, bin - 1) : 0);
+    return curve->bound[bin];
+}
+
+static enum bw_status find_steps(struct spot_curve *spot, struct bw_error *error) {
+    enum bw_status status = BW_OK;
+    for (size_t i = 0; i < spot->hazard->output->count; i++)
         for (size_t k = 0; k < STEPS && status == BW_OK; k++) {
-            double step_m = spot->diameter_m[i] / 2 / tan(steps_rad[k] / 2) * (1 + 1e-9), there = 0;
-            if (!(step_m > distance_m && step_m < far_m))
+            if (spot->hazard->output->emissions[i].continuous)
                 continue;
-            status = bw_room_diffuse_at(hazard, spot, only, step_m, &there, error);
-            *ratio = fmax(*ratio, there);
+            struct spot_step *step = &spot->steps[spot->step_count++];
+            step->distance_m = spot->spot.diameter_m[i] / 2 / tan(steps_rad[k] / 2) * just_beyond;
+            status = diffuse_at(spot, step->distance_m, &step->ratio, error);
         }
     return status;
 }
 
-/* Given:    spot   the smallest of each emission; bits  2^bits bins an octave
- * Returned: curve  for reflectance 1
- * Notes:    Away from the spot E falls as 1/r^2 and no limit grows faster than the square of the subtense, so within a bin
- *           the ratio is at most its value at the lower edge, or, if a train correction sets in within it, at most that
- *           at the upper edge times (upper / lower)^2. From the far end the largest so far is kept: the ratio may rise
- *           with the distance where a correction sets in. */
-enum bw_status bw_room_diffuse_curve(const struct bw_hazard *hazard, const struct bw_spot *spot, size_t only, int bits,
-                                     double far_m, struct curve *curve, struct bw_error *error) {
-    enum bw_status status = init(curve, bits, far_m);
-    double upper = 0, largest = 0;
-    bool pulsed = is_pulsed(hazard->output);
+/* Given:    spot   hazard, emission and path_m set, the rest zero
+ * Returned: spot   the smallest of each emission on a surface this far or farther; reflectance 1; the curve empty
+ * Notes:    On its way to a waist a beam gets narrower: a surface farther off may bear a smaller spot. */
+enum bw_status bw_room_diffuse_curve(struct spot_curve *spot, double far_m, struct bw_error *error) {
+    const struct bw_output *output = spot->hazard->output;
+    enum bw_status status = bw_hazard_spot(output, spot->path_m, 1., &spot->spot);
+    for (size_t i = 0; status == BW_OK && i < output->count; i++)
+        if (output->beams[i].waist_m > spot->path_m)
+            spot->spot.diameter_m[i] =
+                fmin(spot->spot.diameter_m[i], bw_beam_diameter_m(&output->beams[i], output->beams[i].waist_m));
+    double any;
     if (status == BW_OK)
-        status = bw_room_diffuse_at(hazard, spot, only, lower_edge_m(curve, curve->bins), &upper, error);
-    for (size_t i = curve->bins; status == BW_OK && i-- > 0;) {
-        double lower = 0, wider = lower_edge_m(curve, i + 1) / lower_edge_m(curve, i);
-        status = bw_room_diffuse_at(hazard, spot, only, lower_edge_m(curve, i), &lower, error);
-        largest = fmax(largest, fmax(lower, pulsed ? upper * wider * wider : upper));
-        curve->bound[i + 1] = largest;
-        upper = lower;
-    }
-    double at_spot = 0;
+        status = init(&spot->curve, 5, far_m);
+    for (size_t i = 0; status == BW_OK && i < spot->curve.bins + 2; i++)
+        spot->curve.bound[i] = nan("");
     if (status == BW_OK)
-        status = bw_room_diffuse_at(hazard, spot, only, 0, &at_spot, error);
-    if (status == BW_OK)
-        curve->bound[0] = fmax(largest, at_spot) * 1.01;
-    return status;
+        status = diffuse_at(spot, far_m, &any, error);
+    return status == BW_OK ? find_steps(spot, error) : status;
 }

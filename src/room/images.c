@@ -76,16 +76,24 @@ static bool meet(struct bw_segment s, struct bw_segment t, struct bw_point *at) 
     return true;
 }
 
-/* A chord between the far ends, unless the two lie on the same stretch of one line. */
+static struct bw_point toward(struct bw_point from, struct bw_point to, double part) {
+    return (struct bw_point){from.x_m + part * (to.x_m - from.x_m), from.y_m + part * (to.y_m - from.y_m)};
+}
+
+/* A chord between the far ends, and one nearer to the elbow for what lies between the arms; none if the two lie on the
+ * same stretch of one line. */
 static bool add_chord(struct image *image, struct bw_point u, struct bw_point elbow, struct bw_point v, double passes,
                       int leg) {
+    static const double nearer = 0.35;
     if (same(u, elbow) || same(v, elbow) || same(u, v))
         return true;
     double across = fabs(left_m((struct bw_segment){u, elbow}, v));
     double onward = (elbow.x_m - u.x_m) * (v.x_m - elbow.x_m) + (elbow.y_m - u.y_m) * (v.y_m - elbow.y_m);
     if (across <= hair_m && !(onward > 0))
         return true;
-    return add_barrier(image, (struct barrier){BARRIER_CHORD, {u, v}, passes, elbow, 0, leg});
+    struct barrier far = {BARRIER_CHORD, {u, v}, passes, elbow, 0, leg}, near = far;
+    near.segment = (struct bw_segment){toward(elbow, u, nearer), toward(elbow, v, nearer)};
+    return add_barrier(image, far) && (across <= hair_m || add_barrier(image, near));
 }
 
 /* No single stop is crossed by all links that pass close to a joint, so a chord stands for the two together. */

@@ -46,8 +46,7 @@ struct bundle {
 };
 struct bundle bw_room_bundle(const struct quad *a, const struct quad *b, double a_radius_m);
 enum crossing bw_room_crossing(const struct bundle *bundle, struct bw_segment s);
-/* True if neither end of any link lies within the triangle: from, elbow, to. */
-bool bw_room_outside_elbow(const struct bundle *bundle, struct bw_segment chord, struct bw_point elbow);
+enum crossing bw_room_elbow(const struct bundle *bundle, struct bw_segment chord, struct bw_point elbow);
 
 /* ---- fresnel.c -------------------------------------------------------------------------------------------------- */
 
@@ -149,15 +148,21 @@ double bw_room_curve_at(const struct curve *curve, double length_m);
 /* The lower edges themselves as bounds: bound[0] = 0, bound[i + 1] that of bin i, one more for the end of the last. */
 enum bw_status bw_room_curve_edges(int bits, double far_m, struct curve *curve);
 enum bw_status bw_room_direct_curve(const struct bw_hazard *hazard, double far_m, struct curve *curve);
-/* Worst spot of at least this size (spot), at each distance. only: one emission, or BW_EMISSIONS_MAX. */
-enum bw_status bw_room_diffuse_curve(const struct bw_hazard *hazard, const struct bw_spot *spot, size_t only,
-                                     int bits, double far_m, struct curve *curve, struct bw_error *error);
-enum bw_status bw_room_diffuse_at(const struct bw_hazard *hazard, const struct bw_spot *spot, size_t only,
-                                  double distance_m, double *ratio, struct bw_error *error);
-enum bw_status bw_room_diffuse_envelope(const struct bw_hazard *hazard, const struct bw_spot *spot, size_t only,
-                                        double distance_m, double far_m, double *ratio, struct bw_error *error);
-/* Smallest spot of each emission on a surface this far or farther. */
-enum bw_status bw_room_least_spot(const struct bw_output *output, double path_m, struct bw_spot *spot);
+struct spot_step {
+    double distance_m, ratio;
+};
+struct spot_curve { /* a lit spot, seen from a distance */
+    const struct bw_hazard *hazard;
+    size_t source, emission; /* BW_EMISSIONS_MAX: all together */
+    double path_m;           /* of the beam to it, at least */
+    struct bw_spot spot;
+    struct curve curve; /* filled when asked */
+    size_t step_count;
+    struct spot_step steps[3 * BW_EMISSIONS_MAX];
+};
+enum bw_status bw_room_diffuse_curve(struct spot_curve *spot, double far_m, struct bw_error *error);
+double bw_room_diffuse_at(struct spot_curve *spot, double distance_m);            /* bound of the bin */
+double bw_room_diffuse_exactly(const struct spot_curve *spot, double distance_m);
 
 /* ---- beside.c: what falls beside the allowed aims --------------------------------------------------------------- */
 
@@ -187,9 +192,7 @@ struct light {
     const struct bw_hazard *hazard; /* exact value */
     const struct beside *beside;    /* with limited aims */
     bool exact;                     /* points: the value itself, not its bound */
-    const struct bw_spot *spot;     /* DIFFUSE */
-    double path_m, far_m;           /* DIFFUSE: way of the beam to the spot; end of the curve */
-    size_t emission;                /* DIFFUSE: only this one, or BW_EMISSIONS_MAX */
+    struct spot_curve *spot;        /* DIFFUSE: instead of curve and hazard */
 };
 struct target {
     struct quad quad;
@@ -222,6 +225,7 @@ size_t bw_room_push_roots(struct workspace *workspace, const struct image *image
 /* One part against a target: false if no light comes. */
 bool bw_room_refine(struct workspace *workspace, const struct image *image, const struct light *light,
                     const struct target *target, const struct part *from, struct part *to);
+double bw_room_bound_at(const struct light *light, double length_m); /* on the axis, share 1 */
 double bw_room_value(const struct light *light, const struct part *part);
 
 struct precision {
@@ -248,12 +252,6 @@ struct lit { /* one patch by one source */
     double path_m; /* shortest way of the beam to it */
     size_t area;   /* where that begins */
 };
-struct spot_curve {
-    size_t source, emission; /* BW_EMISSIONS_MAX: all together */
-    double path_m;
-    struct bw_spot spot;
-    struct curve curve;
-};
 struct scene {
     const struct bw_room *room;
     const struct bw_room_source *sources;
@@ -270,7 +268,6 @@ struct scene {
     struct lit *lit; /* [patch][source] */
     size_t spot_count, spot_capacity;
     struct spot_curve **spots;
-    int diffuse_bits;
     struct workspace workspace;
     struct bw_error *error;
 };
@@ -280,7 +277,7 @@ enum bw_status bw_room_scene_init(struct scene *scene, const struct bw_room *roo
 void bw_room_scene_free(struct scene *scene);
 /* The diffuse curve of a source for a beam path of at least path_m; made when first asked for. */
 enum bw_status bw_room_spot_curve(struct scene *scene, size_t source, size_t emission, double path_m,
-                                  const struct spot_curve **curve);
+                                  struct spot_curve **curve);
 
 /* patches.c */
 enum bw_status bw_room_patches(struct scene *scene);
@@ -289,14 +286,13 @@ enum bw_status bw_room_patches(struct scene *scene);
 
 struct receiver {
     /* Could light from this piece raise anything? Asked before the images of a lit surface are made. */
-    bool (*wants)(const struct scene *scene, const struct quad *piece, double share, const struct curve *curve,
+    bool (*wants)(const struct scene *scene, const struct quad *piece, double share, struct spot_curve *spot,
                   void *context);
     enum bw_status (*take)(struct scene *scene, const struct image *image, const struct light *light, void *context);
     void *context;
 };
 struct light bw_room_direct_light(const struct scene *scene, size_t source, size_t area);
-struct light bw_room_diffuse_light(const struct scene *scene, const struct spot_curve *curve, size_t area,
-                                   double share);
+struct light bw_room_diffuse_light(struct spot_curve *spot, size_t area, double share);
 enum bw_status bw_room_lights(struct scene *scene, const struct receiver *receiver);
 
 /* ---- place.c: points and parts of openings --------------------------------------------------------------------- */
@@ -307,7 +303,7 @@ struct hunt { /* the worst at some targets together */
     struct precision precision;
     struct bw_place place;
 };
-bool bw_room_hunt_wants(const struct hunt *hunt, const struct quad *piece, double share, const struct curve *curve);
+bool bw_room_hunt_wants(const struct hunt *hunt, const struct quad *piece, double share, struct spot_curve *spot);
 void bw_room_hunt_take(struct scene *scene, const struct image *image, const struct light *light, struct hunt *hunt);
 struct precision bw_room_point_precision(void);
 

@@ -17,20 +17,14 @@ struct light bw_room_direct_light(const struct scene *scene, size_t source, size
                           .beside = scene->beside != NULL ? &scene->beside[source] : NULL};
 }
 
-struct light bw_room_diffuse_light(const struct scene *scene, const struct spot_curve *curve, size_t area,
-                                   double share) {
+struct light bw_room_diffuse_light(struct spot_curve *spot, size_t area, double share) {
     return (struct light){.measure = MEASURE_RATIO,
                           .kind = BW_PATH_DIFFUSE,
-                          .source = curve->source,
+                          .source = spot->source,
                           .area = area,
                           .share = share,
-                          .path_m = curve->path_m,
-                          .output = scene->sources[curve->source].diffuse->output,
-                          .curve = &curve->curve,
-                          .hazard = scene->sources[curve->source].diffuse,
-                          .spot = &curve->spot,
-                          .far_m = scene->far_m,
-                          .emission = curve->emission};
+                          .output = spot->hazard->output,
+                          .spot = spot};
 }
 
 struct stage {
@@ -56,11 +50,11 @@ static enum bw_status take_treated(const struct image *image, void *context) {
     const struct stage *stage = context;
     enum bw_status status = BW_OK;
     for (size_t i = 0; i < stage->scene->source_count && status == BW_OK; i++) {
-        const struct spot_curve *curve;
-        status = bw_room_spot_curve(stage->scene, i, BW_EMISSIONS_MAX, 0, &curve);
+        struct spot_curve *spot;
+        status = bw_room_spot_curve(stage->scene, i, BW_EMISSIONS_MAX, 0, &spot);
         if (status != BW_OK)
             return status;
-        struct light light = bw_room_diffuse_light(stage->scene, curve, image->emitter->area, stage->reflectance);
+        struct light light = bw_room_diffuse_light(spot, image->emitter->area, stage->reflectance);
         light.exit_radius_m = bw_room_exit_radius_m(light.output);
         status = stage->receiver->take(stage->scene, image, &light, stage->receiver->context);
     }
@@ -69,23 +63,23 @@ static enum bw_status take_treated(const struct image *image, void *context) {
 
 static enum bw_status take_patch(const struct image *image, void *context) {
     const struct stage *stage = context;
-    const struct spot_curve *curve;
+    struct spot_curve *spot;
     enum bw_status status =
-        bw_room_spot_curve(stage->scene, stage->source, BW_EMISSIONS_MAX, stage->lit->path_m, &curve);
+        bw_room_spot_curve(stage->scene, stage->source, BW_EMISSIONS_MAX, stage->lit->path_m, &spot);
     if (status != BW_OK)
         return status;
-    struct light light = bw_room_diffuse_light(stage->scene, curve, stage->lit->area, stage->lit->share);
+    struct light light = bw_room_diffuse_light(spot, stage->lit->area, stage->lit->share);
     return stage->receiver->take(stage->scene, image, &light, stage->receiver->context);
 }
 
 /* A lit surface is seen directly, and in one mirror. */
 static enum bw_status patch_lights(struct stage *stage, const struct patch *patch) {
-    const struct spot_curve *nearest; /* with the smallest spot: at least as strict as any */
+    struct spot_curve *nearest; /* with the smallest spot: at least as strict as any */
     enum bw_status status = bw_room_spot_curve(stage->scene, stage->source, BW_EMISSIONS_MAX, 0, &nearest);
     struct quad quad = bw_room_segment_quad(patch->segment);
     const struct receiver *receiver = stage->receiver;
     if (status != BW_OK || !(stage->lit->share > 0) ||
-        !receiver->wants(stage->scene, &quad, stage->lit->share, &nearest->curve, receiver->context))
+        !receiver->wants(stage->scene, &quad, stage->lit->share, nearest, receiver->context))
         return status;
     struct emitter emitter = {.pieces = {1, 1, &quad},
                               .aims = {.free = true},

@@ -23,9 +23,9 @@ struct precision bw_room_point_precision(void) {
     return (struct precision){0.002, 0.001, 20000};
 }
 
-bool bw_room_hunt_wants(const struct hunt *hunt, const struct quad *piece, double share, const struct curve *curve) {
+bool bw_room_hunt_wants(const struct hunt *hunt, const struct quad *piece, double share, struct spot_curve *spot) {
     for (size_t i = 0; i < hunt->count; i++)
-        if (share * bw_room_curve_at(curve, bw_room_quad_distance(piece, &hunt->targets[i].quad)) > hunt->place.ratio)
+        if (share * bw_room_diffuse_at(spot, bw_room_quad_distance(piece, &hunt->targets[i].quad)) > hunt->place.ratio)
             return true;
     return false;
 }
@@ -58,10 +58,10 @@ void bw_room_hunt_take(struct scene *scene, const struct image *image, const str
 
 /* ---- one point -------------------------------------------------------------------------------------------------- */
 
-static bool wants(const struct scene *scene, const struct quad *piece, double share, const struct curve *curve,
+static bool wants(const struct scene *scene, const struct quad *piece, double share, struct spot_curve *spot,
                   void *context) {
     (void)scene;
-    return bw_room_hunt_wants(context, piece, share, curve);
+    return bw_room_hunt_wants(context, piece, share, spot);
 }
 
 static enum bw_status take(struct scene *scene, const struct image *image, const struct light *light, void *context) {
@@ -129,11 +129,11 @@ static enum bw_status take_diffuse(struct scene *scene, const struct image *imag
                                    struct terms *terms) {
     enum bw_status status = BW_OK;
     for (size_t e = 0; e < terms->hazard->output->count && status == BW_OK; e++) {
-        const struct spot_curve *curve;
-        status = bw_room_spot_curve(scene, light->source, e, light->path_m, &curve);
+        struct spot_curve *spot;
+        status = bw_room_spot_curve(scene, light->source, e, light->spot->path_m, &spot);
         if (status != BW_OK)
             break;
-        struct light alone = bw_room_diffuse_light(scene, curve, light->area, light->share);
+        struct light alone = bw_room_diffuse_light(spot, light->area, light->share);
         alone.exit_radius_m = light->exit_radius_m;
         alone.exact = true;
         double least = HUGE_VAL;
@@ -169,14 +169,14 @@ static enum bw_status take_terms(struct scene *scene, const struct image *image,
     return BW_OK;
 }
 
-static bool wants_terms(const struct scene *scene, const struct quad *piece, double share, const struct curve *curve,
+static bool wants_terms(const struct scene *scene, const struct quad *piece, double share, struct spot_curve *spot,
                         void *context) {
     const struct terms *terms = context;
     (void)scene;
     double least = HUGE_VAL;
     for (size_t i = 0; i < terms->hazard->term_count; i++)
         least = fmin(least, terms->ratios[i]);
-    return share * bw_room_curve_at(curve, bw_room_quad_distance(piece, &terms->target.quad)) > least;
+    return share * bw_room_diffuse_at(spot, bw_room_quad_distance(piece, &terms->target.quad)) > least;
 }
 
 /* Every term of the direct hazard at its largest over all paths of one handpiece.

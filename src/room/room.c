@@ -23,16 +23,16 @@ struct solving {
     struct hunt *hunts;
 };
 
-static bool wants(const struct scene *scene, const struct quad *piece, double share, const struct curve *curve,
+static bool wants(const struct scene *scene, const struct quad *piece, double share, struct spot_curve *spot,
                   void *context) {
     const struct solving *solving = context;
     (void)scene;
     int top = solving->pyramid.levels - 1;
     double least = top > 0 ? solving->pyramid.least[top][0] : 0;
-    if (share * curve->bound[0] > least)
+    if (share * bw_room_diffuse_at(spot, 0) > least)
         return true;
     for (size_t i = 0; i < solving->hunt_count; i++)
-        if (bw_room_hunt_wants(&solving->hunts[i], piece, share, curve))
+        if (bw_room_hunt_wants(&solving->hunts[i], piece, share, spot))
             return true;
     return false;
 }

@@ -5,8 +5,6 @@
 #include <stdlib.h>
 #include <string.h>
 
-enum { MAP_BITS = 5, POINT_BITS = 3 };
-
 static void stretch(struct bw_point *low, struct bw_point *high, struct bw_point p) {
     low->x_m = fmin(low->x_m, p.x_m);
     low->y_m = fmin(low->y_m, p.y_m);
@@ -76,7 +74,6 @@ static enum bw_status init_tables(struct scene *scene, bool for_map, bool limite
 enum bw_status bw_room_scene_init(struct scene *scene, const struct bw_room *room, const struct bw_room_source *sources,
                                   size_t count, bool for_map, struct bw_error *error) {
     *scene = (struct scene){.room = room, .sources = sources, .source_count = count, .error = error};
-    scene->diffuse_bits = for_map ? MAP_BITS : POINT_BITS;
     scene->far_m = longest_path_m(room);
     scene->outline_is_convex = bw_polygon_is_convex(&room->outline);
     bool limited = false;
@@ -156,23 +153,18 @@ static struct spot_curve *new_curve(struct scene *scene) {
 }
 
 enum bw_status bw_room_spot_curve(struct scene *scene, size_t source, size_t emission, double path_m,
-                                  const struct spot_curve **found) {
-    const struct bw_hazard *hazard = scene->sources[source].diffuse;
+                                  struct spot_curve **found) {
     path_m = shorter_path_m(path_m);
     struct spot_curve *curve = find_curve(scene, source, emission, path_m);
     *found = curve;
     if (curve != NULL)
         return BW_OK;
-    curve = new_curve(scene);
-    *found = curve;
+    *found = curve = new_curve(scene);
     if (curve == NULL)
         return BW_NO_MEMORY;
+    curve->hazard = scene->sources[source].diffuse;
     curve->source = source;
     curve->emission = emission;
     curve->path_m = path_m;
-    enum bw_status status = bw_room_least_spot(hazard->output, path_m, &curve->spot);
-    if (status == BW_OK)
-        status = bw_room_diffuse_curve(hazard, &curve->spot, emission, scene->diffuse_bits, scene->far_m, &curve->curve,
-                                       scene->error);
-    return status;
+    return bw_room_diffuse_curve(curve, scene->far_m, scene->error);
 }

@@ -60,7 +60,7 @@ static void fill(struct sweep *sweep, struct cells cells, size_t first, size_t c
             for (size_t i = first; i < first + count; i++) {
                 const struct part *part = &sweep->scene->workspace.parts[i];
                 double length_m = bw_room_box_distance(&part->piece, low, high);
-                raise(sweep, cell, part->total_share * bw_room_curve_at(sweep->light->curve, length_m));
+                raise(sweep, cell, part->total_share * bw_room_bound_at(sweep->light, length_m));
             }
         }
 }
@@ -98,8 +98,8 @@ static size_t drop_outdone(struct sweep *sweep, const struct target *target, siz
     for (size_t i = first; i < workspace->part_count; i++) {
         const struct part *part = &workspace->parts[i];
         if (part->clear) /* no cell of the block is farther from it than this */
-            certain = fmax(certain, part->total_share * bw_room_curve_at(sweep->light->curve,
-                                                                         part->length_m + target->size_m));
+            certain =
+                fmax(certain, part->total_share * bw_room_bound_at(sweep->light, part->length_m + target->size_m));
     }
     size_t kept = first;
     *clear = true;
