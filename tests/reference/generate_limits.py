@@ -2,7 +2,10 @@
 """Limits in arbitrary precision, straight from the formulas in their published form.
 
 Written from the printed formulas, not from limits_tables/*.ini, so that the two can disagree. Needs mpmath
-(Debian: python3-mpmath). Writes limits.csv beside itself; test_reference_limits.c compares it with the library.
+(Debian: python3-mpmath). Writes beside itself
+  limits.csv        limits over a dense grid; test_reference_limits.c compares it with the library
+  limits_edges.csv  just beside every edge of wavelength, time, source size and skin area, with the limiting aperture
+                    and the acceptance angle; test_reference_edges.c and tests/mutation use it
 
 Sources: Directive 2006/25/EC Annex II, Tables 2.2 to 2.6 (read in transpositions; body of 2.3 from memory);
 ICNIRP, Health Physics 105(3):271-295, 2013 (from memory); IEC 60825-1:2014 Annex A (from memory);
@@ -248,14 +251,26 @@ def skin_visible(w, t):
     return [value for first, last, value in rows if mpf(first) <= t <= mpf(last)]
 
 
-def limits(rules, target, w, t, alpha):
+def large_area(rules, w, t, area):
+    """Skin beyond 1400 nm and 10 s, icnirp-2013 only: 1000 W/m2 to 0.01 m2, 10/A to 0.1 m2, 100 W/m2 above."""
+    if rules != "icnirp" or w < 1400 or t < 10:
+        return []
+    found = []
+    if mpf("0.01") <= area <= mpf("0.1"):
+        found.append(10 / area * t)
+    if area >= mpf("0.1"):
+        found.append(100 * t)
+    return found
+
+
+def limits(rules, target, w, t, alpha, area=mpf(0)):
     """{effect: lowest H}."""
     if rules == "ansi" and not 400 <= w <= 1200:
         return {}
     if target == "skin":
         parts = skin_visible(w, t)
         if rules != "ansi":
-            parts = parts + ultraviolet(rules, w, t) + infrared(w, t)
+            parts = parts + ultraviolet(rules, w, t) + infrared(w, t) + large_area(rules, w, t, area)
         return {"skin": min(parts)}
     found = {"retina-thermal": retina_thermal(rules, w, t, alpha), "retina-photochemical": photochemical(w, t, alpha)}
     if rules != "ansi":
@@ -264,6 +279,42 @@ def limits(rules, target, w, t, alpha):
         if rules in ("iec", "icnirp") and 1250 <= w <= 1400:
             found["anterior"] = found["anterior"] + skin_visible(w, t)
     return {effect: min(values) for effect, values in found.items() if values}
+
+
+# ---- how the exposure is measured --------------------------------------------------------------------------------
+def growing_aperture(switch, t):
+    """1 mm, then 1.5 t^0.375 mm to 10 s, then 3.5 mm; the smaller where they meet."""
+    found = []
+    if t <= switch:
+        found.append(mpf(1))
+    if switch <= t <= 10:
+        found.append(mpf("1.5") * power(t, mpf("0.375")))
+    if t >= 10:
+        found.append(mpf("3.5"))
+    return min(found)
+
+
+def aperture(rules, effect, w, t):
+    """Diameter of the limiting aperture [mm]. Directive Tables 2.2 (note: 1 mm to 0.3 s), 2.3, 2.4; 0.35 s since 2013;
+    IEC 60825-1:2014: 1 mm at all times for the eye to 400 nm; skin 3.5 mm; 11 mm from 1e5 nm."""
+    if effect.startswith("retina"):
+        return mpf(7)
+    far = [mpf(11)] if w >= 100000 else []
+    if effect == "skin":
+        return min(far + ([mpf("3.5")] if w <= 100000 else []))
+    if effect == "ultraviolet" and rules == "iec":
+        return mpf(1)
+    near = [growing_aperture(mpf("0.3" if rules == "eu" else "0.35"), t)] if w <= 100000 else []
+    return min(far + near)
+
+
+def acceptance(rules, effect, t, alpha):
+    """Cone that the exposure is measured in [mrad], as text: inf = open. IEC 60825-1:2014: beyond alpha_max C6 stays,
+    and the exposure is taken within alpha_max; a source smaller than that is wholly inside, so it may be given or not:
+    `any`."""
+    if rules != "iec" or effect != "retina-thermal":
+        return "inf"
+    return number(alpha_max(rules, t)) if alpha > alpha_max(rules, t) else "any"
 
 
 # ---- the grid ----------------------------------------------------------------------------------------------------
@@ -291,18 +342,87 @@ def points(rules, target):
                "%.3f" % generator.uniform(0, 300) if target == "eye" else "0")
 
 
-def main():
-    path = os.path.join(os.path.dirname(os.path.abspath(__file__)), "limits.csv")
+# Just beside every edge: the printed edges, and how far beside. An edge that moves by 1 % passes these.
+STEPS_NM = [str(w) for w in range(303, 316)]
+BESIDE_NM = "180 302.5 400 450 600 700 1050 1150 1200 1250 1400 1500 1800 2600 100000 1000000".split()
+BESIDE_S = ("1e-13 1e-11 1e-9 1e-7 5e-6 1.3e-5 1.8e-5 5e-5 625e-6 1e-3 0.25 0.3 0.35 10 100 1000 1e4 3e4").split()
+BESIDE_MRAD = "1.5 5 11 100 110".split()
+BESIDE_M2 = "0.01 0.1".split()
+MIDDLE_NM = ("250 303.5 304.5 305.5 306.5 307.5 308.5 309.5 310.5 311.5 312.5 313.5 314.5 350 425 500 650 800 1100 "
+             "1175 1225 1300 1450 1650 2000 10000 500000").split()
+MIDDLE_S = "5e-12 2e-10 3e-8 1.5e-6 9e-6 3e-5 2e-4 0.02 1 20 500 5000 20000".split()
+SOURCE_NM = "425 500 650 800 1100 1300".split()
+SOURCE_S = "2e-10 1e-5 3e-3 0.1 1 10.02 12 20 50 99 500 5000 20000".split()
+SOURCE_MRAD = "3 7 30 60 250 1500".split()
+AREA_NM = "1394 1406 1450 10000 200000".split()
+AREA_S = "5 9.96 10.04 1000 29000".split()
+
+
+def beside(edges, low="-inf", high="inf"):
+    """Each edge times 1 +- 0.004, within the domain of the rule sets."""
+    found = [mp.nstr(mpf(edge) * (1 + side * mpf("0.004")), 10) for edge in edges for side in (-1, 1)]
+    return [text for text in found if mpf(low) <= mpf(text) <= mpf(high)]
+
+
+def edge_points(target):
+    near_nm = beside(BESIDE_NM, "180", "1e6") + [mp.nstr(mpf(w) + side, 6) for w in STEPS_NM
+                                                 for side in (mpf("-0.25"), mpf("0.25"))]
+    for w in near_nm:
+        for t in MIDDLE_S:
+            yield w, t, "0", "0"
+    for w in MIDDLE_NM:
+        for t in beside(BESIDE_S, "1e-13", "3e4"):
+            yield w, t, "0", "0"
+    if target == "skin":
+        for area in ["0.005", "0.05", "0.5"] + beside(BESIDE_M2):
+            for w in AREA_NM:
+                for t in AREA_S:
+                    yield w, t, "0", area
+        return
+    for alpha in SOURCE_MRAD + beside(BESIDE_MRAD):
+        for w in SOURCE_NM:
+            for t in SOURCE_S:
+                yield w, t, alpha, "0"
+
+
+def number(value):
+    return mp.nstr(value, 18)
+
+
+def write_grid(writer):
+    writer.writerow(("rules", "target", "wavelength_nm", "exposure_s", "subtense_mrad", "effect",
+                     "radiant_exposure_j_m2"))
+    for rules, identifier in IDS.items():
+        for target in ("eye", "skin"):
+            for w, t, alpha in points(rules, target):
+                for effect, value in limits(rules, target, mpf(w), mpf(t), mpf(alpha)).items():
+                    writer.writerow((identifier, target, w, t, alpha, effect, number(value)))
+
+
+def write_edges(writer):
+    """Where a rule set has no row, one line with the effect `none`."""
+    writer.writerow(("rules", "target", "wavelength_nm", "exposure_s", "subtense_mrad", "area_m2", "effect",
+                     "radiant_exposure_j_m2", "aperture_mm", "acceptance_mrad"))
+    for rules, identifier in IDS.items():
+        for target in ("eye", "skin"):
+            for place in edge_points(target):
+                if rules == "ansi" and not 390 <= float(place[0]) <= 1260:
+                    continue
+                w, t, alpha, area = map(mpf, place)
+                found = limits(rules, target, w, t, alpha, area)
+                for effect, value in found.items():
+                    writer.writerow((identifier, target) + place + (effect, number(value), number(aperture(
+                        rules, effect, w, t)), acceptance(rules, effect, t, alpha)))
+                if not found:
+                    writer.writerow((identifier, target) + place + ("none", "0", "0", "inf"))
+
+
+def write(name, rows):
+    path = os.path.join(os.path.dirname(os.path.abspath(__file__)), name)
     with open(path, "w", newline="") as file:
-        writer = csv.writer(file, lineterminator="\n")
-        writer.writerow(("rules", "target", "wavelength_nm", "exposure_s", "subtense_mrad", "effect",
-                         "radiant_exposure_j_m2"))
-        for rules, identifier in IDS.items():
-            for target in ("eye", "skin"):
-                for w, t, alpha in points(rules, target):
-                    for effect, value in limits(rules, target, mpf(w), mpf(t), mpf(alpha)).items():
-                        writer.writerow((identifier, target, w, t, alpha, effect, mp.nstr(value, 18)))
+        rows(csv.writer(file, lineterminator="\n"))
 
 
 if __name__ == "__main__":
-    main()
+    write("limits.csv", write_grid)
+    write("limits_edges.csv", write_edges)
