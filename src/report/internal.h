@@ -87,6 +87,8 @@ struct text_table {
 /* Alignment: one letter a column, l or r. The first row of cells is the head. */
 void table_begin(struct text_table *table, const char *alignment);
 void table_cell(struct text_table *table, const char *format, ...) BW_PRINTF(2, 3);
+/* The same for a quantity: its number and unit stay together. */
+void table_quantity(struct text_table *table, const char *quantity);
 void table_print(struct text_table *table, struct bw_text *out, size_t indent); /* and frees it */
 
 /* Sections that several texts share. */

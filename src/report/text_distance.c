@@ -49,7 +49,7 @@ static void emissions(struct bw_text *out, const struct bw_result *result, const
         table_cell(&table, "%s", bw_format(number, emission->limit.irradiance_w_m2, 3, BW_DOWN));
         table_cell(&table, "%s", bw_train_rule_name(emission->limit.rule));
         table_cell(&table, "%s x", report_ratio(words, emission->ratio_at_exit));
-        table_cell(&table, "%s", report_reach(words, &emission->nohd, false));
+        table_quantity(&table, report_reach(words, &emission->nohd, false));
         table_cell(&table, "%s", report_density(words, emission->optical_density));
     }
     table_print(&table, out, 2);

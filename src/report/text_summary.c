@@ -41,9 +41,9 @@ void text_distance_table(struct bw_text *out, const struct bw_result *result) {
         table_cell(&table, "%s %s", report_laser(result, distance->laser)->name,
                    report_handpiece(result, distance->laser, distance->handpiece)->name);
         table_cell(&table, "%s s", report_plain(words, distance->glance.exposure_s));
-        table_cell(&table, "%s", report_reach(words, &distance->nohd, us));
-        table_cell(&table, "%s", report_reach(words, &distance->skin, us));
-        table_cell(&table, "%s", report_reach(words, &distance->diffuse, us));
+        table_quantity(&table, report_reach(words, &distance->nohd, us));
+        table_quantity(&table, report_reach(words, &distance->skin, us));
+        table_quantity(&table, report_reach(words, &distance->diffuse, us));
         table_cell(&table, "%s", report_density(words, report_largest_density(result, distance)));
     }
     table_print(&table, out, 2);

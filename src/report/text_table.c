@@ -49,34 +49,76 @@ void table_cell(struct text_table *table, const char *format, ...) {
         add_cell(table, clean.data ? clean.data : bw_duplicate(""));
 }
 
-static void measure(const struct text_table *table, size_t widths[TABLE_COLUMNS_MAX], size_t indent) {
-    size_t total = indent + GAP * (table->columns - 1);
+void table_quantity(struct text_table *table, const char *quantity) {
+    char tied[2 * REPORT_QUANTITY_SIZE];
+    size_t length = 0;
+    for (; *quantity && length + 3 < sizeof tied; quantity++) {
+        if (*quantity == ' ' && quantity[1] != '(')
+            tied[length++] = '\xC2';
+        tied[length++] = *quantity == ' ' && quantity[1] != '(' ? '\xA0' : *quantity;
+    }
+    tied[length] = '\0';
+    table_cell(table, "%s", tied);
+}
+
+/* Columns of the longest word: what a column needs so that none is broken. */
+static size_t longest_word(const char *cell) {
+    size_t longest = 0, width = 0;
+    while (*cell) {
+        unsigned long code;
+        cell = report_next(cell, &code);
+        width = code == ' ' ? 0 : width + (size_t)report_columns(code);
+        longest = width > longest ? width : longest;
+    }
+    return longest;
+}
+
+/* The widest column that is still wider than it has to be. */
+static size_t widest(const struct text_table *table, const size_t *widths, const size_t *least) {
+    size_t found = table->columns;
     for (size_t i = 0; i < table->columns; i++)
-        widths[i] = 1;
+        if (widths[i] > least[i] && (found == table->columns || widths[i] > widths[found]))
+            found = i;
+    return found;
+}
+
+/* Gives way until the total fits: the widest first; no word is broken before all columns are down to their words. */
+static void measure(const struct text_table *table, size_t widths[TABLE_COLUMNS_MAX], size_t indent) {
+    size_t total = indent + GAP * (table->columns - 1), least[TABLE_COLUMNS_MAX];
+    for (size_t i = 0; i < table->columns; i++)
+        widths[i] = least[i] = 1;
     for (size_t i = 0; i < table->count; i++) {
-        size_t width = report_width(table->cells[i]), column = i % table->columns;
-        if (width > widths[column])
-            widths[column] = width;
+        size_t width = report_width(table->cells[i]), word = longest_word(table->cells[i]), at = i % table->columns;
+        widths[at] = width > widths[at] ? width : widths[at];
+        least[at] = word > least[at] ? word : least[at];
     }
     for (size_t i = 0; i < table->columns; i++)
         total += widths[i];
-    while (total > TEXT_COLUMNS) { /* one column of text at a time, the widest first; text before numbers */
-        size_t widest = table->columns;
-        for (int numbers = 0; numbers < 2 && widest == table->columns; numbers++)
+    for (; total > TEXT_COLUMNS; total--) {
+        size_t at = widest(table, widths, least);
+        if (at == table->columns) {
             for (size_t i = 0; i < table->columns; i++)
-                if ((numbers || !table->right[i]) && widths[i] > NARROWEST &&
-                    (widest == table->columns || widths[i] > widths[widest]))
-                    widest = i;
-        if (widest == table->columns)
+                least[i] = NARROWEST;
+            at = widest(table, widths, least);
+        }
+        if (at == table->columns)
             return;
-        widths[widest]--;
-        total--;
+        widths[at]--;
     }
 }
 
 static void blanks(struct bw_text *out, size_t count) {
     for (; count > 0; count--)
         bw_text_add(out, " ");
+}
+
+/* A blank that must not be broken at (U+00A0) becomes a plain one. */
+static void untied(struct bw_text *out, const char *start, size_t length) {
+    for (const char *at = start; at < start + length;) {
+        unsigned long code;
+        at = report_next(at, &code);
+        report_encode(out, code == 0xA0 ? ' ' : code);
+    }
 }
 
 static size_t piece_width(const char *start, size_t length) {
@@ -100,7 +142,7 @@ static bool print_line(const struct text_table *table, const size_t *widths, con
         size_t pad = widths[i] > width ? widths[i] - width : 0;
         if (length > 0) {
             blanks(out, owed + (table->right[i] ? pad : 0));
-            bw_text_add_bytes(out, start, length);
+            untied(out, start, length);
             owed = table->right[i] ? 0 : pad;
         } else {
             owed += widths[i];
