@@ -60,7 +60,7 @@ static enum presence read_definition(struct reading *reading, const struct secti
     enum presence presence = value_choice(reading, section, "diameter_definition", definition_words,
                                           sizeof definitions / sizeof *definitions, &index);
     *definition = definitions[index];
-    if (presence == ABSENT && !reading->lost_keys)
+    if (presence == ABSENT && !section->lost_key)
         fault_section(
             reading, section,
             "diameter_definition is missing; d63, d86, fwhm or top-hat as the maker states it would be right; "

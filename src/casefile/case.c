@@ -99,12 +99,12 @@ static void read_all(struct reading *reading) {
         readers[i](reading);
 }
 
-/* With lost_keys the faults of the INI guard are in the list already, and what it refused is not in ini. */
-static enum bw_status read_case(const struct bw_ini *ini, bool lost_keys, struct bw_case **the_case,
+/* With lost lines, the faults of the INI guard are in the list already, and what it refused is not in ini. */
+static enum bw_status read_case(const struct bw_ini *ini, const struct lost_lines *lost, struct bw_case **the_case,
                                 struct bw_faults *faults, struct bw_error *error) {
-    struct reading reading = {.ini = ini, .faults = faults, .lost_keys = lost_keys};
+    struct reading reading = {.ini = ini, .faults = faults, .lost_lines = lost};
     for (size_t i = 0; i < SECTION_KINDS; i++)
-        reading.lost[i] = lost_keys;
+        reading.lost[i] = lost && lost->sections;
     *the_case = NULL;
     reading.the_case = reading_allocate(&reading, 1, sizeof *reading.the_case);
     if (reading.the_case) {
@@ -134,7 +134,25 @@ static enum bw_status read_case(const struct bw_ini *ini, bool lost_keys, struct
  * Notes:    Whether the rule set exists is not judged here: the caller may bring a foreign one. */
 enum bw_status bw_case_from_ini(const struct bw_ini *ini, struct bw_case **the_case, struct bw_faults *faults,
                                 struct bw_error *error) {
-    return read_case(ini, false, the_case, faults, error);
+    return read_case(ini, NULL, the_case, faults, error);
+}
+
+/* Judges what the INI guard has left, so that its faults and ours are told together. */
+static enum bw_status judge_rest(const struct bw_text *bytes, struct bw_case **the_case, struct bw_faults *faults,
+                                 struct bw_error *error) {
+    struct bw_text plain = {0};
+    struct lost_lines lost = {0};
+    struct bw_ini ini = {0};
+    struct bw_faults again = {0};
+    enum bw_status status = BW_INPUT;
+    if (repair_lines(bytes, faults, &plain, &lost) &&
+        bw_ini_read_bytes(plain.data, plain.length, &ini, &again, NULL) == BW_OK)
+        status = read_case(&ini, &lost, the_case, faults, error);
+    bw_faults_free(&again);
+    bw_ini_free(&ini);
+    bw_text_free(&plain);
+    free(lost.lines);
+    return status;
 }
 
 /* A case from a file.
@@ -144,11 +162,15 @@ enum bw_status bw_case_from_ini(const struct bw_ini *ini, struct bw_case **the_c
 enum bw_status bw_case_read(const char *path, struct bw_case **the_case, struct bw_text *bytes,
                             struct bw_faults *faults, struct bw_error *error) {
     struct bw_ini ini = {0};
+    struct bw_text own = {0}, *content = bytes ? bytes : &own;
     *the_case = NULL;
-    enum bw_status status = bw_ini_read(path, &ini, bytes, faults, error);
+    enum bw_status status = bw_ini_read(path, &ini, content, faults, error);
     if (status == BW_OK)
-        status = read_case(&ini, false, the_case, faults, error);
+        status = read_case(&ini, NULL, the_case, faults, error);
+    else if (status == BW_INPUT && faults->count > 0)
+        status = judge_rest(content, the_case, faults, error);
     bw_ini_free(&ini);
+    bw_text_free(&own);
     return status;
 }
 

@@ -29,7 +29,7 @@ static void read_ratings(struct reading *reading, const struct section *section,
     error = (struct bw_error){0};
     if (marking && bw_eyewear_read_marking(marking->value, goggles, &error) != BW_OK)
         fault_key(reading, marking, "%s", error.text);
-    if (!densities && !marking && !reading->lost_keys)
+    if (!densities && !marking && !section->lost_key)
         fault_section(reading, section,
                       "has no rating; `od = 800-820 6.2` or `marking = 800-820 D LB6` would be right");
 }

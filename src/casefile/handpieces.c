@@ -47,7 +47,7 @@ static void read_handpiece(struct reading *reading, const struct section *sectio
     memcpy(output->emissions, laser->emissions, output->count * sizeof *output->emissions);
     read_emission_beams(reading, laser, handpiece);
     enum presence presence = read_beam(reading, section, &beam);
-    if (presence == ABSENT && !all_have_beams(handpiece) && !reading->lost_keys && !reading->lost[SECTION_BEAM])
+    if (presence == ABSENT && !all_have_beams(handpiece) && !section->lost_key && !reading->lost[SECTION_BEAM])
         fault_section(reading, section,
                       "has no beam; beam_diameter_mm and divergence_mrad would be right, or fibre_na "
                       "and fibre_core_mm");

@@ -54,6 +54,8 @@ struct section_word {
 const struct section_word *schema_section(enum section_kind kind);
 /* A key's word and unit. Returns: NULL if the section has no such key, or not with this unit. */
 const struct key_word *schema_key(enum section_kind kind, const char *key, const struct unit_word **unit);
+/* The key that is nearest to an unknown one, and its full name. Returns: NULL if there is none. */
+const struct key_word *schema_nearest_key(enum section_kind kind, const char *key, char *full_name, size_t size);
 /* Why a key that the section lacks is wrong, and what would be right. */
 void schema_explain_key(struct bw_text *text, enum section_kind kind, const char *key);
 /* "a, b or c" */
@@ -69,10 +71,21 @@ struct section {
     const struct bw_ini_entry *head;
     const struct bw_ini_entry *keys; /* those that follow it */
     size_t key_count;
-    size_t index;  /* of what was made from it: in the case, or in its laser or room */
-    size_t parent; /* index of that laser or room */
-    bool made;     /* something was made from it, so that others may refer to it */
+    size_t index;      /* of what was made from it: in the case, or in its laser or room */
+    size_t parent;     /* index of that laser or room */
+    bool made;         /* something was made from it, so that others may refer to it */
+    bool refused_line; /* by the INI guard: which key it was is not known */
+    bool lost_key;     /* a line or key of it was refused: do not complain that one of several keys is missing */
 };
+
+/* Lines that the INI guard refused, ascending. */
+struct lost_lines {
+    int *lines;
+    size_t count, capacity;
+    bool sections; /* among them the head of a section */
+};
+bool repair_lines(const struct bw_text *bytes, const struct bw_faults *faults, struct bw_text *plain,
+                  struct lost_lines *lost);
 
 struct reading {
     const struct bw_ini *ini;
@@ -80,8 +93,8 @@ struct reading {
     struct bw_faults *faults;
     struct section *sections; /* in the order of the file */
     size_t section_count;
-    bool lost[SECTION_KINDS]; /* a section of this kind was refused: do not complain that one is missing */
-    bool lost_keys;           /* the INI guard refused lines: do not complain about missing keys */
+    bool lost[SECTION_KINDS];            /* a section of this kind was refused: do not complain that one is missing */
+    const struct lost_lines *lost_lines; /* may be NULL */
     bool no_memory;
     struct bw_material *materials; /* the case's own */
     size_t material_count;

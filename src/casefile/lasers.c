@@ -36,7 +36,7 @@ static void read_emission(struct reading *reading, const struct section *section
         input.wavelength_nm = wavelengths_nm.least;
     }
     size_t count = sizeof presences / sizeof *presences;
-    if (any_wrong(presences + 1, count - 1) || reading->lost_keys)
+    if (any_wrong(presences + 1, count - 1) || section->lost_key)
         return; /* what is left would be judged wrongly */
     if (bw_emission_resolve(&input, emission, &error) != BW_OK)
         fault_section(reading, section, "%s", error.text);

@@ -1,6 +1,7 @@
 /* The vocabulary of a case file: every section, every key, every unit. */
 #include "internal.h"
 
+#include <stdio.h>
 #include <string.h>
 
 #define COUNT(array) (sizeof(array) / sizeof *(array))
@@ -248,34 +249,44 @@ static bool explain_other_section(struct bw_text *text, const char *key) {
 
 enum { NAMES_MAX = 64, NAME_SIZE = 40 };
 
-static void explain_nearest(struct bw_text *text, const struct section_word *section, const char *key) {
+const struct key_word *schema_nearest_key(enum section_kind kind, const char *key, char *full_name, size_t size) {
+    const struct section_word *section = &section_words[kind];
     char names[NAMES_MAX][NAME_SIZE];
-    const char *known[NAMES_MAX];
+    const char *known[NAMES_MAX] = {NULL};
+    const struct key_word *words[NAMES_MAX];
     size_t count = 0;
     for (size_t i = 0; i < section->key_count; i++) {
         const struct key_word *word = &section->keys[i];
         size_t units = word->family ? word->family->count : 1;
         for (size_t j = 0; j < units && count < NAMES_MAX; j++, count++) {
-            struct bw_text name = {0};
-            bw_text_add(&name, "%s%s%s", word->name, word->family ? "_" : "",
-                        word->family ? word->family->units[j].suffix : "");
-            strncpy(names[count], name.data ? name.data : "", NAME_SIZE - 1);
-            names[count][NAME_SIZE - 1] = '\0';
+            snprintf(names[count], NAME_SIZE, "%s%s%s", word->name, word->family ? "_" : "",
+                     word->family ? word->family->units[j].suffix : "");
             known[count] = names[count];
-            bw_text_free(&name);
+            words[count] = word;
         }
     }
     const char *nearest = bw_nearest_name(key, known, count);
-    if (nearest)
+    for (size_t i = 0; i < count; i++)
+        if (known[i] == nearest) {
+            snprintf(full_name, size, "%s", nearest);
+            return words[i];
+        }
+    return NULL;
+}
+
+static void explain_nearest(struct bw_text *text, enum section_kind kind, const char *key) {
+    const struct section_word *section = &section_words[kind];
+    char nearest[NAME_SIZE];
+    const char *words[NAMES_MAX];
+    if (schema_nearest_key(kind, key, nearest, sizeof nearest)) {
         bw_text_add(text, "unknown key; did you mean %s?", nearest);
-    else if (section->key_count == 0)
+    } else if (section->key_count == 0) {
         bw_text_add(text, "unknown key; [%s %s] says all there is, it takes no keys", section->word, section->names);
-    else {
-        const char *words[NAMES_MAX];
+    } else {
         for (size_t i = 0; i < section->key_count; i++)
             words[i] = section->keys[i].name;
-        bw_text_add(text, "unknown key; known here: ");
-        schema_add_words(text, words, section->key_count, ", ");
+        bw_text_add(text, "unknown key; known here are ");
+        schema_add_words(text, words, section->key_count, " and ");
     }
 }
 
@@ -284,5 +295,5 @@ void schema_explain_key(struct bw_text *text, enum section_kind kind, const char
     if (not_yet)
         bw_text_add(text, "%s", not_yet);
     else if (!explain_unit(text, kind, key) && !explain_other_section(text, key))
-        explain_nearest(text, &section_words[kind], key);
+        explain_nearest(text, kind, key);
 }

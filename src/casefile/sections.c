@@ -1,6 +1,7 @@
 /* Finds the sections of a case file and checks their names and keys. */
 #include "internal.h"
 
+#include <limits.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -106,10 +107,11 @@ static bool read_head(struct reading *reading, struct section *section) {
 
 /* ---- keys ----------------------------------------------------------------------------------- */
 
-static void check_key(struct reading *reading, const struct section *section, const struct bw_ini_entry *entry) {
+static void check_key(struct reading *reading, struct section *section, const struct bw_ini_entry *entry) {
     const struct unit_word *unit;
     const struct key_word *word = schema_key(section->kind, entry->key, &unit);
     if (!word) {
+        section->lost_key = true;
         struct bw_text text = {0};
         schema_explain_key(&text, section->kind, entry->key);
         fault_key(reading, entry, "%s", text.data ? text.data : "");
@@ -172,6 +174,13 @@ static void keep_section(struct reading *reading, struct section *section, size_
     reading->sections[reading->section_count++] = *section;
 }
 
+static bool lost_between(const struct lost_lines *lost, int first, int last) {
+    for (size_t i = 0; lost && i < lost->count; i++)
+        if (lost->lines[i] > first && lost->lines[i] < last)
+            return true;
+    return false;
+}
+
 void sections_read(struct reading *reading) {
     const struct bw_ini *ini = reading->ini;
     size_t counts[SECTION_KINDS] = {0};
@@ -181,6 +190,8 @@ void sections_read(struct reading *reading) {
         size_t first = head->key[0] == '\0' ? i + 1 : i;
         i = keys_end(ini, first, head->section);
         struct section section = {.head = head, .keys = ini->entries + first, .key_count = i - first};
+        section.lost_key = section.refused_line =
+            lost_between(reading->lost_lines, head->line, i < ini->count ? ini->entries[i].line : INT_MAX);
         keep_section(reading, &section, counts);
     }
     if (reading->sections)

@@ -43,17 +43,28 @@ static const struct key_word *find_word(const struct section *section, const cha
     return NULL;
 }
 
+/* Whether an unknown key of the section may have been meant for this one; its fault is there already. */
+static bool mistyped(const struct section *section, const struct key_word *word) {
+    const struct unit_word *unit;
+    char name[BW_NAME_SIZE];
+    size_t size = strlen(word->name);
+    for (size_t i = 0; i < section->key_count; i++) {
+        const char *key = section->keys[i].key;
+        if (schema_key(section->kind, key, &unit))
+            continue;
+        if (strncmp(key, word->name, size) == 0 && (key[size] == '\0' || key[size] == '_'))
+            return true; /* without unit, or with a wrong one */
+        if (schema_nearest_key(section->kind, key, name, sizeof name) == word)
+            return true;
+    }
+    return false;
+}
+
 void fault_missing(struct reading *reading, const struct section *section, const char *key) {
     const struct key_word *word = find_word(section, key);
-    if (reading->lost_keys || !word)
-        return;
-    for (size_t i = 0; i < section->key_count; i++) { /* written, but not with this unit: told already */
-        size_t size = strlen(key);
-        if (strncmp(section->keys[i].key, key, size) == 0)
-            return;
-    }
-    fault_section(reading, section, "%.*s is missing; `%s` would be right", (int)strcspn(word->example, " "),
-                  word->example, word->example);
+    if (!section->refused_line && word && !mistyped(section, word))
+        fault_section(reading, section, "%.*s is missing; `%s` would be right", (int)strcspn(word->example, " "),
+                      word->example, word->example);
 }
 
 /* ---- entries -------------------------------------------------------------------------------- */

@@ -6,7 +6,7 @@ static const double density_max = 20.; /* no filter is measured beyond; catches 
 static const char *read_density(const char *item, struct bw_rating *rating) {
     struct scan scan = {item};
     if (scan_number(&scan, &rating->low_nm) && scan_at_end(&scan)) /* `800-820 6,2` ends like that */
-        return "a number alone; the comma parts one range from the next, decimals take a point";
+        return "a number alone (the comma parts one range from the next, decimals take a point)";
     scan.at = item;
     const char *wrong = scan_range(&scan, rating);
     if (wrong)

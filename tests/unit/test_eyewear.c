@@ -81,7 +81,7 @@ static struct refusal_case {
     {"refused: no density", bw_eyewear_read_densities, "800-820",
      "`800-820`: no optical density" DENSITIES_RIGHT},
     {"refused: decimal comma", bw_eyewear_read_densities, "800-820 6,2",
-     "`2`: a number alone; the comma parts one range from the next, decimals take a point" DENSITIES_RIGHT},
+     "`2`: a number alone (the comma parts one range from the next, decimals take a point)" DENSITIES_RIGHT},
     {"refused: empty", bw_eyewear_read_densities, "", "``: no wavelength" DENSITIES_RIGHT},
     {"refused: comma at the end", bw_eyewear_read_densities, "800-820 6.2,", "``: no wavelength" DENSITIES_RIGHT},
     {"refused: backwards", bw_eyewear_read_densities, "820-800 6",
