@@ -1,23 +1,30 @@
-/* Missing parts of a rule set: a factor that stops short, a section that is not there, a hole between sections. */
+/* Missing parts of a rule set: a factor that stops short, a section that is not there, a hole between sections; and
+ * bands of the rules beside the limits that slipped. */
 #include "check.h"
 
 #include <math.h>
 #include <stdlib.h>
 #include <string.h>
 
+/* A row that does not begin where the one before it ends. */
+static void check_follows(const char *section, const struct row_note *before, const struct span *end,
+                          const struct row_note *note, const struct span *begin, struct bw_faults *faults) {
+    char number[LIMITS_NUMBER_SIZE];
+    if (begin->low > end->high || begin->low < end->high)
+        bw_faults_add(faults, note->line, section, note->key, "%s %s; wants to begin at %s",
+                      begin->low > end->high ? "leaves a gap after" : "overlaps", before->key,
+                      bw_limits_number(number, end->high));
+}
+
 /* ---- factors ---------------------------------------------------------------------------------- */
 
 /* Rows of a factor follow each other without gap or overlap. */
 static void check_factor_rows(const struct bw_table *table, const struct factor *factor, struct bw_faults *faults) {
-    char number[LIMITS_NUMBER_SIZE];
     if (factor->count == 0)
         bw_faults_add(faults, factor->line, factor->section, "", "has no rows");
     for (size_t i = factor->first + 1; i < factor->first + factor->count; i++) {
         const struct factor_row *before = &table->factor_rows[i - 1], *row = &table->factor_rows[i];
-        if (row->argument.low > before->argument.high || row->argument.low < before->argument.high)
-            bw_faults_add(faults, row->note.line, factor->section, row->note.key, "%s %s; wants to begin at %s",
-                          row->argument.low > before->argument.high ? "leaves a gap after" : "overlaps",
-                          before->note.key, bw_limits_number(number, before->argument.high));
+        check_follows(factor->section, &before->note, &before->argument, &row->note, &row->argument, faults);
     }
 }
 
@@ -110,6 +117,66 @@ static void check_times(const struct bw_table *table, struct bw_faults *faults) 
     }
 }
 
+/* ---- bands of the rules beside the limits ------------------------------------------------------ */
+
+static bool spans_overlap(const struct span *a, const struct span *b) {
+    return a->low < b->high && b->low < a->high;
+}
+
+static bool spans_differ(const struct span *a, const struct span *b) {
+    return a->low < b->low || a->low > b->low || a->high < b->high || a->high > b->high;
+}
+
+/* Where bands of grouping times overlapped or left a hole, pulses would be grouped by the wrong time. */
+static void check_grouping(const struct bw_table *table, struct bw_faults *faults) {
+    for (size_t i = 1; i < table->repetition.ti_count; i++) {
+        const struct ti_row *before = &table->repetition.ti[i - 1], *row = &table->repetition.ti[i];
+        check_follows("repetition", &before->note, &before->wavelength_nm, &row->note, &row->wavelength_nm, faults);
+    }
+}
+
+/* All rows speak of the same bands: two bands are equal, or have no more than an edge in common. */
+static void check_additivity(const struct bw_table *table, struct bw_faults *faults) {
+    char text[LIMITS_SPAN_SIZE], other[LIMITS_SPAN_SIZE];
+    for (size_t i = 0; i < 2 * table->additivity_count; i++) {
+        const struct add_row *row = &table->additivity[i / 2];
+        const struct span *band = i % 2 == 0 ? &row->first_nm : &row->second_nm;
+        for (size_t j = 0; j < i; j++) {
+            const struct add_row *before = &table->additivity[j / 2];
+            const struct span *known = j % 2 == 0 ? &before->first_nm : &before->second_nm;
+            if (!spans_overlap(band, known) || !spans_differ(band, known))
+                continue;
+            bw_faults_add(faults, row->note.line, "additivity", row->note.key,
+                          "band %s overlaps %s of %s; wants the same bands in all rows", bw_limits_span(text, band),
+                          bw_limits_span(other, known), before->note.key);
+            break;
+        }
+    }
+}
+
+static const struct time_row *time_of(const struct bw_table *table, enum time_kind kind) {
+    for (size_t i = 0; i < table->time_count; i++)
+        if (table->times[i].kind == kind)
+            return &table->times[i];
+    return NULL;
+}
+
+/* A time beyond the working day is never taken, nor one within the ultraviolet, which goes first. */
+static void check_time_bands(const struct bw_table *table, struct bw_faults *faults) {
+    const struct time_row *day = time_of(table, TIME_WORKING_DAY), *ultraviolet = time_of(table, TIME_ULTRAVIOLET);
+    for (size_t i = 0; i < table->time_count; i++) {
+        const struct time_row *row = &table->times[i];
+        if (day != NULL &&
+            (row->wavelength_nm.low < day->wavelength_nm.low || row->wavelength_nm.high > day->wavelength_nm.high))
+            bw_faults_add(faults, row->note.line, "exposure", row->note.key,
+                          "reaches beyond the wavelengths of the working day");
+        if (ultraviolet != NULL && row != ultraviolet && row != day &&
+            spans_overlap(&row->wavelength_nm, &ultraviolet->wavelength_nm))
+            bw_faults_add(faults, row->note.line, "exposure", row->note.key,
+                          "reaches into the ultraviolet, whose time goes first");
+    }
+}
+
 void bw_check_parts(const struct bw_table *table, struct bw_faults *faults) {
     if (table->section_count == 0)
         bw_faults_add(faults, 0, "", "", "has no limits; wants [eye EFFECT] and [skin] sections");
@@ -127,6 +194,9 @@ void bw_check_parts(const struct bw_table *table, struct bw_faults *faults) {
         bw_faults_add(faults, 0, "cone", "", "G and L need a measuring cone: only retina-photochemical has one");
     check_source_size(table, faults);
     check_times(table, faults);
+    check_grouping(table, faults);
+    check_additivity(table, faults);
+    check_time_bands(table, faults);
 }
 
 /* ---- holes between sections ------------------------------------------------------------------- */
@@ -193,11 +263,33 @@ static bool sources_complete(const struct bw_table *table, const struct limit_se
     return reached >= limits_subtense_high_mrad;
 }
 
+/* An edge of a section's source sizes is the end of all sources, or another section of the effect ends or begins
+ * there: the lower limit would hide an edge that slipped. */
+static bool sources_meet(const struct bw_table *table, const struct limit_section *section) {
+    bool low_meets = section->subtense_mrad.low <= 0.0;
+    bool high_meets = section->subtense_mrad.high >= limits_subtense_high_mrad;
+    for (size_t i = 0; i < table->section_count; i++) {
+        const struct limit_section *other = &table->sections[i];
+        if (other->target != section->target || other->effect != section->effect)
+            continue;
+        low_meets = low_meets || !(other->subtense_mrad.high < section->subtense_mrad.low ||
+                                   other->subtense_mrad.high > section->subtense_mrad.low);
+        high_meets = high_meets || !(other->subtense_mrad.low < section->subtense_mrad.high ||
+                                     other->subtense_mrad.low > section->subtense_mrad.high);
+    }
+    return low_meets && high_meets;
+}
+
 void bw_check_whole(const struct bw_table *table, struct bw_faults *faults) {
     check_target(table, BW_EYE, faults);
     check_target(table, BW_SKIN, faults);
-    for (size_t i = 0; i < table->section_count; i++)
-        if (!sources_complete(table, &table->sections[i]))
-            bw_faults_add(faults, table->sections[i].line, table->sections[i].name, "subtense_mrad",
+    for (size_t i = 0; i < table->section_count; i++) {
+        const struct limit_section *section = &table->sections[i];
+        if (!sources_complete(table, section))
+            bw_faults_add(faults, section->line, section->name, "subtense_mrad",
                           "gap: the sections of this effect do not take in every source from 0 to 1571 mrad");
+        if (!sources_meet(table, section))
+            bw_faults_add(faults, section->line, section->name, "subtense_mrad",
+                          "has an edge where no other section of this effect begins or ends");
+    }
 }

@@ -41,6 +41,8 @@ void bw_read_factor(struct reading *reading, const struct bw_ini_entry *entry) {
     row.constant = row.scale <= 0.0 || !(fabs(row.slope) > 0.0);
     if (cells.good && !(row.offset + row.scale > 0.0))
         bw_cells_fault(&cells, "offset and scale are both 0; a factor must be above 0");
+    if (cells.good && row.constant && (fabs(row.slope) > 0.0 || row.origin > 0.0))
+        bw_cells_fault(&cells, "slope and origin change nothing here; wants 0 for both, or a scale and a slope");
     row.note = bw_reading_note(reading, &cells);
     if (cells.good) {
         reading->factor_rows[reading->table->factor_row_count++] = row;

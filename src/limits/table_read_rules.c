@@ -87,6 +87,16 @@ static void read_train_subtense(struct cells *cells, size_t column, struct train
     row->subtense_mrad.high = values[1];
 }
 
+/* The evaluator caps the correction at 1 and lifts it to the floor: a scale or a floor that this hides is a slip. */
+static void check_correction(struct cells *cells, const struct train_row *row) {
+    double lowest = row->scale * bw_limits_raise(row->pulses.high, &row->power);
+    if (row->power.law == POWER_0 && row->scale > 1.0)
+        bw_cells_fault(cells, "correction %s would raise the limit of a pulse; wants at most 1", cells->cell[4]);
+    if (row->floor > 0.0 && !(row->floor > lowest))
+        bw_cells_fault(cells, "floor %s is never reached; wants 0, or one above the correction at the largest N",
+                       cells->cell[6]);
+}
+
 void bw_read_train(struct reading *reading, const struct bw_ini_entry *entry) {
     static const char *const kinds[] = {"any", "short", "long"};
     static const enum pulse_kind pulses[] = {PULSE_ANY, PULSE_SHORT, PULSE_LONG, PULSE_ANY};
@@ -104,6 +114,8 @@ void bw_read_train(struct reading *reading, const struct bw_ini_entry *entry) {
     row.scale = bw_cells_number(&cells, 4, "scale", 1e-3, 1e3);
     row.power = bw_limits_power_of(bw_cells_number(&cells, 5, "power", -1.0, 0.0));
     row.floor = bw_cells_number(&cells, 6, "floor", 0.0, 1.0);
+    if (cells.good)
+        check_correction(&cells, &row);
     row.note = bw_reading_note(reading, &cells);
     if (cells.good)
         reading->train[reading->table->train_count++] = row;
