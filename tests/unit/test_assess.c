@@ -10,7 +10,7 @@
 
 #include "clinic.h"
 
-#define LASER(emission, handpiece)                                                                                    \
+#define LASER(emission, handpiece)                                                                                     \
     "[laser one]\nlabelled_class = 4\n[emission one beam]\n" emission "[handpiece one lens]\n" handpiece
 #define ROOM_USE CLINIC_ROOM "[use two one lens]\n"
 
@@ -32,9 +32,9 @@ struct closed_case {
     const char *name, *text;
     double power_w, diameter_m, divergence_rad, wavelength_nm;
 };
-#define CLOSED(power, mm, mrad)                                                                                       \
-    CLINIC_CASE LASER("wavelength_nm = 810\naverage_power_w = " power "\n",                                           \
-                      "beam_diameter_mm = " mm "\ndivergence_mrad = " mrad                                            \
+#define CLOSED(power, mm, mrad)                                                                                        \
+    CLINIC_CASE LASER("wavelength_nm = 810\naverage_power_w = " power "\n",                                            \
+                      "beam_diameter_mm = " mm "\ndivergence_mrad = " mrad                                             \
                       "\ndiameter_definition = d63\nexposure_s = 100\n") ROOM_USE
 static struct closed_case closed_cases[] = {
     {"8 W, 20 mm, 150 mrad", CLOSED("8", "20", "150"), 8, 20e-3, 0.150, 810},
@@ -94,10 +94,10 @@ static void test_densities_keep_the_limit(void **state) {
 
 static void test_waist(void **state) {
     (void)state;
-    struct clinic clinic = clinic_assess(CLINIC_CASE LASER("wavelength_nm = 1064\naverage_power_w = 10\n",
-                                                           "beam_diameter_mm = 20\ndivergence_mrad = 1\n"
-                                                           "lens_focal_length_mm = 150\ndiameter_definition = d63\n")
-                                             ROOM_USE);
+    struct clinic clinic =
+        clinic_assess(CLINIC_CASE LASER("wavelength_nm = 1064\naverage_power_w = 10\n",
+                                        "beam_diameter_mm = 20\ndivergence_mrad = 1\n"
+                                        "lens_focal_length_mm = 150\ndiameter_definition = d63\n") ROOM_USE);
     require_ok(&clinic);
     const struct bw_distance_result *distance = &clinic.result->distances[0];
     expect("worst place", distance->worst_m, 0.150, 1e-9);
@@ -121,14 +121,15 @@ static const struct bw_finding *find(const struct clinic *clinic, enum bw_severi
     return NULL;
 }
 
-#define VISIBLE                                                                                                       \
-    LASER("wavelength_nm = 650\naverage_power_w = 0.1\n",                                                             \
+#define VISIBLE                                                                                                        \
+    LASER("wavelength_nm = 650\naverage_power_w = 0.1\n",                                                              \
           "beam_diameter_mm = 3\ndivergence_mrad = 2\ndiameter_definition = d63\n")
-#define NEAR_INFRARED(more)                                                                                           \
-    LASER("wavelength_nm = 810\naverage_power_w = 8\n", "beam_diameter_mm = 20\ndivergence_mrad = 150\ndiameter_definition = d86\n" more)
+#define NEAR_INFRARED(more)                                                                                            \
+    LASER("wavelength_nm = 810\naverage_power_w = 8\n",                                                                \
+          "beam_diameter_mm = 20\ndivergence_mrad = 150\ndiameter_definition = d86\n" more)
 #define WEAK_PERSON "[person two operator]\nat_m = 2.6 1.2\neyewear = weak\n"
 #define BARE_PERSON "[person two operator]\nat_m = 2.6 1.2\n"
-#define LYING "[person two patient]\nat_m = 2.6 2\neyewear = wraps\n"
+#define LYING       "[person two patient]\nat_m = 2.6 2\neyewear = wraps\n"
 
 static struct finding_case {
     const char *name, *text;
@@ -158,8 +159,9 @@ static struct finding_case {
     {"given time, long", CLINIC_CASE NEAR_INFRARED("exposure_s = 1000\n") ROOM_USE, BW_NOTE, "one lens",
      "exposure time, 1000 s, comes from the case file", true},
     {"given time, visible", CLINIC_CASE VISIBLE "exposure_s = 0.25\n" ROOM_USE, BW_NOTE, "one lens", "SSK", true},
-    {"collimated", CLINIC_CASE LASER("wavelength_nm = 810\naverage_power_w = 8\n",
-                                     "beam_diameter_mm = 20\ndivergence_mrad = 0\ndiameter_definition = d86\n") ROOM_USE,
+    {"collimated",
+     CLINIC_CASE LASER("wavelength_nm = 810\naverage_power_w = 8\n",
+                       "beam_diameter_mm = 20\ndivergence_mrad = 0\ndiameter_definition = d86\n") ROOM_USE,
      BW_CAUTION, "one lens", "never ends", true},
     {"spreading", CLINIC, BW_CAUTION, "trident", "never ends", false},
     {"skin", CLINIC_CASE NEAR_INFRARED("") ROOM_USE, BW_CAUTION, "one lens", "times the skin limit", true},
@@ -196,9 +198,9 @@ static void test_finding(void **state) {
 
 static void test_people(void **state) {
     (void)state;
-    struct clinic clinic = clinic_assess(
-        CLINIC_CASE CLINIC_LASER CLINIC_ROOM CLINIC_PERSON "[person two trainee]\nat_m = 3.3 2.5\neyewear = weak\n" LYING
-            CLINIC_DRAWER CLINIC_USE);
+    struct clinic clinic =
+        clinic_assess(CLINIC_CASE CLINIC_LASER CLINIC_ROOM CLINIC_PERSON
+                      "[person two trainee]\nat_m = 3.3 2.5\neyewear = weak\n" LYING CLINIC_DRAWER CLINIC_USE);
     require_ok(&clinic);
     const struct bw_result *result = clinic.result;
     assert_int_equal(result->room_count, 1);
@@ -233,10 +235,20 @@ static struct narrow_case {
     {"laser", {.parts = BW_PART_ALL, .laser = "trident"}, 2, 4 + 1, 1, NULL},
     {"room", {.parts = BW_PART_ALL, .room = "two"}, 1, 2 + 1, 1, NULL},
     {"unknown handpiece", {.parts = BW_PART_ALL, .handpiece = "spot-3"}, 0, 0, 0, "did you mean spot-30?"},
-    {"unknown laser", {.parts = BW_PART_ALL, .laser = "tridant"}, 0, 0, 0, "laser tridant: the case has none of this name; did you mean trident?"},
+    {"unknown laser",
+     {.parts = BW_PART_ALL, .laser = "tridant"},
+     0,
+     0,
+     0,
+     "laser tridant: the case has none of this name; did you mean trident?"},
     {"unknown room", {.parts = BW_PART_ALL, .room = "twoo"}, 0, 0, 0, "did you mean two?"},
     {"unlike any", {.parts = BW_PART_ALL, .room = "operating-theatre"}, 0, 0, 0, "the case has none of this name"},
-    {"not used there", {.parts = BW_PART_ALL, .room = "two", .handpiece = "spot-10"}, 0, 0, 0, "is it used in this room?"},
+    {"not used there",
+     {.parts = BW_PART_ALL, .room = "two", .handpiece = "spot-10"},
+     0,
+     0,
+     0,
+     "is it used in this room?"},
 };
 
 static void test_narrow(void **state) {
@@ -263,8 +275,8 @@ static void test_narrow(void **state) {
 static void test_out_of_range(void **state) {
     (void)state;
     struct clinic clinic = clinic_assess_with(
-        CLINIC_CASE LASER("wavelength_nm = 1300\naverage_power_w = 1\n", "beam_diameter_mm = 5\ndivergence_mrad = 5\ndiameter_definition = d86\n")
-            ROOM_USE,
+        CLINIC_CASE LASER("wavelength_nm = 1300\naverage_power_w = 1\n",
+                          "beam_diameter_mm = 5\ndivergence_mrad = 5\ndiameter_definition = d86\n") ROOM_USE,
         "ansi-z136-1-2014", (struct bw_assess_options){.parts = BW_PART_ALL});
     assert_int_equal(clinic.status, BW_OUT_OF_RANGE);
     assert_null(clinic.result);
@@ -289,9 +301,9 @@ static void test_given_time(void **state) {
 /* The longest permitted exposure is just that: with it the ratio is 1. */
 static void test_permitted(void **state) {
     (void)state;
-    struct clinic clinic = clinic_assess_with(CLINIC_CASE NEAR_INFRARED("") ROOM_USE, NULL,
-                                              (struct bw_assess_options){.parts = BW_PART_DISTANCE, .has_at = true,
-                                                                         .at_m = 0.5});
+    struct clinic clinic =
+        clinic_assess_with(CLINIC_CASE NEAR_INFRARED("") ROOM_USE, NULL,
+                           (struct bw_assess_options){.parts = BW_PART_DISTANCE, .has_at = true, .at_m = 0.5});
     require_ok(&clinic);
     const struct bw_distance_result *distance = &clinic.result->distances[0];
     assert_true(distance->has_permitted);
@@ -316,9 +328,13 @@ static struct length_case {
     bool us;
     const char *want;
 } length_cases[] = {
-    {"up", 3.4111, false, "3.42 m"},      {"exact", 3.42, false, "3.42 m"},  {"large", 1410.2, false, "1420 m"},
-    {"feet", 3.048, true, "3.05 m (10.0 ft)"}, {"feet up", 3.0481, true, "3.05 m (10.1 ft)"},
-    {"never ends", HUGE_VAL, true, "unbounded"}, {"not a number", 0, false, "unknown"},
+    {"up", 3.4111, false, "3.42 m"},
+    {"exact", 3.42, false, "3.42 m"},
+    {"large", 1410.2, false, "1420 m"},
+    {"feet", 3.048, true, "3.05 m (10.0 ft)"},
+    {"feet up", 3.0481, true, "3.05 m (10.1 ft)"},
+    {"never ends", HUGE_VAL, true, "unbounded"},
+    {"not a number", 0, false, "unknown"},
 };
 static void test_length(void **state) {
     const struct length_case *c = *state;
@@ -328,9 +344,11 @@ static void test_length(void **state) {
 }
 
 enum { TESTS_MAX = 120 };
-#define ADD_ROWS(rows, function)                                                                                      \
-    for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++)                                                         \
-    tests[count++] = (struct CMUnitTest){rows[i].name, function, NULL, NULL, &rows[i]}
+#define ADD_ROWS(rows, function)                                                                                       \
+    for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++)                                                          \
+        tests[count++] = (struct CMUnitTest) {                                                                         \
+            rows[i].name, function, NULL, NULL, &rows[i]                                                               \
+        }
 
 int main(void) {
     struct CMUnitTest tests[TESTS_MAX] = {{0}};
@@ -339,9 +357,12 @@ int main(void) {
     ADD_ROWS(finding_cases, test_finding);
     ADD_ROWS(narrow_cases, test_narrow);
     ADD_ROWS(length_cases, test_length);
-    const struct CMUnitTest single[] = {
-        cmocka_unit_test(test_densities_keep_the_limit), cmocka_unit_test(test_waist), cmocka_unit_test(test_people),
-        cmocka_unit_test(test_out_of_range), cmocka_unit_test(test_given_time), cmocka_unit_test(test_permitted)};
+    const struct CMUnitTest single[] = {cmocka_unit_test(test_densities_keep_the_limit),
+                                        cmocka_unit_test(test_waist),
+                                        cmocka_unit_test(test_people),
+                                        cmocka_unit_test(test_out_of_range),
+                                        cmocka_unit_test(test_given_time),
+                                        cmocka_unit_test(test_permitted)};
     for (size_t i = 0; i < sizeof single / sizeof single[0]; i++)
         tests[count++] = single[i];
     return cmocka_run_group_tests_name("assess", tests, NULL, NULL) == 0 ? EXIT_SUCCESS : EXIT_FAILURE;

@@ -140,9 +140,10 @@ static void test_same_bytes(void **state) {
 static void test_unbounded(void **state) {
     (void)state;
     struct clinic clinic = clinic_assess(
-        CLINIC_CASE "[laser one]\n[emission one beam]\nwavelength_nm = 810\naverage_power_w = 8\n"
-                    "[handpiece one lens]\nbeam_diameter_mm = 30\ndivergence_mrad = 0\ndiameter_definition = d86\n" CLINIC_ROOM
-                    "[use two one lens]\n");
+        CLINIC_CASE
+        "[laser one]\n[emission one beam]\nwavelength_nm = 810\naverage_power_w = 8\n"
+        "[handpiece one lens]\nbeam_diameter_mm = 30\ndivergence_mrad = 0\ndiameter_definition = d86\n" CLINIC_ROOM
+        "[use two one lens]\n");
     struct bw_text text = written(&clinic);
     require_value(text.data, "distance.beams[0].nohd_m", "null");
     require_value(text.data, "distance.beams[0].unbounded", "true");
@@ -173,8 +174,9 @@ static struct string_case {
     {"control characters", "a\tb\nc\x01\x1f\x7f", "\"a\\u0009b\\u000ac\\u0001\\u001f\\u007f\""},
     {"markup stays", "<&\">'", "\"<&\\\">'\""},
     {"UTF-8 passes", "\xC3\xA9 \xE2\x82\xAC \xF0\x9F\x90\xB4", "\"\xC3\xA9 \xE2\x82\xAC \xF0\x9F\x90\xB4\""},
-    {"what is no UTF-8", "a\xFFz\xC0\xAF\xED\xA0\x80\xE2\x82", "\"a\xEF\xBF\xBDz\xEF\xBF\xBD\xEF\xBF\xBD\xEF\xBF\xBD"
-                                                            "\xEF\xBF\xBD\xEF\xBF\xBD\xEF\xBF\xBD\xEF\xBF\xBD\""},
+    {"what is no UTF-8", "a\xFFz\xC0\xAF\xED\xA0\x80\xE2\x82",
+     "\"a\xEF\xBF\xBDz\xEF\xBF\xBD\xEF\xBF\xBD\xEF\xBF\xBD"
+     "\xEF\xBF\xBD\xEF\xBF\xBD\xEF\xBF\xBD\xEF\xBF\xBD\""},
 };
 static void test_string(void **state) {
     const struct string_case *c = *state;
@@ -209,17 +211,22 @@ static void test_parts(void **state) {
 }
 
 static struct bw_text limit_json(bool train) {
-    struct bw_limit_query query = {.table = bw_tables_find("iec-60825-1-2014"), .target = BW_EYE, .has_train = train,
+    struct bw_limit_query query = {.table = bw_tables_find("iec-60825-1-2014"),
+                                   .target = BW_EYE,
+                                   .has_train = train,
                                    .exposure = {.wavelength_nm = 904, .exposure_s = 10}};
-    struct bw_emission_input input = {.wavelength_nm = 904, .average_power_w = nan(""), .peak_power_w = nan(""),
-                                      .pulse_energy_j = 1, .pulse_duration_s = 200e-9, .repetition_rate_hz = 5000};
+    struct bw_emission_input input = {.wavelength_nm = 904,
+                                      .average_power_w = nan(""),
+                                      .peak_power_w = nan(""),
+                                      .pulse_energy_j = 1,
+                                      .pulse_duration_s = 200e-9,
+                                      .repetition_rate_hz = 5000};
     struct bw_viewing_case viewing = {.target = BW_EYE, .exposure_s = 10};
     struct bw_error error = {0};
     struct bw_text text = {0};
     assert_int_equal(bw_limits(query.table, BW_EYE, &query.exposure, &query.limits, NULL, &error), BW_OK);
     assert_int_equal(bw_emission_resolve(&input, &query.emission, &error), BW_OK);
-    assert_int_equal(
-        bw_hazard_train_limits(query.table, &query.emission, &viewing, &query.train, NULL, &error), BW_OK);
+    assert_int_equal(bw_hazard_train_limits(query.table, &query.emission, &viewing, &query.train, NULL, &error), BW_OK);
     bw_report_limit_json(&text, &query);
     if (!json_is_valid(text.data))
         fail_msg("not valid JSON:\n%s", text.data);
@@ -228,10 +235,21 @@ static struct bw_text limit_json(bool train) {
 
 static void test_limit(void **state) {
     (void)state;
-    static const char *const paths[] = {"rules", "target", "wavelength_nm", "exposure_s", "subtense_mrad",
-                                        "radiant_exposure_j_m2", "irradiance_w_m2", "aperture_mm", "governing",
-                                        "limits[0].effect", "limits[0].row", "limits[0].clause", "limits[0].known",
-                                        "limits[0].radiant_exposure_j_m2", "limits[0].irradiance_w_m2",
+    static const char *const paths[] = {"rules",
+                                        "target",
+                                        "wavelength_nm",
+                                        "exposure_s",
+                                        "subtense_mrad",
+                                        "radiant_exposure_j_m2",
+                                        "irradiance_w_m2",
+                                        "aperture_mm",
+                                        "governing",
+                                        "limits[0].effect",
+                                        "limits[0].row",
+                                        "limits[0].clause",
+                                        "limits[0].known",
+                                        "limits[0].radiant_exposure_j_m2",
+                                        "limits[0].irradiance_w_m2",
                                         "limits[0].aperture_mm"};
     struct bw_text text = limit_json(false);
     require_value(text.data, "schema", "\"beamward.limit/1\"");
@@ -260,10 +278,10 @@ static void test_train_limit(void **state) {
 /* The checker itself refuses what is wrong. */
 static void test_checker(void **state) {
     (void)state;
-    static const char *const wrong[] = {"",       "{",         "{\"a\":1,}",  "[1,]",   "[1 2]",     "{\"a\" 1}",
-                                        "01",     "1.",        ".5",          "1e",     "nan",       "-",
-                                        "\"a",    "\"\\x\"",   "\"\\u12g4\"", "\"\t\"", "{a:1}",     "1 2",
-                                        "[1}",    "Infinity",  "'a'",         "tru",    "{\"a\":}",  "+1"};
+    static const char *const wrong[] = {"",    "{",        "{\"a\":1,}",  "[1,]",   "[1 2]",    "{\"a\" 1}",
+                                        "01",  "1.",       ".5",          "1e",     "nan",      "-",
+                                        "\"a", "\"\\x\"",  "\"\\u12g4\"", "\"\t\"", "{a:1}",    "1 2",
+                                        "[1}", "Infinity", "'a'",         "tru",    "{\"a\":}", "+1"};
     for (size_t i = 0; i < sizeof wrong / sizeof wrong[0]; i++)
         if (json_is_valid(wrong[i]))
             fail_msg("takes %s", wrong[i]);
@@ -271,19 +289,21 @@ static void test_checker(void **state) {
 }
 
 enum { TESTS_MAX = 100 };
-#define ADD_ROWS(rows, function)                                                                                      \
-    for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++)                                                         \
-    tests[count++] = (struct CMUnitTest){rows[i].name, function, NULL, NULL, &rows[i]}
+#define ADD_ROWS(rows, function)                                                                                       \
+    for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++)                                                          \
+        tests[count++] = (struct CMUnitTest) {                                                                         \
+            rows[i].name, function, NULL, NULL, &rows[i]                                                               \
+        }
 
 int main(void) {
     struct CMUnitTest tests[TESTS_MAX] = {{0}};
     size_t count = 0;
     ADD_ROWS(path_cases, test_path);
     ADD_ROWS(string_cases, test_string);
-    const struct CMUnitTest single[] = {
-        cmocka_unit_test(test_digits), cmocka_unit_test(test_same_bytes), cmocka_unit_test(test_unbounded),
-        cmocka_unit_test(test_bounded_says_nothing), cmocka_unit_test(test_parts), cmocka_unit_test(test_limit),
-        cmocka_unit_test(test_train_limit), cmocka_unit_test(test_checker)};
+    const struct CMUnitTest single[] = {cmocka_unit_test(test_digits),      cmocka_unit_test(test_same_bytes),
+                                        cmocka_unit_test(test_unbounded),   cmocka_unit_test(test_bounded_says_nothing),
+                                        cmocka_unit_test(test_parts),       cmocka_unit_test(test_limit),
+                                        cmocka_unit_test(test_train_limit), cmocka_unit_test(test_checker)};
     for (size_t i = 0; i < sizeof single / sizeof single[0]; i++)
         tests[count++] = single[i];
     shared = clinic_assess(CLINIC);

@@ -37,7 +37,8 @@ static size_t label_boxes(const char *svg, struct box boxes[BOXES_MAX]) {
         double x, y, width, height;
         char class[16] = "";
         if (sscanf(at, "<rect x=\"%lf\" y=\"%lf\" width=\"%lf\" height=\"%lf\" class=\"%15[a-z]\"", &x, &y, &width,
-                   &height, class) == 5 && strcmp(class, "halo") == 0 && count < BOXES_MAX)
+                   &height, class) == 5 &&
+            strcmp(class, "halo") == 0 && count < BOXES_MAX)
             boxes[count++] = (struct box){x, y, x + width, y + height};
     }
     return count;
@@ -49,18 +50,20 @@ static bool overlap(struct box a, struct box b) {
            b.top + rounding < a.bottom;
 }
 
-#define CROWD                                                                                                         \
-    "[person two nurse]\nat_m = 2.7 1.25\n[person two trainee]\nat_m = 2.75 1.2\n[person two owner]\nat_m = 2.8 1.3\n"  \
-    "[person two visitor]\nat_m = 2.65 1.3\n[person two a-person-with-a-very-long-name-indeed]\nat_m = 5.1 4.0\n"       \
+#define CROWD                                                                                                          \
+    "[person two nurse]\nat_m = 2.7 1.25\n[person two trainee]\nat_m = 2.75 1.2\n[person two owner]\nat_m = 2.8 1.3\n" \
+    "[person two visitor]\nat_m = 2.65 1.3\n[person two a-person-with-a-very-long-name-indeed]\nat_m = 5.1 4.0\n"      \
     "[surface two trolley]\nfrom_m = 2.4 1.1\nto_m = 2.9 1.1\nmaterial = mirror\n"
-#define NARROW_ROOM                                                                                                   \
-    "[room two]\noutline_m = 0 0, 12 0, 12 1.2, 0 1.2\nmaterial = painted-wall\ngrid_mm = 100\nbounces = 0\n"         \
-    "[opening two door]\nfrom_m = 0 0.2\nto_m = 0 1.0\nkind = gap\ncover = none\n"                                    \
-    "[treatment-area two couch]\noutline_m = 5 0.3, 6 0.3, 6 0.9, 5 0.9\naim_deg = 80 .. 100\n[person two nurse]\nat_m = 5.5 0.6\n"
-#define TALL_ROOM                                                                                                     \
-    "[room two]\noutline_m = 0 0, 2 0, 2 9, 1 9, 1 4, 0 4\nmaterial = painted-wall\ngrid_mm = 100\nbounces = 1\n"     \
-    "[opening two window]\nfrom_m = 1 9\nto_m = 2 9\nkind = window\ncover = none\n"                                   \
-    "[treatment-area two couch]\noutline_m = 0.5 1, 1.5 1, 1.5 2, 0.5 2\naim_deg = 0 .. 20\n[person two nurse]\nat_m = 1.5 8\n"
+#define NARROW_ROOM                                                                                                    \
+    "[room two]\noutline_m = 0 0, 12 0, 12 1.2, 0 1.2\nmaterial = painted-wall\ngrid_mm = 100\nbounces = 0\n"          \
+    "[opening two door]\nfrom_m = 0 0.2\nto_m = 0 1.0\nkind = gap\ncover = none\n"                                     \
+    "[treatment-area two couch]\noutline_m = 5 0.3, 6 0.3, 6 0.9, 5 0.9\naim_deg = 80 .. 100\n[person two "            \
+    "nurse]\nat_m = 5.5 0.6\n"
+#define TALL_ROOM                                                                                                      \
+    "[room two]\noutline_m = 0 0, 2 0, 2 9, 1 9, 1 4, 0 4\nmaterial = painted-wall\ngrid_mm = 100\nbounces = 1\n"      \
+    "[opening two window]\nfrom_m = 1 9\nto_m = 2 9\nkind = window\ncover = none\n"                                    \
+    "[treatment-area two couch]\noutline_m = 0.5 1, 1.5 1, 1.5 2, 0.5 2\naim_deg = 0 .. 20\n[person two nurse]\nat_m " \
+    "= 1.5 8\n"
 
 static struct plan_case {
     const char *name, *text;
@@ -70,7 +73,10 @@ static struct plan_case {
     {"crowd", CLINIC CROWD, 10},
     {"narrow room", CLINIC_CASE CLINIC_LASER NARROW_ROOM CLINIC_DRAWER CLINIC_USE, 3},
     {"tall room that is not convex", CLINIC_CASE CLINIC_LASER TALL_ROOM CLINIC_DRAWER CLINIC_USE, 3},
-    {"US units", "[case]\ntitle = feet\nrules = icnirp-2013\nunits = us\n" CLINIC_LASER CLINIC_ROOM CLINIC_PERSON CLINIC_DRAWER CLINIC_USE, 5},
+    {"US units",
+     "[case]\ntitle = feet\nrules = icnirp-2013\nunits = us\n" CLINIC_LASER CLINIC_ROOM CLINIC_PERSON CLINIC_DRAWER
+         CLINIC_USE,
+     5},
 };
 
 static void test_plan(void **state) {
@@ -102,8 +108,9 @@ static void test_plan_tells_who(void **state) {
     struct clinic clinic = clinic_assess(CLINIC);
     struct bw_text text = {0};
     bw_report_plan_svg(&text, clinic.result, 0, true);
-    static const char *const parts[] = {"operator, OD ", "mirror", "couch", "door", "window", "5.20 m", "4.10 m",
-                                        "bearing 0", "hazard zone (NHZ)", "1 m<"};
+    static const char *const parts[] = {
+        "operator, OD ",     "mirror", "couch", "door", "window", "5.20 m", "4.10 m", "bearing 0",
+        "hazard zone (NHZ)", "1 m<"};
     for (size_t i = 0; i < sizeof parts / sizeof parts[0]; i++)
         if (!strstr(text.data, parts[i]))
             fail_msg("%s is missing", parts[i]);
@@ -141,14 +148,32 @@ static void test_title(void **state) {
 
 static void test_contents(void **state) {
     (void)state;
-    static const char *const order[] = {
-        "class=\"verdict bad\"", "Not acceptable as described", "id=\"findings\"", "class=\"danger\"",
-        "class=\"caution\"", "id=\"distances\"", "id=\"goggles\"", "too weak", "<svg", "id=\"assumptions\"",
-        "id=\"cautions\"", "IEC TR 60825-8:2006", "id=\"converted\"", "id=\"given\"", "beam_diameter_mm",
-        "id=\"working\"", "<details>", "id=\"sources\"", "from memory", "1.2.3", "clinic.ini", "00ff00ff",
-        "Signature", "Next review by"};
-    struct clinic clinic = clinic_assess(
-        CLINIC_CASE CLINIC_LASER CLINIC_ROOM "[person two operator]\nat_m = 2.6 1.2\n" CLINIC_DRAWER CLINIC_USE);
+    static const char *const order[] = {"class=\"verdict bad\"",
+                                        "Not acceptable as described",
+                                        "id=\"findings\"",
+                                        "class=\"danger\"",
+                                        "class=\"caution\"",
+                                        "id=\"distances\"",
+                                        "id=\"goggles\"",
+                                        "too weak",
+                                        "<svg",
+                                        "id=\"assumptions\"",
+                                        "id=\"cautions\"",
+                                        "IEC TR 60825-8:2006",
+                                        "id=\"converted\"",
+                                        "id=\"given\"",
+                                        "beam_diameter_mm",
+                                        "id=\"working\"",
+                                        "<details>",
+                                        "id=\"sources\"",
+                                        "from memory",
+                                        "1.2.3",
+                                        "clinic.ini",
+                                        "00ff00ff",
+                                        "Signature",
+                                        "Next review by"};
+    struct clinic clinic = clinic_assess(CLINIC_CASE CLINIC_LASER CLINIC_ROOM
+                                         "[person two operator]\nat_m = 2.6 1.2\n" CLINIC_DRAWER CLINIC_USE);
     struct bw_text text = {0};
     bw_report_html(&text, clinic.result, &provenance);
     require_well_formed(&text);
@@ -195,8 +220,8 @@ static void test_same_bytes(void **state) {
 
 static void test_checker(void **state) {
     (void)state;
-    static const char *const wrong[] = {"<a>",       "<a></b>",      "</a>",           "<a b=c></a>", "<a b=\"<\"></a>",
-                                        "a & b",     "<a b=\"c></a>", "<a><b></a></b>", "<a b></a>",   "&nbsp;"};
+    static const char *const wrong[] = {"<a>",   "<a></b>",       "</a>",           "<a b=c></a>", "<a b=\"<\"></a>",
+                                        "a & b", "<a b=\"c></a>", "<a><b></a></b>", "<a b></a>",   "&nbsp;"};
     for (size_t i = 0; i < sizeof wrong / sizeof wrong[0]; i++)
         if (!xml_fault(wrong[i]))
             fail_msg("takes %s", wrong[i]);
@@ -204,9 +229,11 @@ static void test_checker(void **state) {
 }
 
 enum { TESTS_MAX = 40 };
-#define ADD_ROWS(rows, function)                                                                                      \
-    for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++)                                                         \
-    tests[count++] = (struct CMUnitTest){rows[i].name, function, NULL, NULL, &rows[i]}
+#define ADD_ROWS(rows, function)                                                                                       \
+    for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++)                                                          \
+        tests[count++] = (struct CMUnitTest) {                                                                         \
+            rows[i].name, function, NULL, NULL, &rows[i]                                                               \
+        }
 
 int main(void) {
     struct CMUnitTest tests[TESTS_MAX] = {{0}};

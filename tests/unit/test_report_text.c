@@ -42,18 +42,19 @@ static void check_columns(const char *what, const struct bw_text *text) {
 
 #define LONG_A "aaaaaaaa-aaaaaaaa-aaaaaaaa-aaaaaaaa-aaaaaaaa-aaaaaaaa-aaaaaa"
 #define LONG_B "bbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbbb"
-#define LONG_CASE                                                                                                     \
+#define LONG_CASE                                                                                                      \
     CLINIC_CASE "[laser " LONG_A "]\nlabelled_class = 4\n[emission " LONG_A " " LONG_B "]\nwavelength_nm = 810.125\n"  \
-                "average_power_w = 8\n[handpiece " LONG_A " " LONG_A "]\nbeam_diameter_mm = 30\n"                     \
-                "divergence_mrad = 200\ndiameter_definition = d86\n[room " LONG_A "]\noutline_m = 0 0, 5 0, 5 4, 0 4\n"                          \
-                "material = painted-wall\ngrid_mm = 200\nbounces = 0\n[opening " LONG_A " " LONG_B "]\n"              \
-                "from_m = 2 0\nto_m = 2.9 0\nkind = door\ncover = none\n[treatment-area " LONG_A " " LONG_B "]\n"     \
-                "outline_m = 2 1, 3 1, 3 2, 2 2\naim_deg = 0 .. 360\n[person " LONG_A " " LONG_B "]\nat_m = 1 1\n"    \
-                "eyewear = " LONG_A "\n[person " LONG_A " " LONG_A "]\nat_m = 1 3\n"                                  \
-                "[eyewear " LONG_A "]\nod = 800-805 3\n[eyewear " LONG_B "]\nod = 800-820 9\n"                        \
+                "average_power_w = 8\n[handpiece " LONG_A " " LONG_A "]\nbeam_diameter_mm = 30\n"                      \
+                "divergence_mrad = 200\ndiameter_definition = d86\n[room " LONG_A                                      \
+                "]\noutline_m = 0 0, 5 0, 5 4, 0 4\n"                                                                  \
+                "material = painted-wall\ngrid_mm = 200\nbounces = 0\n[opening " LONG_A " " LONG_B "]\n"               \
+                "from_m = 2 0\nto_m = 2.9 0\nkind = door\ncover = none\n[treatment-area " LONG_A " " LONG_B "]\n"      \
+                "outline_m = 2 1, 3 1, 3 2, 2 2\naim_deg = 0 .. 360\n[person " LONG_A " " LONG_B "]\nat_m = 1 1\n"     \
+                "eyewear = " LONG_A "\n[person " LONG_A " " LONG_A "]\nat_m = 1 3\n"                                   \
+                "[eyewear " LONG_A "]\nod = 800-805 3\n[eyewear " LONG_B "]\nod = 800-820 9\n"                         \
                 "[use " LONG_A " " LONG_A " " LONG_A "]\n"
-#define MANY_GOGGLES                                                                                                  \
-    "[eyewear pair-3]\nod = 800-820 3\n[eyewear pair-4]\nod = 800-820 4\n[eyewear pair-5]\nod = 800-820 5\n"          \
+#define MANY_GOGGLES                                                                                                   \
+    "[eyewear pair-3]\nod = 800-820 3\n[eyewear pair-4]\nod = 800-820 4\n[eyewear pair-5]\nod = 800-820 5\n"           \
     "[eyewear pair-6]\nod = 800-820 6\n[eyewear pair-7]\nod = 800-820 7\n[eyewear pair-8]\nod = 800-820 8\n"
 
 static struct width_case {
@@ -108,10 +109,14 @@ static struct limit_case {
     enum bw_target target;
     bool us;
 } limit_cases[] = {
-    {"visible", 532, 0.25, 0, 0, BW_EYE, false},       {"near infrared", 810, 100, 0, 0, BW_EYE, true},
-    {"skin", 905, 10, 0, 0, BW_SKIN, true},            {"ultraviolet", 308, 3e4, 0, 0, BW_EYE, false},
-    {"two retinal limits", 450, 100, 0, 0, BW_EYE, true}, {"train", 904, 10, 200e-9, 5000, BW_EYE, true},
-    {"train of long pulses", 780, 10, 31.25e-6, 16e3, BW_EYE, false}, {"train, skin", 905, 10, 150e-9, 1e4, BW_SKIN, true},
+    {"visible", 532, 0.25, 0, 0, BW_EYE, false},
+    {"near infrared", 810, 100, 0, 0, BW_EYE, true},
+    {"skin", 905, 10, 0, 0, BW_SKIN, true},
+    {"ultraviolet", 308, 3e4, 0, 0, BW_EYE, false},
+    {"two retinal limits", 450, 100, 0, 0, BW_EYE, true},
+    {"train", 904, 10, 200e-9, 5000, BW_EYE, true},
+    {"train of long pulses", 780, 10, 31.25e-6, 16e3, BW_EYE, false},
+    {"train, skin", 905, 10, 150e-9, 1e4, BW_SKIN, true},
 };
 
 /* The first number after a label in a text. */
@@ -134,20 +139,25 @@ static void above(const char *what, double printed, double exact, double most) {
 
 static void test_limit(void **state) {
     const struct limit_case *c = *state;
-    struct bw_limit_query query = {.table = bw_tables_find("iec-60825-1-2014"), .target = c->target,
+    struct bw_limit_query query = {.table = bw_tables_find("iec-60825-1-2014"),
+                                   .target = c->target,
                                    .exposure = {.wavelength_nm = c->wavelength_nm, .exposure_s = c->exposure_s},
-                                   .has_train = c->pulse_s > 0, .us_units = c->us};
+                                   .has_train = c->pulse_s > 0,
+                                   .us_units = c->us};
     struct bw_error error = {0};
     assert_int_equal(bw_limits(query.table, c->target, &query.exposure, &query.limits, NULL, &error), BW_OK);
-    struct bw_emission_input input = {.wavelength_nm = c->wavelength_nm, .average_power_w = nan(""),
-                                      .peak_power_w = nan(""), .pulse_energy_j = 1e-6, .pulse_duration_s = c->pulse_s,
+    struct bw_emission_input input = {.wavelength_nm = c->wavelength_nm,
+                                      .average_power_w = nan(""),
+                                      .peak_power_w = nan(""),
+                                      .pulse_energy_j = 1e-6,
+                                      .pulse_duration_s = c->pulse_s,
                                       .repetition_rate_hz = c->rate_hz};
     struct bw_viewing_case viewing = {.target = c->target, .exposure_s = c->exposure_s};
     struct bw_text text = {0};
     if (query.has_train) {
         assert_int_equal(bw_emission_resolve(&input, &query.emission, &error), BW_OK);
-        assert_int_equal(
-            bw_hazard_train_limits(query.table, &query.emission, &viewing, &query.train, NULL, &error), BW_OK);
+        assert_int_equal(bw_hazard_train_limits(query.table, &query.emission, &viewing, &query.train, NULL, &error),
+                         BW_OK);
     }
     bw_report_limit_text(&text, &query);
     check_columns("limit", &text);
@@ -196,11 +206,17 @@ static void test_rounding(void **state) {
 
 static void test_order(void **state) {
     (void)state;
-    static const char *const order[] = {"Treatment room 2", "Not acceptable as described: 1 danger and 1 thing to change.",
-                                        "DANGER", "ACTION", "How far the hazard reaches", "Goggles, at the exit",
-                                        "Room two", "caution", "note"};
-    struct clinic clinic = clinic_assess(
-        CLINIC_CASE CLINIC_LASER CLINIC_ROOM "[person two operator]\nat_m = 2.6 1.2\n" CLINIC_DRAWER CLINIC_USE);
+    static const char *const order[] = {"Treatment room 2",
+                                        "Not acceptable as described: 1 danger and 1 thing to change.",
+                                        "DANGER",
+                                        "ACTION",
+                                        "How far the hazard reaches",
+                                        "Goggles, at the exit",
+                                        "Room two",
+                                        "caution",
+                                        "note"};
+    struct clinic clinic = clinic_assess(CLINIC_CASE CLINIC_LASER CLINIC_ROOM
+                                         "[person two operator]\nat_m = 2.6 1.2\n" CLINIC_DRAWER CLINIC_USE);
     struct bw_text text = {0};
     bw_report_summary_text(&text, clinic.result);
     const char *at = text.data;
@@ -216,9 +232,10 @@ static void test_order(void **state) {
 static void test_nothing_to_do(void **state) {
     (void)state;
     struct clinic clinic = clinic_assess(
-        CLINIC_CASE "[laser pen]\nlabelled_class = 1\n[emission pen red]\nwavelength_nm = 650\naverage_power_w = 1e-6\n"
-                    "[handpiece pen tip]\nbeam_diameter_mm = 3\ndivergence_mrad = 2\ndiameter_definition = d86\n" CLINIC_ROOM CLINIC_PERSON
-                        CLINIC_DRAWER "[use two pen tip]\n");
+        CLINIC_CASE
+        "[laser pen]\nlabelled_class = 1\n[emission pen red]\nwavelength_nm = 650\naverage_power_w = 1e-6\n"
+        "[handpiece pen tip]\nbeam_diameter_mm = 3\ndivergence_mrad = 2\ndiameter_definition = d86\n" CLINIC_ROOM
+            CLINIC_PERSON CLINIC_DRAWER "[use two pen tip]\n");
     struct bw_text text = {0};
     assert_false(clinic.result->needs_action);
     bw_report_summary_text(&text, clinic.result);
@@ -248,9 +265,11 @@ static void test_map(void **state) {
 }
 
 enum { TESTS_MAX = 60 };
-#define ADD_ROWS(rows, function)                                                                                      \
-    for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++)                                                         \
-    tests[count++] = (struct CMUnitTest){rows[i].name, function, NULL, NULL, &rows[i]}
+#define ADD_ROWS(rows, function)                                                                                       \
+    for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++)                                                          \
+        tests[count++] = (struct CMUnitTest) {                                                                         \
+            rows[i].name, function, NULL, NULL, &rows[i]                                                               \
+        }
 
 int main(void) {
     struct CMUnitTest tests[TESTS_MAX] = {{0}};
