@@ -7,7 +7,7 @@ void cli_print_help(const struct cli_command *const *commands, size_t count) {
     puts("Usage: beamward COMMAND [OPTION]...\n");
     for (size_t i = 0; i < count; i++)
         printf("  %-9s %-5s %s\n", commands[i]->name, commands[i]->operands, commands[i]->answers);
-    puts("\n`beamward COMMAND --help` tells its options and an example; `beamward --version`.");
+    puts("\n`beamward COMMAND --help` tells its options and gives an example.");
     puts("Exit code: 0 nothing objectionable, 1 something needs action, 2 wrong input or");
     puts("command, 3 the system failed.\n");
     puts("The figures support the decisions of a laser safety officer; they do not replace");
