@@ -99,11 +99,12 @@ enum crossing bw_room_crossing(const struct bundle *bundle, struct bw_segment s)
     return astride && facing_each_other(a, b, hair) ? CROSS_ALL : CROSS_SOME;
 }
 
+/* What lies wholly on the line may belong to either side of it. */
 static bool beyond(const struct quad *quad, struct bw_segment s, int inner, double margin_m) {
     double dx = s.to.x_m - s.from.x_m, dy = s.to.y_m - s.from.y_m, length_m = sqrt(dx * dx + dy * dy);
-    double margin = (margin_m - hair_m) * length_m;
+    double margin = (margin_m - hair_m) * length_m, hair = hair_m * length_m;
     struct range range = sides(quad, s);
-    return inner > 0 ? range.high <= -margin : range.low >= margin;
+    return inner > 0 ? range.high <= -margin && range.low < -hair : range.low >= margin && range.high > hair;
 }
 
 /* 1: the quad lies outside the triangle of the elbow, -1: inside, 0: not certain. */

@@ -84,7 +84,8 @@ struct world {
     unsigned long rays, places;
 };
 
-/* The outline, with any opening in it drawn over it: the opening is asked first. */
+/* The surfaces and the outline. An opening adds light to the map (it reflects or passes), never takes any: rays know
+ * only the wall. */
 static void build_world(struct world *world) {
     const struct bw_room *room = &world->plan->room;
     for (size_t i = 0; i < room->surface_count; i++)
