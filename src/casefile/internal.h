@@ -106,6 +106,8 @@ void sections_read(struct reading *reading);
 struct section *sections_next(struct reading *reading, size_t *at, enum section_kind kind, const char *first,
                               const char *second);
 size_t sections_count(struct reading *reading, enum section_kind kind, const char *first, const char *second);
+/* Sections of a kind whose owner is not there may belong to any other: then do not complain that it has none. */
+void sections_lose_orphans(struct reading *reading, enum section_kind kind, enum section_kind owner);
 /* The section of a kind with these names (NULL = does not count) from which something was made. On failure the fault is
  * there already, at the section that refers to it, with the nearest name. */
 struct section *sections_refer(struct reading *reading, const struct section *from, enum section_kind kind,

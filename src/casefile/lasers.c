@@ -82,6 +82,8 @@ static void check_owners(struct reading *reading) {
 void read_lasers(struct reading *reading) {
     struct bw_case *the_case = reading->the_case;
     size_t at = 0, count = sections_count(reading, SECTION_LASER, NULL, NULL);
+    sections_lose_orphans(reading, SECTION_EMISSION, SECTION_LASER);
+    sections_lose_orphans(reading, SECTION_HANDPIECE, SECTION_LASER);
     the_case->lasers = reading_allocate(reading, count, sizeof *the_case->lasers);
     if (count == 0 && !reading->lost[SECTION_LASER])
         bw_faults_add(reading->faults, 0, "", "",

@@ -50,9 +50,14 @@ static bool read_point(struct reading *reading, const struct item *item, char *t
     if (*second)
         *second++ = '\0';
     second += strspn(second, " \t");
-    if (text[0] == '\0' || second[0] == '\0' || second[strcspn(second, " \t")] != '\0') {
+    if (text[0] == '\0') {
+        fault_key(reading, item->entry, "%s is empty; remove the comma, or write x and y, as in 5.2 4.1", item->name);
+        return false;
+    }
+    if (second[0] == '\0' || second[strcspn(second, " \t")] != '\0') {
         fault_key(reading, item->entry,
-                  "%s: `%s%s%s` is not x and y; `5.2 4.1` would be right (a comma parts one point from the next)",
+                  "%s: `%s%s%s` is not x and y; `5.2 4.1` would be right (a comma parts one point from the next, "
+                  "decimals take a point)",
                   item->name, text, second[0] ? " " : "", second);
         return false;
     }
@@ -111,7 +116,9 @@ enum presence value_point(struct reading *reading, const struct section *section
 
 static bool check_aim(struct reading *reading, const struct bw_ini_entry *entry, double from_deg, double to_deg) {
     if (!(from_deg >= -360. && from_deg <= 360. && to_deg >= -360. && to_deg <= 720.))
-        fault_key(reading, entry, "bearing out of range; from -360 to 360, to at most 360 more would be right");
+        fault_key(reading, entry,
+                  "%s is out of range; a FROM of -360 to 360 and a TO of at most 360 more would be right",
+                  entry->value);
     else if (!(from_deg <= to_deg))
         fault_key(reading, entry, "%.6g .. %.6g runs backwards; %.6g .. %.6g would be right", from_deg, to_deg,
                   from_deg >= 0. ? from_deg - 360. : from_deg, from_deg >= 0. ? to_deg : to_deg + 360.);

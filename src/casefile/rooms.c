@@ -189,6 +189,7 @@ static void check_owners(struct reading *reading) {
 void read_rooms(struct reading *reading) {
     struct bw_case *the_case = reading->the_case;
     size_t at = 0, count = sections_count(reading, SECTION_ROOM, NULL, NULL);
+    sections_lose_orphans(reading, SECTION_AREA, SECTION_ROOM);
     the_case->rooms = reading_allocate(reading, count, sizeof *the_case->rooms);
     for (struct section *section;
          the_case->rooms && (section = sections_next(reading, &at, SECTION_ROOM, NULL, NULL));) {

@@ -192,10 +192,10 @@ static const struct {
                   "divergence"},
     {"emitter_", "clusters of emitters are not in this version; describe one emitter with the power of all, the "
                  "stricter side"},
-    {"beam_diameter_x", "elliptical beams are not in this version; write the smaller diameter as beam_diameter_mm"},
-    {"beam_diameter_y", "elliptical beams are not in this version; write the smaller diameter as beam_diameter_mm"},
-    {"divergence_x", "elliptical beams are not in this version; write the smaller divergence as divergence_mrad"},
-    {"divergence_y", "elliptical beams are not in this version; write the smaller divergence as divergence_mrad"},
+    {"beam_diameter_x_", "elliptical beams are not in this version; write the smaller diameter as beam_diameter_mm"},
+    {"beam_diameter_y_", "elliptical beams are not in this version; write the smaller diameter as beam_diameter_mm"},
+    {"divergence_x_", "elliptical beams are not in this version; write the smaller divergence as divergence_mrad"},
+    {"divergence_y_", "elliptical beams are not in this version; write the smaller divergence as divergence_mrad"},
     {"stand_off", "a stand-off is not in this version; the exit of the handpiece is where distances begin"},
 };
 
@@ -280,8 +280,6 @@ static void explain_nearest(struct bw_text *text, enum section_kind kind, const 
     const char *words[NAMES_MAX];
     if (schema_nearest_key(kind, key, nearest, sizeof nearest)) {
         bw_text_add(text, "unknown key; did you mean %s?", nearest);
-    } else if (section->key_count == 0) {
-        bw_text_add(text, "unknown key; [%s %s] says all there is, it takes no keys", section->word, section->names);
     } else {
         for (size_t i = 0; i < section->key_count; i++)
             words[i] = section->keys[i].name;
@@ -294,6 +292,9 @@ void schema_explain_key(struct bw_text *text, enum section_kind kind, const char
     const char *not_yet = why_not_built(key);
     if (not_yet)
         bw_text_add(text, "%s", not_yet);
+    else if (section_words[kind].key_count == 0)
+        bw_text_add(text, "unknown key; [%s %s] says all there is, it takes no keys", section_words[kind].word,
+                    section_words[kind].names);
     else if (!explain_unit(text, kind, key) && !explain_other_section(text, key))
         explain_nearest(text, kind, key);
 }

@@ -221,6 +221,15 @@ size_t sections_count(struct reading *reading, enum section_kind kind, const cha
     return count;
 }
 
+void sections_lose_orphans(struct reading *reading, enum section_kind kind, enum section_kind owner) {
+    size_t at = 0;
+    for (struct section *section; (section = sections_next(reading, &at, kind, NULL, NULL));) {
+        size_t from = 0;
+        if (!sections_next(reading, &from, owner, section->names[0], NULL))
+            reading->lost[kind] = true;
+    }
+}
+
 /* The name nearest to the last of `first` and `second` among the sections that a reference could mean. */
 static const char *nearest_name(struct reading *reading, enum section_kind kind, const char *first,
                                 const char *second) {

@@ -1,7 +1,6 @@
 /* Values of keys, and the faults that they may have. */
 #include "internal.h"
 
-#include <ctype.h>
 #include <math.h>
 #include <stdarg.h>
 #include <stdio.h>
@@ -111,18 +110,27 @@ static bool explain_comma(struct bw_text *text, const char *number) {
     return true;
 }
 
+/* Nothing but a unit from here on. Exponents without digits are none. */
+static bool is_unit(const char *text) {
+    static const char letters[] = "abcdefghijklmnopqrstuvwxyzABCDEFGHIJKLMNOPQRSTUVWXYZ";
+    while (*text == ' ')
+        text++;
+    return strcmp(text, "%") == 0 ||
+           (text[0] != '\0' && text[strspn(text, letters)] == '\0' && strcmp(text, "e") != 0 && strcmp(text, "E") != 0);
+}
+
 void value_not_a_number(struct reading *reading, const struct bw_ini_entry *entry, const char *what,
                         const char *number) {
     struct bw_text text = {0};
     if (what)
         bw_text_add(&text, "%s: ", what);
     if (!explain_comma(&text, number)) {
-        size_t digits = strspn(number, "0123456789.+-");
-        const char *rest = number + digits;
-        while (*rest == ' ')
-            rest++;
-        if (digits > 0 && isalpha((unsigned char)*rest) && strcspn(number, "xX") > 1)
+        size_t digits = strspn(number, "0123456789.+-"), all = strspn(number, "0123456789.+-eE");
+        if (digits > 0 && is_unit(number + digits))
             bw_text_add(&text, "%s: not a number; write a plain number, the unit is in the key", number);
+        else if (digits > 0 && number[all] == '\0')
+            bw_text_add(&text, "%s: not a number, or beyond all numbers; write a plain number, as in 8, 0.5 or 150e-9",
+                        number);
         else
             bw_text_add(&text, "%s: not a number; write a plain number, as in 8, 0.5 or 150e-9", number);
     }
@@ -131,12 +139,25 @@ void value_not_a_number(struct reading *reading, const struct bw_ini_entry *entr
     bw_text_free(&text);
 }
 
+/* Six digits; `1e6`, not `1e+06`. */
+static const char *short_number(char out[BW_NUMBER_SIZE], double value) {
+    snprintf(out, BW_NUMBER_SIZE, "%.6g", value);
+    char *exponent = strchr(out, 'e');
+    if (exponent) {
+        long power = strtol(exponent + 1, NULL, 10);
+        snprintf(exponent + 1, BW_NUMBER_SIZE - (size_t)(exponent + 1 - out), "%ld", power);
+    }
+    return out;
+}
+
 static void out_of_range(struct reading *reading, const struct bw_ini_entry *entry, const struct unit_word *unit,
                          double value, struct range range) {
     double to_si = unit ? unit->to_si : 1.;
     const char *how = value < 0. && range.least >= 0. ? "below 0" : value < range.least ? "too small" : "too large";
-    fault_key(reading, entry, "%s is %s; %.6g to %.6g%s%s would be right", entry->value, how, range.least / to_si,
-              range.most / to_si, unit ? " " : "", unit ? unit->shown : "");
+    char least[BW_NUMBER_SIZE], most[BW_NUMBER_SIZE];
+    fault_key(reading, entry, "%s is %s; %s to %s%s%s would be right", entry->value, how,
+              short_number(least, range.least / to_si), short_number(most, range.most / to_si), unit ? " " : "",
+              unit ? unit->shown : "");
 }
 
 enum presence value_number(struct reading *reading, const struct section *section, const char *key, struct range range,

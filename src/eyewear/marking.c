@@ -35,7 +35,7 @@ static const char *read_scale(struct scan *scan, struct bw_rating *rating) {
     scan->at += length;
     if (*scan->at == 'Y')
         scan->at++;
-    return scan_at_end(scan) ? NULL : "text after the scale number; + parts one range from the next";
+    return scan_at_end(scan) ? NULL : "text after the scale number (+ parts one range from the next)";
 }
 
 static const char *read_mark(const char *item, struct bw_rating *rating) {

@@ -131,7 +131,7 @@ static struct refusal_case {
     {"refused: LB with a long number", bw_eyewear_read_marking, "800-820 D LB99999999999999999999",
      "`800-820 D LB99999999999999999999`: scale number outside LB1 to LB10" MARKING_RIGHT},
     {"refused: parts joined by a comma", bw_eyewear_read_marking, "800-820 D LB6, 890-1070 D LB5",
-     "`800-820 D LB6, 890-1070 D LB5`: text after the scale number; + parts one range from the next" MARKING_RIGHT},
+     "`800-820 D LB6, 890-1070 D LB5`: text after the scale number (+ parts one range from the next)" MARKING_RIGHT},
 };
 
 static void test_refusal(void **state) {
