@@ -103,7 +103,7 @@ enum bw_status bw_assess(const struct bw_case *the_case, const struct bw_table *
 void bw_result_free(struct bw_result *result);
 
 /* Words that findings and reports share, rounded to the safe side. */
-enum { BW_WORDS_SIZE = 120 };
+enum { BW_WORDS_SIZE = 200 };
 /* "3.42 m" or, with us, "3.42 m (11.3 ft)"; up. "unbounded". */
 const char *bw_length_words(char out[BW_WORDS_SIZE], double length_m, bool us);
 /* How the worst reaches a place: "the direct beam, 0.4 m from the handpiece". */

@@ -82,7 +82,7 @@ static void worst_terms(const struct bw_hazard *hazard, double worst[BW_TERMS_MA
 
 /* The limit of the emission's own worst term. */
 static void worst_of_emission(const struct bw_hazard *hazard, const double terms[BW_TERMS_MAX], size_t emission,
-                                struct bw_train_limit *limit) {
+                              struct bw_train_limit *limit) {
     double worst = -1.;
     for (size_t t = 0; t < hazard->term_count; t++) {
         if (hazard->terms[t].emission != emission || terms[t] <= worst)
@@ -177,8 +177,7 @@ static enum bw_status eye_diffuse(const struct assess_job *job, struct bw_distan
     if (status != BW_OK)
         return status;
     distance->diffuse_spot = smallest_spot(distance->diffuse_view->output);
-    return bw_hazard_diffuse_reach(distance->diffuse_view, &distance->diffuse_spot, &distance->diffuse, working,
-                                   error);
+    return bw_hazard_diffuse_reach(distance->diffuse_view, &distance->diffuse_spot, &distance->diffuse, working, error);
 }
 
 static enum bw_status permitted(const struct assess_job *job, struct bw_distance_result *distance,

@@ -23,8 +23,8 @@ static void append(const struct assess_job *job, enum bw_severity severity, cons
     snprintf(finding->subject, sizeof finding->subject, "%s", subject);
 }
 
-void assess_finding(const struct assess_job *job, enum bw_severity severity, const char *subject,
-                    const char *format, ...) {
+void assess_finding(const struct assess_job *job, enum bw_severity severity, const char *subject, const char *format,
+                    ...) {
     va_list arguments, again;
     va_start(arguments, format);
     va_copy(again, arguments);

@@ -47,15 +47,12 @@ static void diffuse(const struct assess_job *job, const char *subject, const str
 static void exposure(const struct assess_job *job, const char *subject, const struct bw_distance_result *distance) {
     char given[BW_NUMBER_SIZE], customary[BW_NUMBER_SIZE];
     if (distance->exposure_given)
-        assess_finding(job, distance->glance.exposure_s >= distance->customary.exposure_s ? BW_NOTE : BW_CAUTION,
-                       subject,
-                       "The exposure time, %s s, comes from the case file; customary for an accidental glance is %s "
-                       "s%s",
-                       seconds_words(given, distance->glance.exposure_s),
-                       seconds_words(customary, distance->customary.exposure_s),
-                       distance->glance.exposure_s >= distance->customary.exposure_s
-                           ? "."
-                           : ". Write down why it is shorter.");
+        assess_finding(
+            job, distance->glance.exposure_s >= distance->customary.exposure_s ? BW_NOTE : BW_CAUTION, subject,
+            "The exposure time, %s s, comes from the case file; customary for an accidental glance is %s "
+            "s%s",
+            seconds_words(given, distance->glance.exposure_s), seconds_words(customary, distance->customary.exposure_s),
+            distance->glance.exposure_s >= distance->customary.exposure_s ? "." : ". Write down why it is shorter.");
     if (distance->glance.aversion_response)
         assess_finding(job, BW_NOTE, subject,
                        "The exposure time of %s s for visible light rests on the aversion response (blinking, turning "

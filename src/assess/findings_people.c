@@ -26,7 +26,8 @@ static void unprotected(const struct assess_job *job, const char *subject, const
     assess_finding_text(job, BW_DANGER, subject, &text);
 }
 
-static const struct bw_distance_result *find_distance(const struct bw_result *result, const struct bw_pair_result *pair) {
+static const struct bw_distance_result *find_distance(const struct bw_result *result,
+                                                      const struct bw_pair_result *pair) {
     for (size_t i = 0; i < result->distance_count; i++)
         if (result->distances[i].laser == pair->laser && result->distances[i].handpiece == pair->handpiece)
             return &result->distances[i];

@@ -36,15 +36,15 @@ enum bw_status assess_room(const struct assess_job *job, size_t room, struct bw_
 
 /* findings.c */
 enum bw_status assess_findings(const struct assess_job *job);
-void assess_finding(const struct assess_job *job, enum bw_severity severity, const char *subject,
-                    const char *format, ...) BW_PRINTF(4, 5);
+void assess_finding(const struct assess_job *job, enum bw_severity severity, const char *subject, const char *format,
+                    ...) BW_PRINTF(4, 5);
 void assess_finding_text(const struct assess_job *job, enum bw_severity severity, const char *subject,
-                         struct bw_text *text); /* takes the text */
-void assess_people_findings(const struct assess_job *job);   /* findings_people.c */
-void assess_opening_findings(const struct assess_job *job);  /* findings_people.c */
-void assess_eyewear_findings(const struct assess_job *job);  /* findings_eyewear.c */
-void assess_beam_findings(const struct assess_job *job);     /* findings_beam.c */
-void assess_source_findings(const struct assess_job *job);   /* findings_sources.c */
+                         struct bw_text *text);             /* takes the text */
+void assess_people_findings(const struct assess_job *job);  /* findings_people.c */
+void assess_opening_findings(const struct assess_job *job); /* findings_people.c */
+void assess_eyewear_findings(const struct assess_job *job); /* findings_eyewear.c */
+void assess_beam_findings(const struct assess_job *job);    /* findings_beam.c */
+void assess_source_findings(const struct assess_job *job);  /* findings_sources.c */
 
 /* words.c: names and numbers in plain words, rounded to the safe side. */
 void assess_handpiece_words(const struct assess_job *job, const struct bw_distance_result *distance,

@@ -50,8 +50,11 @@ static void judge(const struct assess_job *job, const struct bw_room_result *roo
     if (!person->has_eyewear)
         return;
     struct bw_pair_result *pair = &job->result->pairs[job->result->pair_count++];
-    *pair = (struct bw_pair_result){.eyewear = person->eyewear, .laser = distance->laser,
-                                    .handpiece = distance->handpiece, .is_place = true, .room = room->room,
+    *pair = (struct bw_pair_result){.eyewear = person->eyewear,
+                                    .laser = distance->laser,
+                                    .handpiece = distance->handpiece,
+                                    .is_place = true,
+                                    .room = room->room,
                                     .person = index};
     bw_eyewear_judge(&job->the_case->eyewear[person->eyewear], distance->direct->output, od, &pair->verdict);
     if (!result->has_verdict || pair->verdict.verdict > result->verdict)

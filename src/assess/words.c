@@ -9,10 +9,14 @@ static const double metre_per_foot = 0.3048;
 
 const char *bw_severity_name(enum bw_severity severity) {
     switch (severity) {
-    case BW_DANGER: return "danger";
-    case BW_ACTION: return "action";
-    case BW_CAUTION: return "caution";
-    case BW_NOTE: return "note";
+    case BW_DANGER:
+        return "danger";
+    case BW_ACTION:
+        return "action";
+    case BW_CAUTION:
+        return "caution";
+    case BW_NOTE:
+        return "note";
     }
     return "unknown";
 }
@@ -51,7 +55,9 @@ const char *bw_path_words(char out[BW_WORDS_SIZE], const struct bw_place *place,
                  bw_format_fixed(number, place->length_m / metre_per_foot, 1, BW_NEAREST));
     }
     switch (place->path) {
-    case BW_PATH_NONE: snprintf(out, BW_WORDS_SIZE, "no path"); break;
+    case BW_PATH_NONE:
+        snprintf(out, BW_WORDS_SIZE, "no path");
+        break;
     case BW_PATH_DIRECT:
         snprintf(out, BW_WORDS_SIZE, "the direct beam, %s m%s from the handpiece", metres, feet);
         break;

@@ -24,16 +24,17 @@ static void row(struct bw_text *out, const struct bw_result *result, const struc
 }
 
 static void summary(struct bw_text *out, const struct bw_result *result) {
-    static const char *const heads[] = {"Handpiece",      ">Glance, s",           ">Eye (NOHD)",  ">Skin",
-                                        ">Diffuse light", ">\xC3\x97 eye limit", ">OD needed", "Governed by"};
+    static const char *const heads[] = {"Handpiece",      ">Glance, s",          ">Eye (NOHD)", ">Skin",
+                                        ">Diffuse light", ">\xC3\x97 eye limit", ">OD needed",  "Governed by"};
     html_table(out, "", heads, COUNT(heads));
     for (size_t i = 0; i < result->distance_count; i++)
         row(out, result, &result->distances[i]);
     html_table_end(out);
-    html_paragraph(out, "Distances from the exit of the handpiece, up to which the limit is exceeded on the axis of the "
-                        "beam; diffuse light: from a lit spot on a white matt surface. The multiple of the limit and the "
-                        "optical density (OD) hold at the exit, or at the waist in front of it where that is worse. "
-                        "Distances and densities are rounded up, limits down.");
+    html_paragraph(out,
+                   "Distances from the exit of the handpiece, up to which the limit is exceeded on the axis of the "
+                   "beam; diffuse light: from a lit spot on a white matt surface. The multiple of the limit and the "
+                   "optical density (OD) hold at the exit, or at the waist in front of it where that is worse. "
+                   "Distances and densities are rounded up, limits down.");
 }
 
 static void limit_row(struct bw_text *out, const struct bw_emission *emission, const struct bw_train_limit *limit,
@@ -43,7 +44,8 @@ static void limit_row(struct bw_text *out, const struct bw_emission *emission, c
     html_cell(out, "n", "%s", report_plain(words, emission->wavelength_nm));
     html_cell(out, NULL, skin ? "skin" : "eye, %s", bw_effect_name(limit->limit.effect));
     for (int i = 0; i < BW_RULES; i++)
-        html_cell(out, "n", "%s", isnan(limit->rules_j_m2[i]) ? "" : bw_format(number, limit->rules_j_m2[i], 3, BW_DOWN));
+        html_cell(out, "n", "%s",
+                  isnan(limit->rules_j_m2[i]) ? "" : bw_format(number, limit->rules_j_m2[i], 3, BW_DOWN));
     html_cell(out, "keep", "%s", emission->continuous ? "continuous" : bw_train_rule_name(limit->rule));
     html_cell(out, "n", "%s", bw_format(number, limit->irradiance_w_m2, 3, BW_DOWN));
     html_cell(out, "n", "%s", report_plain(words, 1e3 * limit->limit.aperture_m));
@@ -52,7 +54,7 @@ static void limit_row(struct bw_text *out, const struct bw_emission *emission, c
 }
 
 static void limits(struct bw_text *out, const struct bw_result *result, const struct bw_distance_result *distance) {
-    static const char *const heads[] = {"Emission", ">nm",      "Limit of",         ">Single",     ">Average",
+    static const char *const heads[] = {"Emission", ">nm",     "Limit of",          ">Single",      ">Average",
                                         ">Train",   "Governs", ">Mean W/m\xC2\xB2", ">Aperture mm", "Printed in"};
     const struct bw_output *output = &report_handpiece(result, distance->laser, distance->handpiece)->output;
     html_table(out, "", heads, COUNT(heads));
@@ -69,8 +71,7 @@ static void limits(struct bw_text *out, const struct bw_result *result, const st
 }
 
 static void needs(struct bw_text *out, const struct bw_result *result, const struct bw_distance_result *distance) {
-    static const char *const heads[] = {"Emission", ">nm", ">\xC3\x97 eye limit, alone", ">NOHD, alone",
-                                        ">OD needed"};
+    static const char *const heads[] = {"Emission", ">nm", ">\xC3\x97 eye limit, alone", ">NOHD, alone", ">OD needed"};
     const struct bw_output *output = &report_handpiece(result, distance->laser, distance->handpiece)->output;
     html_table(out, "", heads, COUNT(heads));
     for (size_t i = 0; i < output->count; i++) {
@@ -100,7 +101,8 @@ void html_distances(struct bw_text *out, const struct bw_result *result) {
         needs(out, result, distance);
         limits(out, result, distance);
     }
-    html_paragraph(out, "Limits by the three rules are radiant exposures per pulse in J/m\xC2\xB2 (continuous: over the "
-                        "exposure time); the lowest governs. The OD of each emission lets all of them together keep the "
-                        "limit.");
+    html_paragraph(out,
+                   "Limits by the three rules are radiant exposures per pulse in J/m\xC2\xB2 (continuous: over the "
+                   "exposure time); the lowest governs. The OD of each emission lets all of them together keep the "
+                   "limit.");
 }

@@ -65,9 +65,9 @@ static void drawer(struct bw_text *out, const struct bw_result *result) {
         const struct bw_goggles *goggles = &result->the_case->eyewear[i];
         char number[BW_NUMBER_SIZE];
         html_row(out, NULL);
-        html_cell(out, "name", "%s", goggles->name);
-        html_cell(out, "name", "%s", goggles->title);
-        html_cell(out, "name", "%s", goggles->marking);
+        html_cell(out, NULL, "%s", goggles->name);
+        html_cell(out, NULL, "%s", goggles->title);
+        html_cell(out, NULL, "%s", goggles->marking);
         ratings(out, goggles);
         if (isnan(goggles->luminous_transmittance))
             html_cell(out, "n", "%s", "not given");
@@ -88,12 +88,12 @@ static void pair_rows(struct bw_text *out, const struct bw_result *result, const
         if (i > 0)
             html_cell(out, NULL, "%s", "");
         else if (pair->is_place)
-            html_cell(out, "name", "%s %s, at the place of %s (room %s)", report_laser(result, pair->laser)->name,
+            html_cell(out, NULL, "%s %s, at the place of %s (room %s)", report_laser(result, pair->laser)->name,
                       piece->name, result->the_case->rooms[pair->room].persons[pair->person].name,
                       result->the_case->rooms[pair->room].name);
         else
-            html_cell(out, "name", "%s %s, at its exit", report_laser(result, pair->laser)->name, piece->name);
-        html_cell(out, "name", "%s (%s nm)", piece->output.emissions[i].name,
+            html_cell(out, NULL, "%s %s, at its exit", report_laser(result, pair->laser)->name, piece->name);
+        html_cell(out, NULL, "%s (%s\xC2\xA0nm)", piece->output.emissions[i].name,
                   report_plain(words, piece->output.emissions[i].wavelength_nm));
         html_cell(out, "n", "%s", report_density(words, emission->od_required));
         html_cell(out, "n", "%s", report_density_given(words, emission->od_given));
@@ -113,8 +113,9 @@ void html_eyewear(struct bw_text *out, const struct bw_result *result) {
     }
     for (size_t from = 0; from < count; from += MATRIX_GOGGLES)
         matrix(out, result, from, from + MATRIX_GOGGLES < count ? from + MATRIX_GOGGLES : count);
-    html_paragraph(out, "What is needed is rounded up, what is given down. Only optical densities are compared: whether "
-                        "a filter withstands the beam is not judged.");
+    html_paragraph(out,
+                   "What is needed is rounded up, what is given down. Only optical densities are compared: whether "
+                   "a filter withstands the beam is not judged.");
     drawer(out, result);
     bw_text_add(out, "<h3>Each pair, emission by emission</h3>\n");
     html_table(out, "", heads, COUNT(heads));

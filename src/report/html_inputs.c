@@ -23,7 +23,7 @@ static void emission(struct bw_text *out, const struct bw_laser *laser, const st
 }
 
 static void emissions(struct bw_text *out, const struct bw_result *result) {
-    static const char *const heads[] = {"Emission",         ">nm",         ">Average W", ">Peak W",
+    static const char *const heads[] = {"Emission",        ">nm",         ">Average W", ">Peak W",
                                         ">Pulse energy J", ">Duration s", ">Rate Hz"};
     html_table(out, "", heads, COUNT(heads));
     for (size_t i = 0; i < result->the_case->laser_count; i++)
@@ -37,7 +37,7 @@ static void beam(struct bw_text *out, const struct bw_laser *laser, const struct
     char words[REPORT_QUANTITY_SIZE];
     html_row(out, NULL);
     html_cell(out, NULL, "%s %s", laser->name, piece->name);
-    html_cell(out, "name", "%s%s", piece->output.emissions[index].name,
+    html_cell(out, NULL, "%s%s", piece->output.emissions[index].name,
               piece->emission_beam_given[index] ? " (its own beam)" : "");
     html_cell(out, "n", "%s", report_plain(words, 1e3 * beam->exit_diameter_m));
     html_cell(out, "n", "%s", report_plain(words, 1e3 * beam->diameter_m));
@@ -49,8 +49,8 @@ static void beam(struct bw_text *out, const struct bw_laser *laser, const struct
 }
 
 static void beams(struct bw_text *out, const struct bw_result *result) {
-    static const char *const heads[] = {"Handpiece", "Emission",        ">Exit d63 mm",    ">Waist d63 mm",
-                                        ">Waist m", ">Divergence mrad", "Profile, spread"};
+    static const char *const heads[] = {"Handpiece", "Emission",         ">Exit d63 mm",   ">Waist d63 mm",
+                                        ">Waist m",  ">Divergence mrad", "Profile, spread"};
     html_table(out, "", heads, COUNT(heads));
     for (size_t i = 0; i < result->the_case->laser_count; i++) {
         const struct bw_laser *laser = &result->the_case->lasers[i];
@@ -78,9 +78,9 @@ void html_inputs_given(struct bw_text *out, const struct bw_result *result) {
         bool head = entry->key[0] == '\0';
         html_row(out, head ? "head" : NULL);
         html_cell(out, "n", "%d", entry->line);
-        html_cell(out, "name", head ? "[%s]" : "%s", head ? entry->section : "");
+        html_cell(out, NULL, head ? "[%s]" : "%s", head ? entry->section : "");
         html_cell(out, NULL, "%s", entry->key);
-        html_cell(out, "name", "%s", entry->value);
+        html_cell(out, NULL, "%s", entry->value);
         html_row_end(out);
     }
     html_table_end(out);

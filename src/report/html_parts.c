@@ -5,19 +5,25 @@
 #include <stdio.h>
 #include <stdlib.h>
 
-BW_PRINTF(2, 0)
-static void escaped(struct bw_text *out, const char *format, va_list arguments) {
+BW_PRINTF(1, 0)
+static char *formatted(const char *format, va_list arguments) {
     va_list again;
     va_copy(again, arguments);
     int length = vsnprintf(NULL, 0, format, arguments);
     char *string = length < 0 ? NULL : malloc((size_t)length + 1);
-    if (string) {
+    if (string)
         vsnprintf(string, (size_t)length + 1, format, again);
-        report_xml(out, string);
-    } else {
-        out->failed = true;
-    }
     va_end(again);
+    return string;
+}
+
+BW_PRINTF(2, 0)
+static void escaped(struct bw_text *out, const char *format, va_list arguments) {
+    char *string = formatted(format, arguments);
+    if (string)
+        report_xml(out, string);
+    else
+        out->failed = true;
     free(string);
 }
 
@@ -71,16 +77,34 @@ void html_row_end(struct bw_text *out) {
     bw_text_add(out, "</tr>\n");
 }
 
+/* A word so long that it has to be broken if its table is to fit the page. */
+static bool has_long_word(const char *string) {
+    enum { LONG = 22 };
+    for (size_t length = 0; *string; string++) {
+        length = *string == ' ' ? 0 : length + 1;
+        if (length > LONG)
+            return true;
+    }
+    return false;
+}
+
 void html_cell(struct bw_text *out, const char *class, const char *format, ...) {
     va_list arguments;
     va_start(arguments, format);
-    if (class)
-        bw_text_add(out, "<td class=\"%s\">", class);
+    char *string = formatted(format, arguments);
+    va_end(arguments);
+    bool is_long = string && has_long_word(string);
+    if (class || is_long)
+        bw_text_add(out, "<td class=\"%s%s%s\">", class ? class : "", class && is_long ? " " : "",
+                    is_long ? "long" : "");
     else
         bw_text_add(out, "<td>");
-    escaped(out, format, arguments);
+    if (string)
+        report_xml(out, string);
+    else
+        out->failed = true;
+    free(string);
     bw_text_add(out, "</td>");
-    va_end(arguments);
 }
 
 const char *html_verdict_class(enum bw_verdict verdict) {
@@ -89,9 +113,12 @@ const char *html_verdict_class(enum bw_verdict verdict) {
 
 const char *html_verdict_words(enum bw_verdict verdict) {
     switch (verdict) {
-    case BW_SUFFICIENT: return "\xE2\x9C\x93 sufficient";
-    case BW_INSUFFICIENT: return "\xE2\x9C\x97 too weak";
-    case BW_NO_RATING: return "\xE2\x9C\x97 no rating";
+    case BW_SUFFICIENT:
+        return "\xE2\x9C\x93 sufficient";
+    case BW_INSUFFICIENT:
+        return "\xE2\x9C\x97 too weak";
+    case BW_NO_RATING:
+        return "\xE2\x9C\x97 no rating";
     }
     return "unknown";
 }

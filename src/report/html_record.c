@@ -30,8 +30,9 @@ void html_working(struct bw_text *out, const struct bw_result *result) {
     if (!any)
         return;
     html_heading(out, "working", "The working");
-    html_paragraph(out, "Each figure with its formula, its numbers and the row it comes from, as the evaluation used it: "
-                        "not rounded to the safe side. Unfold before printing to have it on paper.");
+    html_paragraph(out,
+                   "Each figure with its formula, its numbers and the row it comes from, as the evaluation used it: "
+                   "not rounded to the safe side. Unfold before printing to have it on paper.");
     for (size_t i = 0; i < result->distance_count; i++) {
         const struct bw_distance_result *distance = &result->distances[i];
         bw_text_add(out, "<details><summary>");

@@ -9,14 +9,14 @@ static void facts(struct bw_text *out, const struct bw_result *result, const str
     const struct bw_room *room = &result->the_case->rooms[found->room];
     bool us = result->the_case->us_units;
     char zone[REPORT_QUANTITY_SIZE], area[REPORT_QUANTITY_SIZE], reach[BW_WORDS_SIZE], ratio[REPORT_QUANTITY_SIZE];
-    html_paragraph(out,
-                   "The hazard zone (NHZ) takes %s of the %s of the room and reaches %s from where the handpiece is used. "
-                   "At the worst place %s times the eye limit can arrive. Map of %g mm cells, up to %d mirror-like "
-                   "bounce%s.",
-                   report_area(zone, found->solution.nhz_area_m2, us),
-                   report_area(area, bw_polygon_area(&room->outline), us),
-                   bw_length_words(reach, found->solution.farthest_m, us), report_ratio(ratio, found->solution.ratio_max),
-                   1e3 * room->grid_m, room->bounces, room->bounces == 1 ? "" : "s");
+    html_paragraph(
+        out,
+        "The hazard zone (NHZ) takes %s of the %s of the room and reaches %s from where the handpiece is used. "
+        "At the worst place %s times the eye limit can arrive. Map of %g mm cells, up to %d mirror-like "
+        "bounce%s.",
+        report_area(zone, found->solution.nhz_area_m2, us), report_area(area, bw_polygon_area(&room->outline), us),
+        bw_length_words(reach, found->solution.farthest_m, us), report_ratio(ratio, found->solution.ratio_max),
+        1e3 * room->grid_m, room->bounces, room->bounces == 1 ? "" : "s");
 }
 
 static void densities(struct bw_text *out, const struct bw_person_result *person) {
@@ -42,7 +42,7 @@ static void person(struct bw_text *out, const struct bw_result *result, const st
     html_cell(out, "n", "%s", report_ratio(words, each->place.ratio));
     html_cell(out, NULL, "%s", bw_path_words(path, &each->place, result->the_case->us_units));
     densities(out, each);
-    html_cell(out, "name", "%s", person->has_eyewear ? result->the_case->eyewear[person->eyewear].name : "nothing");
+    html_cell(out, NULL, "%s", person->has_eyewear ? result->the_case->eyewear[person->eyewear].name : "nothing");
     if (each->has_verdict)
         html_cell(out, html_verdict_class(each->verdict), "%s", html_verdict_words(each->verdict));
     else if (each->needs_eyewear)
@@ -53,8 +53,8 @@ static void person(struct bw_text *out, const struct bw_result *result, const st
 }
 
 static void people(struct bw_text *out, const struct bw_result *result, const struct bw_room_result *found) {
-    static const char *const heads[] = {"Person",    ">At x, y (m)", ">\xC3\x97 eye limit", "Worst by",
-                                        "Needs OD", "Wears",        "Verdict"};
+    static const char *const heads[] = {"Person", ">At x, y (m)", ">\xC3\x97 eye limit", "Worst by", "Needs OD",
+                                        "Wears",  "Verdict"};
     size_t count = result->the_case->rooms[found->room].person_count;
     if (count == 0) {
         html_paragraph(out, "The case has nobody in this room.");
@@ -68,9 +68,12 @@ static void people(struct bw_text *out, const struct bw_result *result, const st
 
 static const char *cover_words(const struct bw_opening *opening) {
     switch (opening->cover) {
-    case BW_COVER_NONE: return "none";
-    case BW_COVER_OPAQUE: return "opaque";
-    case BW_COVER_MATERIAL: return opening->material.name;
+    case BW_COVER_NONE:
+        return "none";
+    case BW_COVER_OPAQUE:
+        return "opaque";
+    case BW_COVER_MATERIAL:
+        return opening->material.name;
     }
     return "unknown";
 }
@@ -85,11 +88,12 @@ static void openings(struct bw_text *out, const struct bw_result *result, const 
     html_table(out, "", heads, COUNT(heads));
     for (size_t i = 0; i < room->opening_count; i++) {
         const struct bw_opening_result *each = &found->solution.openings[i];
-        char words[REPORT_QUANTITY_SIZE], path[BW_WORDS_SIZE], letter[4] = {(char)('A' + i % 26), i >= 26 ? '\'' : '\0'};
+        char words[REPORT_QUANTITY_SIZE], path[BW_WORDS_SIZE],
+            letter[4] = {(char)('A' + i % 26), i >= 26 ? '\'' : '\0'};
         html_row(out, NULL);
         html_cell(out, NULL, "%s %s", letter, room->openings[i].name);
         html_cell(out, NULL, "%s", report_opening_kind(room->openings[i].kind));
-        html_cell(out, "name", "%s", cover_words(&room->openings[i]));
+        html_cell(out, NULL, "%s", cover_words(&room->openings[i]));
         html_cell(out, each->leaves ? "n bad" : "n", "%s", report_ratio(words, each->ratio_beyond));
         html_cell(out, NULL, "%s", bw_path_words(path, &each->worst, result->the_case->us_units));
         html_cell(out, each->leaves ? "bad" : NULL, "%s", each->needs);
@@ -102,7 +106,7 @@ static void material(struct bw_text *out, const char *what, const struct bw_mate
     char words[REPORT_QUANTITY_SIZE];
     html_row(out, NULL);
     html_cell(out, NULL, "%s", what);
-    html_cell(out, "name", "%s", material->name);
+    html_cell(out, NULL, "%s", material->name);
     html_cell(out, NULL, "%s", bw_finish_name(material->finish));
     html_cell(out, "n", "%s", report_plain(words, 100. * material->reflectance));
     html_cell(out, "n", "%s", report_plain(words, 100. * material->matt_reflectance));
@@ -112,8 +116,8 @@ static void material(struct bw_text *out, const char *what, const struct bw_mate
 }
 
 static void materials(struct bw_text *out, const struct bw_room *room) {
-    static const char *const heads[] = {"Surface", "Material", "Finish", ">Reflects %", ">Matt %", ">Lets through %",
-                                        "Source"};
+    static const char *const heads[] = {"Surface", "Material",        "Finish", ">Reflects %",
+                                        ">Matt %", ">Lets through %", "Source"};
     html_table(out, "", heads, COUNT(heads));
     material(out, "walls", &room->walls);
     material(out, "what is treated", &room->treated);

@@ -36,7 +36,8 @@ const char html_style[] =
     "table{border-collapse:collapse;width:100%;font-size:.9rem}\n"
     "th,td{text-align:left;vertical-align:top;padding:.3rem .55rem;border-bottom:1px solid var(--line);"
     "overflow-wrap:break-word}\n"
-    "th{background:var(--band);font-weight:600;overflow-wrap:normal}td:first-child{font-weight:500;overflow-wrap:anywhere}td.name{overflow-wrap:anywhere}td.keep{white-space:nowrap}\n"
+    "th{background:var(--band);font-weight:600;overflow-wrap:normal}td:first-child{font-weight:500}td.long{overflow-"
+    "wrap:anywhere}td.keep{white-space:nowrap}\n"
     "th.n,td.n{text-align:right;font-variant-numeric:tabular-nums;white-space:nowrap}\n"
     "td.bad,td.good{font-weight:600}td.v{white-space:nowrap}\n"
     "table.given{font-size:.82rem}table.given td{font-family:\"DejaVu Sans Mono\",Consolas,monospace}\n"
@@ -58,7 +59,7 @@ const char html_style_print[] =
     "h1{font-size:17pt}h2{font-size:12.5pt;break-after:avoid;margin-top:14pt}h3{break-after:avoid}\n"
     "table{font-size:8pt}table.given{font-size:7pt}th,td{padding:2pt 3.5pt}tr{break-inside:avoid}thead{display:"
     "table-header-group}\n"
-    ".scroll{overflow:visible}figure{break-inside:avoid}figure svg{width:148mm;margin:0 auto}\n"
+    ".scroll{overflow:visible}figure{break-inside:avoid}figure svg{width:148mm;margin:0 auto;border:0}\n"
     ".findings li{padding:3pt 6pt;margin:3pt 0;border:1px solid #999;border-left-width:6px}"
     ".findings .danger{border-color:#000}\n"
     ".page{break-before:page}.screen{display:none}}\n";

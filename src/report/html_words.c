@@ -33,24 +33,27 @@ void html_assumptions(struct bw_text *out, const struct bw_result *result) {
                    "1.414 d63, FWHM = 0.833 d63; a top hat is as wide as its edge.");
     html_item(out, "A direct view, or a mirror image, is a point source: the strictest case. The exposure is the mean "
                    "over the limiting aperture at the centre of the beam, for the unaided eye.");
-    html_item(out, "Diffuse light comes from the smallest spot that the beam has, on a surface that returns all of it; in "
-                   "a room, from the materials given. The spot is an extended source.");
+    html_item(out,
+              "Diffuse light comes from the smallest spot that the beam has, on a surface that returns all of it; in "
+              "a room, from the materials given. The spot is an extended source.");
     html_item(out, "Emissions that act on the same tissue in the same way are added. The optical densities share the "
                    "allowance equally among the emissions that need any.");
-    html_item(out, "Pulses: each limit is the lowest of three rules: the single pulse, the average over the exposure, and "
-                   "the train rule of the rule set.");
+    html_item(out,
+              "Pulses: each limit is the lowest of three rules: the single pulse, the average over the exposure, and "
+              "the train rule of the rule set.");
     html_item(out, "The plan is flat: leaving out height only shortens paths. The map takes the worst position in the "
                    "treatment area, the worst allowed aim, the worst place in each cell, and the largest ratio at this "
                    "length of path or farther. Surfaces and openings reach from floor to ceiling.");
-    html_item(out, "Outside a row of the published table there is an error, never an extrapolation; where two rows meet, "
-                   "the lower limit holds.");
+    html_item(out,
+              "Outside a row of the published table there is an error, never an extrapolation; where two rows meet, "
+              "the lower limit holds.");
     bw_text_add(out, "</ul>\n");
 }
 
 void html_cautions(struct bw_text *out) {
     static const char *const cautions[] = {
-        "The laser safety officer decides and signs. Local law, licences and registration, the employer's rules and the "
-        "manufacturer's instructions come first, and hold wherever they are stricter.",
+        "The laser safety officer decides and signs. Local law, licences and registration, the employer's rules and "
+        "the manufacturer's instructions come first, and hold wherever they are stricter.",
         "Treatment of people or animals belongs to licensed practice. Nothing here says whether, where or how long to "
         "treat.",
         "Meter the beam. Class 4 medical output may differ from its setting by 20 % (IEC 60601-2-22, from memory); "
@@ -63,13 +66,13 @@ void html_cautions(struct bw_text *out) {
         "suitable goggles while the laser may emit. An animal's eyes are shielded as the staff's are.",
         "The red aiming beam is not the danger; the beam that nobody can see is. Cover or remove shiny surfaces, cover "
         "windows, close doors.",
-        "An exposure that may have been above a limit: stop, keep the setting, see an eye doctor, tell the laser safety "
-        "officer.",
+        "An exposure that may have been above a limit: stop, keep the setting, see an eye doctor, tell the laser "
+        "safety officer.",
         "Duties: laser safety officer, controlled area, windows and surfaces: IEC TR 60825-8:2006, 5.1, 7.1, 7.2, 7.3, "
-        "Annex B. Adviser, local rules, signs at entrances, eyewear for staff and patient, training: UK practice guidance "
-        "on the 2010 regulations; MHRA 2015, section 3. Assessment, signs and access, training, surveillance: Directive "
-        "2006/25/EC, Art. 4, 5, 6, 8 (from memory). Registration of class 3B and 4, veterinary ones included: some US "
-        "states, for example 25 TAC 289.301.",
+        "Annex B. Adviser, local rules, signs at entrances, eyewear for staff and patient, training: UK practice "
+        "guidance on the 2010 regulations; MHRA 2015, section 3. Assessment, signs and access, training, "
+        "surveillance: Directive 2006/25/EC, Art. 4, 5, 6, 8 (from memory). Registration of class 3B and 4, "
+        "veterinary ones included: some US states, for example 25 TAC 289.301.",
     };
     html_heading(out, "cautions", "Cautions and duties");
     bw_text_add(out, "<ul>\n");

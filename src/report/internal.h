@@ -18,17 +18,17 @@ void report_xml(struct bw_text *out, const char *string);
 
 /* ---- quantities.c: numbers with units, rounded to the safe side -------------------------------- */
 
-enum { REPORT_QUANTITY_SIZE = 120 };
+enum { REPORT_QUANTITY_SIZE = BW_WORDS_SIZE };
 const char *report_radiant_exposure(char out[REPORT_QUANTITY_SIZE], double value_j_m2, bool us); /* limit: down */
 const char *report_irradiance(char out[REPORT_QUANTITY_SIZE], double value_w_m2, bool us);       /* limit: down */
 const char *report_reach(char out[REPORT_QUANTITY_SIZE], const struct bw_reach *reach, bool us); /* up; "none" for 0 */
 const char *report_ratio(char out[REPORT_QUANTITY_SIZE], double ratio);                          /* up */
-const char *report_density(char out[REPORT_QUANTITY_SIZE], double od); /* needed: up, one decimal */
+const char *report_density(char out[REPORT_QUANTITY_SIZE], double od);       /* needed: up, one decimal */
 const char *report_density_given(char out[REPORT_QUANTITY_SIZE], double od); /* down; "none" */
 const char *report_plain(char out[REPORT_QUANTITY_SIZE], double value); /* an input, or what is no limit: nearest */
 const char *report_area(char out[REPORT_QUANTITY_SIZE], double area_m2, bool us); /* up */
-const char *report_known(enum bw_known known); /* "read", "memory" */
-const char *report_known_words(enum bw_known known); /* "read", "from memory" */
+const char *report_known(enum bw_known known);                                    /* "read", "memory" */
+const char *report_known_words(enum bw_known known);                              /* "read", "from memory" */
 /* Why this exposure time: "customary glance (clause, from memory)" or "given in the case file". */
 void report_time_reason(struct bw_text *out, const struct bw_distance_result *distance,
                         const struct bw_exposure_time *time, const char *what);

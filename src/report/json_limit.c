@@ -26,8 +26,7 @@ static void train_members(struct json *json, const struct bw_train_limit *limit)
 
 void bw_report_limit_json(struct bw_text *out, const struct bw_limit_query *query) {
     struct json json = {.out = out};
-    const struct bw_train_limit *train =
-        query->has_train ? &query->train.limits[query->train.governing] : NULL;
+    const struct bw_train_limit *train = query->has_train ? &query->train.limits[query->train.governing] : NULL;
     const struct bw_limit *governing = train ? &train->limit : &query->limits.limits[query->limits.governing];
     json_object(&json, NULL);
     json_string(&json, "schema", "beamward.limit/1");

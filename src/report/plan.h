@@ -15,16 +15,16 @@ struct plan {
     const struct bw_result *result;
     const struct bw_room_result *found;
     const struct bw_room *room;
-    size_t index;                 /* of the room in the result: makes ids unique */
-    struct bw_text body, over;    /* drawn first; drawn on top */
-    struct bw_point low, high;    /* of the room [m] */
-    double scale;                 /* drawing units a metre */
-    struct plan_box field;        /* where the room lies, in drawing units */
-    struct plan_box page;         /* where labels may lie */
+    size_t index;              /* of the room in the result: makes ids unique */
+    struct bw_text body, over; /* drawn first; drawn on top */
+    struct bw_point low, high; /* of the room [m] */
+    double scale;              /* drawing units a metre */
+    struct plan_box field;     /* where the room lies, in drawing units */
+    struct plan_box page;      /* where labels may lie */
     size_t box_count, box_capacity, line_count, line_capacity;
-    struct plan_box *boxes;       /* taken by marks and labels */
-    struct bw_segment *lines;     /* walls and surfaces, better not crossed; in drawing units */
-    double bottom;                /* of what has been drawn */
+    struct plan_box *boxes;   /* taken by marks and labels */
+    struct bw_segment *lines; /* walls and surfaces, better not crossed; in drawing units */
+    double bottom;            /* of what has been drawn */
 };
 
 /* plan_geometry.c */
@@ -52,7 +52,8 @@ bool plan_is_protected(const struct bw_person_result *person);
 void plan_take(struct plan *plan, double x, double y, double half_width, double half_height);
 void plan_take_line(struct plan *plan, struct bw_point from, struct bw_point to); /* drawing units */
 double plan_text_width(const char *text);
-/* A label near a mark of this radius, with a leader line where it had to move away. Returns: false if no place is free. */
+/* A label near a mark of this radius, with a leader line where it had to move away. Returns: false if no place is free.
+ */
 bool plan_label(struct plan *plan, struct bw_point mark, double radius, const char *text);
 /* A label on a line. Returns: false if the place is taken. */
 bool plan_label_on(struct plan *plan, struct bw_point at, const char *text);

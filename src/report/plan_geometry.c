@@ -69,8 +69,8 @@ static struct bw_point moved(struct bw_point p, struct bw_point by, double dista
 }
 
 void plan_surfaces(struct plan *plan) {
-    static const char *const classes[] = {[BW_MATT] = "matt", [BW_MIRROR] = "mirror", [BW_GLOSS] = "gloss",
-                                          [BW_GLASS] = "glass"};
+    static const char *const classes[] = {
+        [BW_MATT] = "matt", [BW_MIRROR] = "mirror", [BW_GLOSS] = "gloss", [BW_GLASS] = "glass"};
     for (size_t i = 0; i < plan->room->surface_count; i++) {
         const struct bw_surface *surface = &plan->room->surfaces[i];
         struct bw_point from = plan_at(plan, surface->segment.from), to = plan_at(plan, surface->segment.to);

@@ -100,8 +100,8 @@ static void zone_entries(struct legend *legend) {
 static void mark_entry(struct legend *legend, bool round, bool bad, const char *text) {
     struct bw_point at = next_entry(legend, text);
     if (round)
-        bw_text_add(&legend->plan->over, "<circle class=\"badge%s\" cx=\"%.1f\" cy=\"%.1f\" r=\"9\"/>", bad ? " bad" : "",
-                    at.x_m + 17, at.y_m);
+        bw_text_add(&legend->plan->over, "<circle class=\"badge%s\" cx=\"%.1f\" cy=\"%.1f\" r=\"9\"/>",
+                    bad ? " bad" : "", at.x_m + 17, at.y_m);
     else
         bw_text_add(&legend->plan->over, "<rect class=\"badge%s\" x=\"%.1f\" y=\"%.1f\" width=\"17\" height=\"17\"/>",
                     bad ? " bad" : "", at.x_m + 8.5, at.y_m - 8.5);

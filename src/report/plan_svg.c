@@ -57,15 +57,18 @@ static void open_svg(struct bw_text *out, const struct plan *plan, bool document
     report_xml(out, plan->room->name);
     bw_text_add(out, "</title>\n%s<defs>\n<clipPath id=\"room-%zu\"><path d=\"", style, plan->index);
     plan_path(out, plan, &plan->room->outline);
-    bw_text_add(out, "\"/></clipPath>\n<pattern id=\"hatch-%zu\" width=\"9\" height=\"9\" "
-                     "patternUnits=\"userSpaceOnUse\"><path d=\"M0 9L9 0M-1 1L1 -1M8 10L10 8\" stroke=\"#999\" "
-                     "stroke-width=\"1\" fill=\"none\"/></pattern>\n</defs>\n",
+    bw_text_add(out,
+                "\"/></clipPath>\n<pattern id=\"hatch-%zu\" width=\"9\" height=\"9\" "
+                "patternUnits=\"userSpaceOnUse\"><path d=\"M0 9L9 0M-1 1L1 -1M8 10L10 8\" stroke=\"#999\" "
+                "stroke-width=\"1\" fill=\"none\"/></pattern>\n</defs>\n",
                 plan->index);
     bw_text_add(out, "<rect width=\"%d\" height=\"%.0f\" fill=\"#fff\"/>\n", PLAN_WIDTH, plan->bottom);
 }
 
 void bw_report_plan_svg(struct bw_text *out, const struct bw_result *result, size_t room, bool document) {
-    struct plan plan = {.result = result, .found = &result->rooms[room], .index = room,
+    struct plan plan = {.result = result,
+                        .found = &result->rooms[room],
+                        .index = room,
                         .room = &result->the_case->rooms[result->rooms[room].room]};
     plan_frame(&plan);
     title(&plan);

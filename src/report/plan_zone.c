@@ -151,8 +151,9 @@ void plan_contours(struct plan *plan) {
         const struct bw_contours *contours = &plan->found->solution.contours[level];
         if (contours->count == 0)
             continue;
-        bw_text_add(&plan->body, "<path class=\"contour\" clip-path=\"url(#room-%zu)\" stroke-width=\"%s\" "
-                                 "stroke-dasharray=\"%s\" d=\"",
+        bw_text_add(&plan->body,
+                    "<path class=\"contour\" clip-path=\"url(#room-%zu)\" stroke-width=\"%s\" "
+                    "stroke-dasharray=\"%s\" d=\"",
                     plan->index, level == 0 ? "2.6" : "1.6", plan_contour_dash(level));
         for (size_t i = 0; i < contours->count; i++)
             contour(plan, &contours->lines[i]);

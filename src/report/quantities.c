@@ -137,9 +137,12 @@ void report_verdict(struct bw_text *out, const struct bw_result *result) {
 
 const char *report_opening_kind(enum bw_opening_kind kind) {
     switch (kind) {
-    case BW_DOOR: return "door";
-    case BW_WINDOW: return "window";
-    case BW_GAP: return "gap";
+    case BW_DOOR:
+        return "door";
+    case BW_WINDOW:
+        return "window";
+    case BW_GAP:
+        return "gap";
     }
     return "opening";
 }

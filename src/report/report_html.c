@@ -18,8 +18,9 @@ void html_top(struct bw_text *out, const struct bw_result *result, const struct 
     }
     bw_text_add(out, ".</p>\n<div class=\"verdict %s\"><p>", result->needs_action ? "bad" : "good");
     report_xml(out, verdict.data ? verdict.data : "");
-    bw_text_add(out, "</p>\n<p class=\"small\">%zu danger, %zu action, %zu caution, %zu note. The laser safety officer "
-                     "decides; this record only computes.</p></div>\n",
+    bw_text_add(out,
+                "</p>\n<p class=\"small\">%zu danger, %zu action, %zu caution, %zu note. The laser safety officer "
+                "decides; this record only computes.</p></div>\n",
                 report_count_findings(result, BW_DANGER), report_count_findings(result, BW_ACTION),
                 report_count_findings(result, BW_CAUTION), report_count_findings(result, BW_NOTE));
     out->failed = out->failed || verdict.failed;

@@ -87,9 +87,10 @@ void bw_report_distance_text(struct bw_text *out, const struct bw_result *result
     for (size_t i = 0; i < result->distance_count; i++)
         handpiece(out, result, &result->distances[i]);
     bw_text_add(out, "\n");
-    text_wrap(out, "", "MPE in J/m2 is per pulse (continuous: over the exposure), in W/m2 the mean. OD is what each emission "
-                       "needs at the exit, all of them together keeping the limit. Limits are rounded down, "
-                       "distances and OD up.");
+    text_wrap(out, "",
+              "MPE in J/m2 is per pulse (continuous: over the exposure), in W/m2 the mean. OD is what each emission "
+              "needs at the exit, all of them together keeping the limit. Limits are rounded down, "
+              "distances and OD up.");
     text_findings(out, result, BW_DANGER, BW_NOTE);
     text_all_working(out, result);
 }

@@ -5,9 +5,12 @@
 
 static const char *short_verdict(enum bw_verdict verdict) {
     switch (verdict) {
-    case BW_SUFFICIENT: return "sufficient";
-    case BW_INSUFFICIENT: return "TOO WEAK";
-    case BW_NO_RATING: return "NO RATING";
+    case BW_SUFFICIENT:
+        return "sufficient";
+    case BW_INSUFFICIENT:
+        return "TOO WEAK";
+    case BW_NO_RATING:
+        return "NO RATING";
     }
     return "unknown";
 }
@@ -35,9 +38,8 @@ static void pair_block(struct bw_text *out, const struct bw_result *result, cons
                  result->the_case->rooms[pair->room].name);
     bw_text_add(out, "\n");
     text_wrapf(out, "", "%s with %s %s, %s: %s", result->the_case->eyewear[pair->eyewear].name,
-               report_laser(result, pair->laser)->name,
-               report_handpiece(result, pair->laser, pair->handpiece)->name, where,
-               short_verdict(pair->verdict.verdict));
+               report_laser(result, pair->laser)->name, report_handpiece(result, pair->laser, pair->handpiece)->name,
+               where, short_verdict(pair->verdict.verdict));
     struct text_table table;
     table_begin(&table, "lrrll");
     static const char *const names[] = {"emission", "needs", "gives", "verdict", "why"};
@@ -99,7 +101,8 @@ void bw_report_eyewear_text(struct bw_text *out, const struct bw_result *result)
     for (size_t i = 0; i < result->pair_count; i++)
         pair_block(out, result, &result->pairs[i]);
     bw_text_add(out, "\n");
-    text_wrap(out, "", "What is needed is rounded up, what is given down. Whether the filter withstands the beam is not "
-                       "judged.");
+    text_wrap(out, "",
+              "What is needed is rounded up, what is given down. Whether the filter withstands the beam is not "
+              "judged.");
     text_all_working(out, result);
 }

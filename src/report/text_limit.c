@@ -13,7 +13,8 @@ static void head(struct bw_text *out, const struct bw_limit_query *query) {
         text_wrapf(out, "source    ", "subtends %s mrad", report_plain(subtense, 1e3 * query->exposure.subtense_rad));
     if (query->has_train) {
         char duration[REPORT_QUANTITY_SIZE], rate[REPORT_QUANTITY_SIZE];
-        text_wrapf(out, "pulses    ", "%s s each, %s a second", report_plain(duration, query->emission.pulse_duration_s),
+        text_wrapf(out, "pulses    ", "%s s each, %s a second",
+                   report_plain(duration, query->emission.pulse_duration_s),
                    report_plain(rate, query->emission.repetition_rate_hz));
     }
     bw_text_add(out, "\n");
@@ -29,7 +30,8 @@ static void governing(struct bw_text *out, const struct bw_limit *limit) {
 static void continuous(struct bw_text *out, const struct bw_limit_query *query) {
     char quantity[REPORT_QUANTITY_SIZE];
     const struct bw_limit *limit = &query->limits.limits[query->limits.governing];
-    text_wrap(out, "  radiant exposure   ", report_radiant_exposure(quantity, limit->radiant_exposure_j_m2, query->us_units));
+    text_wrap(out, "  radiant exposure   ",
+              report_radiant_exposure(quantity, limit->radiant_exposure_j_m2, query->us_units));
     text_wrap(out, "  irradiance         ", report_irradiance(quantity, limit->irradiance_w_m2, query->us_units));
     governing(out, limit);
     bw_text_add(out, "\nEvery effect that has a row; the lowest governs\n");
@@ -69,8 +71,8 @@ static void pulsed(struct bw_text *out, const struct bw_limit_query *query) {
     text_wrap(out, "  mean irradiance    ", report_irradiance(quantity, limit->irradiance_w_m2, query->us_units));
     text_wrapf(out, "  governing rule     ", "%s", bw_train_rule_name(limit->rule));
     if (limit->pulses > 0.)
-        text_wrapf(out, "  rule of the train  ", "%s pulses counted, correction %s", report_plain(pulses, limit->pulses),
-                   bw_format(correction, limit->correction, 3, BW_DOWN));
+        text_wrapf(out, "  rule of the train  ", "%s pulses counted, correction %s",
+                   report_plain(pulses, limit->pulses), bw_format(correction, limit->correction, 3, BW_DOWN));
     if (limit->group_pulses > 1.)
         text_wrapf(out, "  grouped            ", "%s pulses count as one", report_plain(pulses, limit->group_pulses));
     governing(out, &limit->limit);

@@ -22,9 +22,10 @@ static void persons(struct bw_text *out, const struct bw_result *result, const s
         table_cell(&table, "%s", bw_path_words(path, &person->place, result->the_case->us_units));
         table_cell(&table, "%s",
                    room->persons[i].has_eyewear ? result->the_case->eyewear[room->persons[i].eyewear].name : "nothing");
-        table_cell(&table, "%s", person->has_verdict      ? bw_verdict_name(person->verdict)
-                                 : person->needs_eyewear ? "UNPROTECTED"
-                                                         : "outside the zone");
+        table_cell(&table, "%s",
+                   person->has_verdict     ? bw_verdict_name(person->verdict)
+                   : person->needs_eyewear ? "UNPROTECTED"
+                                           : "outside the zone");
     }
     table_print(&table, out, 2);
 }

@@ -8,10 +8,14 @@ void text_case_head(struct bw_text *out, const struct bw_result *result) {
 
 static const char *label(enum bw_severity severity) {
     switch (severity) {
-    case BW_DANGER: return "DANGER   ";
-    case BW_ACTION: return "ACTION   ";
-    case BW_CAUTION: return "caution  ";
-    case BW_NOTE: return "note     ";
+    case BW_DANGER:
+        return "DANGER   ";
+    case BW_ACTION:
+        return "ACTION   ";
+    case BW_CAUTION:
+        return "caution  ";
+    case BW_NOTE:
+        return "note     ";
     }
     return "         ";
 }

@@ -59,11 +59,10 @@ static bool is_within(const struct span *spans, size_t count, unsigned long code
 /* East Asian wide characters and emoji take two columns, marks that combine take none; where terminals differ, the
  * wider is taken. */
 int report_columns(unsigned long code) {
-    static const struct span wide[] = {{0x1100, 0x115F},   {0x231A, 0x231B},   {0x23E9, 0x23F3},   {0x25FD, 0x25FE},
-                                       {0x2600, 0x27BF},   {0x2B1B, 0x2B55},   {0x2E80, 0xA4CF},   {0xA960, 0xA97F},
-                                       {0xAC00, 0xD7A3},   {0xF900, 0xFAFF},   {0xFE10, 0xFE19},   {0xFE30, 0xFE6F},
-                                       {0xFF00, 0xFF60},   {0xFFE0, 0xFFE6},   {0x16FE0, 0x1B2FF}, {0x1F000, 0x1FAFF},
-                                       {0x20000, 0x3FFFD}};
+    static const struct span wide[] = {
+        {0x1100, 0x115F}, {0x231A, 0x231B}, {0x23E9, 0x23F3},   {0x25FD, 0x25FE},   {0x2600, 0x27BF},  {0x2B1B, 0x2B55},
+        {0x2E80, 0xA4CF}, {0xA960, 0xA97F}, {0xAC00, 0xD7A3},   {0xF900, 0xFAFF},   {0xFE10, 0xFE19},  {0xFE30, 0xFE6F},
+        {0xFF00, 0xFF60}, {0xFFE0, 0xFFE6}, {0x16FE0, 0x1B2FF}, {0x1F000, 0x1FAFF}, {0x20000, 0x3FFFD}};
     static const struct span joined[] = {{0x0300, 0x036F}, {0x200B, 0x200D}, {0x20D0, 0x20FF}, {0xFE00, 0xFE0F}};
     if (is_within(joined, sizeof joined / sizeof joined[0], code))
         return 0;
@@ -100,12 +99,23 @@ void report_xml(struct bw_text *out, const char *string) {
         unsigned long code;
         string = report_next(string, &code);
         switch (code) {
-        case '&': bw_text_add(out, "&amp;"); break;
-        case '<': bw_text_add(out, "&lt;"); break;
-        case '>': bw_text_add(out, "&gt;"); break;
-        case '"': bw_text_add(out, "&quot;"); break;
-        case '\'': bw_text_add(out, "&#39;"); break;
-        default: report_encode(out, is_harmful(code) ? ' ' : code);
+        case '&':
+            bw_text_add(out, "&amp;");
+            break;
+        case '<':
+            bw_text_add(out, "&lt;");
+            break;
+        case '>':
+            bw_text_add(out, "&gt;");
+            break;
+        case '"':
+            bw_text_add(out, "&quot;");
+            break;
+        case '\'':
+            bw_text_add(out, "&#39;");
+            break;
+        default:
+            report_encode(out, is_harmful(code) ? ' ' : code);
         }
     }
 }
