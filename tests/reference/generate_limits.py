@@ -351,9 +351,10 @@ BESIDE_M2 = "0.01 0.1".split()
 MIDDLE_NM = ("250 303.5 304.5 305.5 306.5 307.5 308.5 309.5 310.5 311.5 312.5 313.5 314.5 350 425 500 650 800 1100 "
              "1175 1225 1300 1450 1650 2000 10000 500000").split()
 MIDDLE_S = "5e-12 2e-10 3e-8 1.5e-6 9e-6 3e-5 2e-4 0.02 1 20 500 5000 20000".split()
-SOURCE_NM = "425 500 650 800 1100 1300".split()
-SOURCE_S = "2e-10 1e-5 3e-3 0.1 1 10.02 12 20 50 99 500 5000 20000".split()
-SOURCE_MRAD = "3 7 30 60 250 1500".split()
+SOURCE_NM = "425 550 650 800 1300".split()
+SOURCE_S = "2e-10 1e-5 3e-3 0.1 20 50 500 20000".split()  # and beside BESIDE_SOURCE_S
+BESIDE_SOURCE_S = "625e-6 0.25 10 100 1e4".split()
+SOURCE_MRAD = "3 7 30 60 250 1565".split()
 AREA_NM = "1394 1406 1450 10000 200000".split()
 AREA_S = "5 9.96 10.04 1000 29000".split()
 
@@ -381,7 +382,7 @@ def edge_points(target):
         return
     for alpha in SOURCE_MRAD + beside(BESIDE_MRAD):
         for w in SOURCE_NM:
-            for t in SOURCE_S:
+            for t in SOURCE_S + beside(BESIDE_SOURCE_S):
                 yield w, t, alpha, "0"
 
 

@@ -19,6 +19,7 @@ Columns: what, rules, word, a, b, c, d, e, want. `none`: the rule set has nothin
   train    a = pulse [s], b = Ti [s], c = N, d = exposure [s], e = subtense [mrad]; the correction
   adds     word = target; a, b = wavelengths [nm]; 1 if their exposures add
   time     word = way of viewing; a, b = wavelengths [nm] (b = 0: one); c = 1 if it rests on the aversion response
+  prints   word = words that the printed rule set must show; 1
 """
 import itertools
 import sys
@@ -95,7 +96,7 @@ def correction(rules, pulse, ti, n, exposure, alpha):
 
 
 PULSES = "1e-7 5e-6 5.02e-6 1e-4 1e-3 0.01 0.1 0.249 0.251 1".split()
-COUNTS = "1 2 5 39 40 41 599 600 601 624 626 10000 1000000000".split()
+COUNTS = "1 2 5 39 40 40.2 41 599 600 600.5 601 624 626 10000 1000000000".split()
 EXPOSURES = "0.1 0.249 0.251 10 100".split()
 TRAIN_SOURCES = ["0"] + beside(["5", "100"]) + ["6", "25", "62", "64", "250"]
 
@@ -162,6 +163,9 @@ def rules_rows(writer):
                 row("applies", rules, effect, (w,), applies(rules, effect, mpf(w)))
         for alpha in SOURCES:
             row("count", rules, "-", (alpha,), "inf" if rules == "eu" else number(t2(mpf(alpha))))
+        if rules == "icnirp":  # at 0.01 m2, 10/A is 1000 W/m2 as for less skin: only the page shows where it begins
+            row("prints", rules, "0.01 .. 0.1 m2", (), "1")
+            row("prints", rules, "0.1 .. m2", (), "1")
         row("longest", rules, "-", (), "0.25" if rules == "iec" else "inf")
         for place, want in train_rows(rules):
             row("train", rules, "-", place, want)

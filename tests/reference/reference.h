@@ -45,8 +45,7 @@ struct reference_materials {
 };
 
 /* Opens a file of data behind its heading. NULL if there is none. */
-static inline FILE *reference_open(const char *path)
-{
+static inline FILE *reference_open(const char *path) {
     FILE *file = fopen(path, "r");
     if (file != NULL && fscanf(file, "%*[^\n]\n") != 0) {
         fclose(file);
@@ -56,8 +55,7 @@ static inline FILE *reference_open(const char *path)
 }
 
 /* Room for one more; the test ends where memory is short. */
-static inline void *reference_grow(void *items, size_t count, size_t size)
-{
+static inline void *reference_grow(void *items, size_t count, size_t size) {
     if ((count & (count - 1)) == 0)
         items = realloc(items, (count == 0 ? 1 : 2 * count) * size);
     if (items == NULL)
@@ -65,8 +63,7 @@ static inline void *reference_grow(void *items, size_t count, size_t size)
     return items;
 }
 
-static inline bool reference_effect(const char *name, enum bw_effect *effect)
-{
+static inline bool reference_effect(const char *name, enum bw_effect *effect) {
     static const enum bw_effect effects[] = {BW_RETINA_THERMAL, BW_RETINA_PHOTOCHEMICAL, BW_ULTRAVIOLET, BW_ANTERIOR,
                                              BW_SKIN_EFFECT};
     for (size_t i = 0; i < sizeof effects / sizeof effects[0]; i++)
@@ -77,20 +74,17 @@ static inline bool reference_effect(const char *name, enum bw_effect *effect)
     return false;
 }
 
-static inline double reference_number(const char *text)
-{
+static inline double reference_number(const char *text) {
     return strcmp(text, "none") == 0 || strcmp(text, "any") == 0 ? limits_nan : strtod(text, NULL);
 }
 
-static inline bool reference_same_place(const struct reference_point *a, const struct reference_point *b)
-{
+static inline bool reference_same_place(const struct reference_point *a, const struct reference_point *b) {
     return memcmp(&a->exposure, &b->exposure, sizeof a->exposure) == 0 && a->target == b->target &&
            strcmp(a->rules, b->rules) == 0;
 }
 
 /* limits_edges.csv: consecutive lines of the same exposure make one point. */
-static inline struct reference_points reference_read_points(const char *path)
-{
+static inline struct reference_points reference_read_points(const char *path) {
     struct reference_points points = {NULL, 0};
     struct reference_point point = {0};
     struct reference_want want = {0};
@@ -117,8 +111,7 @@ static inline struct reference_points reference_read_points(const char *path)
 }
 
 /* limits_rules.csv */
-static inline struct reference_rules reference_read_rules(const char *path)
-{
+static inline struct reference_rules reference_read_rules(const char *path) {
     struct reference_rules rules = {NULL, 0};
     struct reference_rule rule;
     char want[REFERENCE_NAME];
@@ -135,16 +128,15 @@ static inline struct reference_rules reference_read_rules(const char *path)
 }
 
 /* materials.csv */
-static inline struct reference_materials reference_read_materials(const char *path)
-{
+static inline struct reference_materials reference_read_materials(const char *path) {
     static const enum bw_finish finishes[] = {BW_MATT, BW_MIRROR, BW_GLOSS, BW_GLASS};
     struct reference_materials materials = {NULL, 0};
     struct bw_material material = {0};
     char finish[REFERENCE_NAME];
     FILE *file = reference_open(path);
-    while (file != NULL && fscanf(file, "%63[^,],%31[^,],%lf,%lf,%lf,%lf\n", material.name, finish,
-                                  &material.reflectance, &material.matt_reflectance, &material.transmittance,
-                                  &material.refractive_index) == 6) {
+    while (file != NULL &&
+           fscanf(file, "%63[^,],%31[^,],%lf,%lf,%lf,%lf\n", material.name, finish, &material.reflectance,
+                  &material.matt_reflectance, &material.transmittance, &material.refractive_index) == 6) {
         for (size_t i = 0; i < sizeof finishes / sizeof finishes[0]; i++)
             if (strcmp(bw_finish_name(finishes[i]), finish) == 0)
                 material.finish = finishes[i];
@@ -157,8 +149,7 @@ static inline struct reference_materials reference_read_materials(const char *pa
 }
 
 /* Equal to 1e-12 relative, an expected 0 or infinity exactly. NaN equals NaN only: `none`. */
-static inline bool reference_equal(double got, double want)
-{
+static inline bool reference_equal(double got, double want) {
     if (isnan(want))
         return isnan(got);
     if (isinf(want))
@@ -166,16 +157,14 @@ static inline bool reference_equal(double got, double want)
     return fabs(got - want) <= 1e-12 * fabs(want);
 }
 
-static inline bool reference_limit_holds(const struct bw_limit *got, const struct reference_want *want)
-{
+static inline bool reference_limit_holds(const struct bw_limit *got, const struct reference_want *want) {
     return got->effect == want->effect && reference_equal(got->radiant_exposure_j_m2, want->radiant_exposure_j_m2) &&
            reference_equal(got->aperture_m * 1e3, want->aperture_mm) &&
            (isnan(want->acceptance_mrad) || reference_equal(got->acceptance_rad * 1e3, want->acceptance_mrad));
 }
 
 /* The limit of an effect, if the set has it. */
-static inline const struct bw_limit *reference_find(const struct bw_limit_set *limits, enum bw_effect effect)
-{
+static inline const struct bw_limit *reference_find(const struct bw_limit_set *limits, enum bw_effect effect) {
     for (size_t i = 0; i < limits->count; i++)
         if (limits->limits[i].effect == effect)
             return &limits->limits[i];
@@ -184,8 +173,7 @@ static inline const struct bw_limit *reference_find(const struct bw_limit_set *l
 
 /* Does the rule set give exactly these limits? why (may be NULL): the first difference. */
 static inline bool reference_point_holds(const struct bw_table *table, const struct reference_point *point,
-                                         char why[REFERENCE_WHY])
-{
+                                         char why[REFERENCE_WHY]) {
     struct bw_limit_set limits;
     enum bw_status status = bw_limits(table, point->target, &point->exposure, &limits, NULL, NULL);
     bool holds = status == (point->count > 0 ? BW_OK : BW_OUT_OF_RANGE) && limits.count == point->count;
@@ -198,24 +186,21 @@ static inline bool reference_point_holds(const struct bw_table *table, const str
         if (!holds && why != NULL && got != NULL)
             snprintf(why, REFERENCE_WHY, "%s: %.15g J/m2, %.15g mm, %.15g mrad, want %.15g, %.15g, %.15g",
                      bw_effect_name(want->effect), got->radiant_exposure_j_m2, got->aperture_m * 1e3,
-                     got->acceptance_rad * 1e3, want->radiant_exposure_j_m2, want->aperture_mm,
-                     want->acceptance_mrad);
+                     got->acceptance_rad * 1e3, want->radiant_exposure_j_m2, want->aperture_mm, want->acceptance_mrad);
         else if (!holds && why != NULL)
             snprintf(why, REFERENCE_WHY, "no limit for %s", bw_effect_name(want->effect));
     }
     return holds;
 }
 
-static inline double reference_factor(const struct bw_table *table, const char *name, double x)
-{
+static inline double reference_factor(const struct bw_table *table, const char *name, double x) {
     for (size_t i = 0; i < table->factor_count; i++)
         if (strcmp(table->factors[i].name, name) == 0)
             return bw_limits_factor_at(table, (int)i, x, x);
     return limits_nan;
 }
 
-static inline double reference_time(const struct bw_table *table, const struct reference_rule *rule)
-{
+static inline double reference_time(const struct bw_table *table, const struct reference_rule *rule) {
     static const char *const names[] = {"glance", "diffuse", "skin", "alignment", "working-day"};
     static const enum bw_viewing viewings[] = {BW_GLANCE, BW_DIFFUSE, BW_SKIN_TIME, BW_ALIGNMENT, BW_WORKING_DAY};
     const double wavelengths_nm[] = {rule->a, rule->b};
@@ -230,9 +215,15 @@ static inline double reference_time(const struct bw_table *table, const struct r
     return limits_nan;
 }
 
+static inline double reference_prints(const struct bw_table *table, const char *words) {
+    struct bw_text text = {0};
+    double found = bw_table_print(table, &text) == BW_OK && strstr(text.data, words) != NULL ? 1.0 : 0.0;
+    bw_text_free(&text);
+    return found;
+}
+
 /* What the rule set says; NAN if it has nothing there. */
-static inline double reference_rule_value(const struct bw_table *table, const struct reference_rule *rule)
-{
+static inline double reference_rule_value(const struct bw_table *table, const struct reference_rule *rule) {
     enum bw_effect effect;
     double ti_s;
     if (strcmp(rule->what, "factor") == 0)
@@ -252,16 +243,16 @@ static inline double reference_rule_value(const struct bw_table *table, const st
         return bw_limits_add(table, strcmp(rule->word, "eye") == 0 ? BW_EYE : BW_SKIN, rule->a, rule->b) ? 1.0 : 0.0;
     if (strcmp(rule->what, "time") == 0)
         return reference_time(table, rule);
+    if (strcmp(rule->what, "prints") == 0)
+        return reference_prints(table, rule->word);
     return limits_infinity; /* an unknown word must not pass as `none` */
 }
 
-static inline bool reference_rule_holds(const struct bw_table *table, const struct reference_rule *rule)
-{
+static inline bool reference_rule_holds(const struct bw_table *table, const struct reference_rule *rule) {
     return reference_equal(reference_rule_value(table, rule), rule->want);
 }
 
-static inline bool reference_material_holds(const struct bw_material *got, const struct bw_material *want)
-{
+static inline bool reference_material_holds(const struct bw_material *got, const struct bw_material *want) {
     return strcmp(got->name, want->name) == 0 && got->finish == want->finish &&
            reference_equal(got->reflectance, want->reflectance) &&
            reference_equal(got->matt_reflectance, want->matt_reflectance) &&

@@ -15,8 +15,7 @@ struct group {
     const struct reference_points *points;
 };
 
-static void test_group(void **state)
-{
+static void test_group(void **state) {
     const struct group *group = *state;
     const struct bw_table *table = bw_tables_find(group->rules);
     size_t checked = 0, failed = 0;
@@ -38,8 +37,7 @@ static void test_group(void **state)
         fail_msg("%zu of %zu places differ", failed, checked);
 }
 
-int main(void)
-{
+int main(void) {
     static struct reference_points points;
     static struct group groups[] = {
         {"icnirp-2013", BW_EYE, &points},      {"icnirp-2013", BW_SKIN, &points},

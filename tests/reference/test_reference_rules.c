@@ -14,8 +14,7 @@ struct group {
     const struct reference_rules *all;
 };
 
-static void test_group(void **state)
-{
+static void test_group(void **state) {
     const struct group *group = *state;
     const struct bw_table *table = bw_tables_find(group->rules);
     size_t checked = 0, failed = 0;
@@ -37,8 +36,7 @@ static void test_group(void **state)
         fail_msg("%zu of %zu values differ", failed, checked);
 }
 
-static void test_materials(void **state)
-{
+static void test_materials(void **state) {
     struct reference_materials wants = reference_read_materials("tests/reference/materials.csv");
     size_t failed = 0;
     (void)state;
@@ -54,21 +52,22 @@ static void test_materials(void **state)
     assert_int_equal(failed, 0);
 }
 
-int main(void)
-{
+int main(void) {
     static const char *const rules[] = {"icnirp-2013", "iec-60825-1-2014", "eu-2006-25", "ansi-z136-1-2014"};
     static const char *const whats[] = {"factor", "ti", "applies", "count", "longest", "train", "adds", "time"};
-    enum { RULES = 4, WHATS = 8, COUNT = RULES * WHATS + 1 };
+    enum { RULES = 4, WHATS = 8, COUNT = RULES * WHATS + 2 };
     static struct reference_rules all;
     static struct group groups[COUNT];
     static char titles[COUNT][64];
     static struct CMUnitTest tests[COUNT];
     all = reference_read_rules("tests/reference/limits_rules.csv");
-    for (size_t i = 0; i + 1 < COUNT; i++) {
+    for (size_t i = 0; i + 2 < COUNT; i++) {
         groups[i] = (struct group){rules[i / WHATS], whats[i % WHATS], &all};
         snprintf(titles[i], sizeof titles[i], "%s %s", groups[i].rules, groups[i].what);
         tests[i] = (struct CMUnitTest){titles[i], test_group, NULL, NULL, &groups[i]};
     }
+    groups[COUNT - 2] = (struct group){"icnirp-2013", "prints", &all}; /* the only set with an area rule */
+    tests[COUNT - 2] = (struct CMUnitTest){"icnirp-2013 prints", test_group, NULL, NULL, &groups[COUNT - 2]};
     tests[COUNT - 1] = (struct CMUnitTest){"materials", test_materials, NULL, NULL, NULL};
     int failed = cmocka_run_group_tests_name("rules against mpmath", tests, NULL, NULL);
     free(all.items);
