@@ -26,7 +26,8 @@ archives_from = $(foreach m,$(call floors_from,$(1),$(MODULES)),$(call archive,$
 PROGRAM = $(BUILD)/beamward
 UNIT_TESTS = $(patsubst tests/unit/%.c,$(BUILD)/tests/unit/%,$(wildcard tests/unit/test_*.c))
 PUBLISHED_TESTS = $(patsubst tests/published/%.c,$(BUILD)/tests/published/%,$(wildcard tests/published/test_*.c))
-FILE_TESTS = $(patsubst tests/%.c,$(BUILD)/tests/%,$(wildcard tests/reference/test_*.c tests/bad_cases/test_*.c tests/cli/test_*.c))
+FILE_TESTS = $(patsubst tests/%.c,$(BUILD)/tests/%,$(wildcard tests/reference/test_*.c tests/mutation/test_*.c \
+                                                              tests/bad_cases/test_*.c tests/cli/test_*.c))
 TESTS = $(UNIT_TESTS) $(PUBLISHED_TESTS) $(FILE_TESTS)
 
 .PHONY: all demo test tests run-tests check clang sanitize demo-run packages-build packages-test packages-check clean help
