@@ -123,7 +123,7 @@ $(foreach m,$(MODULES),$(eval $(call module_rule,$(m))))
 # The tables: a host program checks them and writes them out as C.
 TABLEC = $(BUILD)/tablec
 TABLEC_PARTS = tablec table_read table_read_rows table_read_rules table_cells table_check table_check_parts \
-               table_check_train table_index material_read formulas names memory table_facts
+               table_check_train table_index table_plan material_read formulas names memory table_facts
 $(TABLEC): $(TABLEC_PARTS:%=$(BUILD)/obj/limits/%.o) $(call archive,base)
 	$(SAY)$(CC) $(CFLAGS) $^ -liniparser -lm -o $@
 $(BUILD)/generated/tables_data.c: $(TABLEC) $(RULE_SETS)

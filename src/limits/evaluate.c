@@ -10,14 +10,42 @@
  * Source-size rows of IEC stop at CE = alpha_max/alpha_min, and the exposure is measured within alpha_max. */
 #include "evaluate.h"
 
+#include "plan.h"
+
 #include <math.h>
-#include <string.h>
+
+/* The laws of the limits all at once: two square roots cost less than a guess which one a row wants. */
+static void raise_time(struct query *query) {
+    double half = sqrt(query->time_s), quarter = sqrt(half);
+    query->time_powers[POWER_0] = 1.0;
+    query->time_powers[POWER_1_4] = quarter;
+    query->time_powers[POWER_1_2] = half;
+    query->time_powers[POWER_3_4] = half * quarter;
+    query->time_powers[POWER_1] = query->time_s;
+}
+
+static double time_power(const struct query *query, const struct power *power) {
+    if (power->law == POWER_ANY || power->law == POWER_3_8) /* rare */
+        return bw_limits_raise(query->time_s, power);
+    double value = query->time_powers[power->law];
+    return power->inverse ? 1.0 / value : value;
+}
+
+/* Nearly every factor stands in its first power. */
+static inline double raise(double value, const struct power *power) {
+    return power->law == POWER_1 && !power->inverse ? value : bw_limits_raise(value, power);
+}
+
+static double size_at(const struct query *query, const struct size_row *row) {
+    return row->value * time_power(query, &row->time_power);
+}
 
 /* CE of this source and time (1 if not larger than alpha_min). */
-static double source_size_factor(const struct query *query, double *alpha_max_mrad) {
+static double source_size_factor(const struct query *query, const struct held_row *held, double *alpha_max_mrad) {
     const struct source_size *size = &query->table->source_size;
     double alpha = query->subtense_mrad, smallest = size->alpha_min_mrad;
-    *alpha_max_mrad = bw_limits_alpha_max_mrad(query->table, query->time_s);
+    *alpha_max_mrad = held->alpha_max != NO_ROW ? size_at(query, &size->rows[held->alpha_max])
+                                                : bw_limits_alpha_max_mrad(query->table, query->time_s);
     if (alpha <= smallest)
         return 1.0;
     if (alpha <= *alpha_max_mrad)
@@ -27,23 +55,34 @@ static double source_size_factor(const struct query *query, double *alpha_max_mr
     return alpha * alpha / (smallest * *alpha_max_mrad);
 }
 
+/* A factor that the table prints. held_row: the one row of it that holds here, or NO_ROW. */
+static double printed_factor(const struct query *query, const struct factor_use *use, unsigned short held_row,
+                             const struct factor_row **row) {
+    if (held_row == NO_ROW) {
+        bool by_subtense = query->table->factors[use->factor].argument == BY_SUBTENSE_MRAD;
+        return bw_limits_factor(query->table, use->factor, by_subtense ? query->subtense_mrad : query->wavelength_nm,
+                                &use->power, row);
+    }
+    *row = &query->table->factor_rows[held_row];
+    return raise(bw_limits_factor_row(*row, query->wavelength_nm), &use->power);
+}
+
 /* One factor of a row, with its exponent applied. */
-static double use_factor(const struct query *query, const struct factor_use *use, struct bw_limit *limit,
+static double use_factor(const struct query *query, const struct held_row *held, size_t index, struct bw_limit *limit,
                          struct product_text *text) {
+    const struct factor_use *use = &query->table->rows[held->row].uses[index];
     const struct factor_row *row = NULL;
     double value, alpha_max_mrad;
     if (use->factor == USE_CE) {
-        value = bw_limits_raise(source_size_factor(query, &alpha_max_mrad), &use->power);
+        value = raise(source_size_factor(query, held, &alpha_max_mrad), &use->power);
         if (query->table->source_size.beyond == BEYOND_ACCEPTANCE)
             limit->acceptance_rad = alpha_max_mrad * 1e-3;
         if (query->working != NULL)
             bw_working_ce(query, value, alpha_max_mrad);
     } else if (use->factor == USE_AREA) {
-        value = bw_limits_raise(query->area_m2, &use->power);
+        value = raise(query->area_m2, &use->power);
     } else {
-        bool by_subtense = query->table->factors[use->factor].argument == BY_SUBTENSE_MRAD;
-        value = bw_limits_factor(query->table, use->factor, by_subtense ? query->subtense_mrad : query->wavelength_nm,
-                                 &use->power, &row);
+        value = printed_factor(query, use, held->factor_rows[index], &row);
     }
     if (query->working != NULL)
         bw_working_factor(query, use, row, value, text);
@@ -52,14 +91,18 @@ static double use_factor(const struct query *query, const struct factor_use *use
 }
 
 /* The measuring cone of the photochemical limit [mrad]; where rows meet, the larger, which gives the lower limit. */
-static double cone_mrad(const struct query *query, const struct size_row **row) {
+static double cone_mrad(const struct query *query, const struct held_row *held, const struct size_row **row) {
     double gamma = 0.0;
+    if (held->cone != NO_ROW) {
+        *row = &query->table->cones[held->cone];
+        return size_at(query, *row);
+    }
     for (size_t i = 0; i < query->table->cone_count; i++) {
         const struct size_row *cone = &query->table->cones[i];
         struct span times = {cone->from.value_s, cone->to.value_s, false, false};
         if (!bw_limits_in_span(&cone->wavelength_nm, query->wavelength_nm) || !bw_limits_in_span(&times, query->time_s))
             continue;
-        double angle = bw_limits_size(cone, query->time_s);
+        double angle = size_at(query, cone);
         if (angle > gamma) {
             gamma = angle;
             *row = cone;
@@ -79,8 +122,8 @@ static double wide_source_factor(const struct query *query, const struct size_ro
     return value;
 }
 
-/* The smallest aperture of the effect's rows here [m]. */
-static double aperture_m(const struct query *query, enum bw_effect effect) {
+/* The smallest aperture of the effect's rows here. */
+static const struct size_row *find_aperture(const struct query *query, enum bw_effect effect) {
     const struct size_row *smallest_row = NULL;
     double smallest_mm = limits_infinity;
     for (size_t i = 0; i < query->table->aperture_count; i++) {
@@ -90,35 +133,45 @@ static double aperture_m(const struct query *query, enum bw_effect effect) {
         struct span times = {row->from.value_s, row->to.value_s, false, false};
         if (!bw_limits_in_span(&times, query->time_s))
             continue;
-        double mm = bw_limits_size(row, query->time_s);
+        double mm = size_at(query, row);
         if (mm < smallest_mm) {
             smallest_mm = mm;
             smallest_row = row;
         }
     }
-    if (query->working != NULL)
-        bw_working_aperture(query, smallest_row, smallest_mm);
-    return smallest_mm * 1e-3;
+    return smallest_row;
 }
 
-static bool row_holds(const struct query *query, const struct limit_row *row) {
-    if (!bw_limits_in_span(&row->wavelength_nm, query->wavelength_nm))
-        return false;
+static double aperture_m(const struct query *query, const struct held_row *held, enum bw_effect effect) {
+    const struct size_row *row =
+        held->aperture != NO_ROW ? &query->table->apertures[held->aperture] : find_aperture(query, effect);
+    double mm = row != NULL ? size_at(query, row) : limits_infinity;
+    if (query->working != NULL)
+        bw_working_aperture(query, row, mm);
+    return mm * 1e-3;
+}
+
+/* What the plan left open: the source, and edges that depend on the wavelength or the source. */
+static inline bool holds(const struct query *query, const struct held_row *held) {
+    const struct limit_row *row = &query->table->rows[held->row];
     const struct limit_section *section = &query->table->sections[row->section];
-    if (!bw_limits_in_span(&section->subtense_mrad, query->subtense_mrad) ||
-        !bw_limits_in_span(&section->area_m2, query->area_m2))
+    if ((held->asks & ASKS_SOURCE) && !(bw_limits_in_span(&section->subtense_mrad, query->subtense_mrad) &&
+                                        bw_limits_in_span(&section->area_m2, query->area_m2)))
         return false;
+    if (!(held->asks & ASKS_EDGES))
+        return true;
     struct span times = {bw_limits_edge_s(query->table, &row->from, query->wavelength_nm, query->subtense_mrad),
                          bw_limits_edge_s(query->table, &row->to, query->wavelength_nm, query->subtense_mrad), false,
                          false};
     return bw_limits_in_span(&times, query->time_s);
 }
 
-static void evaluate_row(const struct query *query, const struct limit_row *row, struct bw_limit *limit) {
+static void evaluate_row(const struct query *query, const struct held_row *held, struct bw_limit *limit) {
+    const struct limit_row *row = &query->table->rows[held->row];
     const struct limit_section *section = &query->table->sections[row->section];
     struct product_text text;
     const struct size_row *cone = NULL;
-    double gamma_mrad = section->effect == BW_RETINA_PHOTOCHEMICAL ? cone_mrad(query, &cone) : 0.0;
+    double gamma_mrad = section->effect == BW_RETINA_PHOTOCHEMICAL ? cone_mrad(query, held, &cone) : 0.0;
     bool radiance = row->quantity == QUANTITY_G || row->quantity == QUANTITY_L;
     limit->effect = section->effect;
     limit->source =
@@ -131,48 +184,37 @@ static void evaluate_row(const struct query *query, const struct limit_row *row,
     double product = row->value;
     if (radiance)
         product *= bw_pi / 4.0 * (gamma_mrad * 1e-3) * (gamma_mrad * 1e-3);
-    product *= bw_limits_raise(query->time_s, &row->time_power);
+    product *= time_power(query, &row->time_power);
     for (size_t i = 0; i < row->use_count; i++)
-        product *= use_factor(query, &row->uses[i], limit, &text);
+        product *= use_factor(query, held, i, limit, &text);
     product *= wide_source_factor(query, cone, gamma_mrad, limit, &text);
     limit->irradiance_w_m2 = limit->printed_as_irradiance ? product : product / query->time_s;
     limit->radiant_exposure_j_m2 = limit->printed_as_irradiance ? product * query->time_s : product;
     if (query->working != NULL)
         bw_working_limit(query, row, limit, &text);
-    limit->aperture_m = aperture_m(query, section->effect);
+    limit->aperture_m = aperture_m(query, held, section->effect);
     if (query->working != NULL && limit->acceptance_rad < limits_infinity)
         bw_working_acceptance(query, limit->acceptance_rad * 1e3);
 }
 
-/* The rows that may hold here. */
-static const struct band *find_band(const struct band_index *index, double wavelength_nm) {
-    size_t low = 0, high = index->count;
-    if (high == 0)
-        return NULL;
-    while (high - low > 1) {
-        size_t middle = low + (high - low) / 2;
-        if (wavelength_nm >= index->bands[middle].low_nm)
-            low = middle;
-        else
-            high = middle;
+/* Every row of the cell in its order, which is that of the effects: of each effect the lowest stays. */
+static void evaluate_cell(const struct query *query, const struct plan *plan, const struct cell *cell,
+                          struct bw_limit_set *limits) {
+    struct bw_limit rival;
+    for (size_t i = cell->first; i < cell->first + cell->count; i++) {
+        const struct held_row *held = &plan->held[i];
+        const struct limit_row *row = &query->table->rows[held->row];
+        if (held->asks != ASKS_NOTHING && !holds(query, held))
+            continue;
+        struct bw_limit *last = limits->count > 0 ? &limits->limits[limits->count - 1] : NULL;
+        if (last == NULL || last->effect != query->table->sections[row->section].effect) {
+            evaluate_row(query, held, &limits->limits[limits->count++]);
+            continue;
+        }
+        evaluate_row(query, held, &rival);
+        if (!(last->radiant_exposure_j_m2 <= rival.radiant_exposure_j_m2))
+            *last = rival;
     }
-    return &index->bands[low];
-}
-
-/* Keeps the lowest limit of each effect, in the order of the effects. */
-static void keep_lowest(struct bw_limit_set *limits, const struct bw_limit *limit) {
-    size_t at = 0;
-    while (at < limits->count && limits->limits[at].effect < limit->effect)
-        at++;
-    if (at < limits->count && limits->limits[at].effect == limit->effect) {
-        if (!(limits->limits[at].radiant_exposure_j_m2 <= limit->radiant_exposure_j_m2))
-            limits->limits[at] = *limit;
-        return;
-    }
-    for (size_t i = limits->count; i > at; i--)
-        limits->limits[i] = limits->limits[i - 1];
-    limits->limits[at] = *limit;
-    limits->count++;
 }
 
 static enum bw_status check_arguments(const struct bw_table *table, const struct bw_exposure *exposure,
@@ -228,24 +270,21 @@ static enum bw_status no_row(const struct query *query, struct bw_error *error) 
 
 enum bw_status bw_limits(const struct bw_table *table, enum bw_target target, const struct bw_exposure *exposure,
                          struct bw_limit_set *limits, struct bw_working *working, struct bw_error *error) {
-    struct bw_limit limit;
     limits->count = limits->governing = 0;
     limits->limits[0].radiant_exposure_j_m2 = limits->limits[0].irradiance_w_m2 = limits_nan;
     enum bw_status status = check_arguments(table, exposure, error);
     if (status != BW_OK)
         return status;
-    struct query query = {
-        table,  target, exposure->wavelength_nm, exposure->exposure_s, exposure->subtense_rad * 1e3, exposure->area_m2,
-        working};
-    const struct band_index *index = &table->index[target];
-    const struct band *band = find_band(index, query.wavelength_nm);
-    for (size_t i = 0; band != NULL && i < band->count; i++) {
-        const struct limit_row *row = &table->rows[index->rows[band->first + i]];
-        if (!row_holds(&query, row))
-            continue;
-        evaluate_row(&query, row, &limit);
-        keep_lowest(limits, &limit);
-    }
+    const struct plan *plan = &table->plan[target];
+    struct query query = {.table = table,
+                          .target = target,
+                          .wavelength_nm = exposure->wavelength_nm,
+                          .time_s = exposure->exposure_s,
+                          .subtense_mrad = exposure->subtense_rad * 1e3,
+                          .area_m2 = exposure->area_m2,
+                          .working = working};
+    raise_time(&query);
+    evaluate_cell(&query, plan, &plan->cells[cell_at(plan, query.wavelength_nm, query.time_s)], limits);
     if (limits->count == 0)
         return no_row(&query, error);
     for (size_t i = 1; i < limits->count; i++)

@@ -4,15 +4,6 @@
 
 #include <math.h>
 
-bool bw_limits_in_span(const struct span *span, double x) {
-    /* An open edge decides for the stricter neighbour (`303 .. <304` holds just below 304); `>0.25` begins where the
-     * number is no longer 0.25 but for rounding. */
-    bool above =
-        span->open_low ? x > span->low * (1.0 + limits_edge_rounding) : x >= span->low * (1.0 - limits_edge_rounding);
-    bool below = span->open_high ? x < span->high : x <= span->high * (1.0 + limits_edge_rounding);
-    return above && below;
-}
-
 struct power bw_limits_power_of(double exponent) {
     static const struct {
         double exponent;
@@ -56,10 +47,12 @@ double bw_limits_raise(double base, const struct power *power) {
     return power->inverse ? 1.0 / result : result;
 }
 
-static double factor_row_value(const struct factor_row *row, double x) {
+double bw_limits_factor_row(const struct factor_row *row, double x) {
+    static const double log2_of_10 =
+        3.321928094887362347870319429489390175865; /* exp2() takes a third of pow()'s time */
     if (row->constant)
         return row->offset + row->scale;
-    return row->offset + row->scale * pow(10.0, row->slope * (x - row->origin));
+    return row->offset + row->scale * exp2(log2_of_10 * (row->slope * (x - row->origin)));
 }
 
 double bw_limits_factor(const struct bw_table *table, int factor, double x, const struct power *power,
@@ -70,7 +63,7 @@ double bw_limits_factor(const struct bw_table *table, int factor, double x, cons
         const struct factor_row *candidate = &table->factor_rows[i];
         if (!bw_limits_in_span(&candidate->argument, x))
             continue;
-        double value = bw_limits_raise(factor_row_value(candidate, x), power);
+        double value = bw_limits_raise(bw_limits_factor_row(candidate, x), power);
         if (!(value >= lowest)) {
             lowest = value;
             if (row != NULL)

@@ -33,6 +33,7 @@ struct span {
 
 /* An exponent, with the law that the evaluator may use instead of pow(). */
 enum power_law { POWER_ANY, POWER_0, POWER_1_4, POWER_3_8, POWER_1_2, POWER_3_4, POWER_1 };
+enum { POWER_LAWS = 7 };
 struct power {
     double exponent;
     enum power_law law; /* of the exponent's magnitude */
@@ -170,7 +171,7 @@ struct time_row {
     struct row_note note;
 };
 
-/* Rows that may hold from this wavelength to the next band's: a hint, the rows decide. */
+/* Rows that touch this band of wavelengths. */
 struct band {
     double low_nm, high_nm;
     size_t first, count; /* in band_index.rows */
@@ -180,6 +181,37 @@ struct band_index {
     size_t count;
     const unsigned short *rows; /* indices into bw_table.rows */
     size_t rows_count;
+};
+
+/* Ascending cuts divide the numbers into zones: zone 0 lies below the first cut, zone k from cut k - 1 up to cut k. */
+struct cuts {
+    const double *at;
+    size_t count;
+    const unsigned short *first; /* where to begin the search, by the leading bits of the number; see plan.h */
+    size_t shift, lowest_key, key_count;
+};
+
+/* A row that holds in a whole cell, and the one row of each kind that goes with it there. */
+enum { NO_ROW = 0xffff }; /* none, or several that have to be compared */
+struct held_row {
+    unsigned short row;                       /* in bw_table.rows */
+    unsigned short aperture, cone, alpha_max; /* in their lists */
+    unsigned short factor_rows[ROW_USES_MAX]; /* in bw_table.factor_rows, of each use */
+    unsigned short asks;                      /* what is still to be asked: ASKS_... */
+};
+enum { ASKS_NOTHING = 0, ASKS_SOURCE = 1, ASKS_EDGES = 2 }; /* the subtense and area; symbolic edges */
+struct cell { /* ascending by effect, then by row */
+    unsigned first, count; /* in plan.held */
+};
+
+/* The rows that hold in each zone of wavelength and time. Cells that hold the same rows are one. Cell 0 is empty. */
+struct plan {
+    struct cuts wavelengths, times;
+    const unsigned *cell_of; /* [wavelength zone][time zone] */
+    const struct cell *cells;
+    size_t cell_count;
+    const struct held_row *held;
+    size_t held_count;
 };
 
 struct bw_table {
@@ -196,6 +228,7 @@ struct bw_table {
     const struct limit_row *rows;
     size_t row_count;
     struct band_index index[2]; /* by enum bw_target */
+    struct plan plan[2];        /* by enum bw_target */
     const struct size_row *apertures;
     size_t aperture_count;
     const struct size_row *cones;
@@ -218,10 +251,19 @@ extern const size_t bw_limits_built_in_material_count;
 
 /* ---- formulas.c: what a row says at one place ------------------------------------------------- */
 
-/* Within the span, its edges to within rounding. NaN is never inside. */
-bool bw_limits_in_span(const struct span *span, double x);
+/* Within the span, its edges to within rounding. NaN is never inside.
+ * An open edge decides for the stricter neighbour (`303 .. <304` holds just below 304); `>0.25` begins where the
+ * number is no longer 0.25 but for rounding. */
+static inline bool bw_limits_in_span(const struct span *span, double x) {
+    bool above =
+        span->open_low ? x > span->low * (1.0 + limits_edge_rounding) : x >= span->low * (1.0 - limits_edge_rounding);
+    bool below = span->open_high ? x < span->high : x <= span->high * (1.0 + limits_edge_rounding);
+    return above && below;
+}
 struct power bw_limits_power_of(double exponent);
 double bw_limits_raise(double base, const struct power *power);
+/* offset + scale * 10^(slope * (x - origin)) */
+double bw_limits_factor_row(const struct factor_row *row, double x);
 /* The lowest value^power of the factor's rows at x; NAN if no row holds. row (may be NULL): the row that gave it. */
 double bw_limits_factor(const struct bw_table *table, int factor, double x, const struct power *power,
                         const struct factor_row **row);
@@ -257,6 +299,8 @@ void bw_limits_memory_free(struct memory *memory);
 
 /* table_index.c. Returns: false if memory is short. */
 bool bw_limits_index(struct bw_table *table, struct memory *memory);
+/* table_plan.c. Returns: false if memory is short. */
+bool bw_limits_plan(struct bw_table *table, struct memory *memory);
 /* table_check.c: gaps, overlaps and missing parts. */
 void bw_limits_check(const struct bw_table *table, struct bw_faults *faults);
 /* material_read.c. Returned: materials, to be freed by the caller. */

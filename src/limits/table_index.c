@@ -1,5 +1,5 @@
-/* The rows sorted by wavelength: between two neighbouring edges the same rows hold, so the evaluator looks at a
- * handful of rows instead of all. The index is a hint; the evaluator still asks each row. */
+/* The rows sorted by wavelength: between two neighbouring edges the same rows hold. For the checker and for what a
+ * table tells of itself; the evaluator has the plan (table_plan.c). */
 #include "internal.h"
 
 #include <limits.h>

@@ -263,7 +263,8 @@ static enum bw_status fill(struct reading *reading, struct bw_error *error) {
     if (!reading->no_memory)
         read_sections(reading);
     if (!reading->no_memory && reading->faults->count == faults_before)
-        reading->no_memory = !bw_limits_index(reading->table, reading->memory);
+        reading->no_memory = !(bw_limits_index(reading->table, reading->memory) &&
+                               bw_limits_plan(reading->table, reading->memory));
     if (reading->no_memory || reading->faults->out_of_memory)
         return bw_error_set(error, BW_NO_MEMORY, "out of memory while reading a rule set");
     if (reading->faults->count == faults_before)

@@ -279,6 +279,59 @@ static void write_index(FILE *out, size_t n, const char *bands, const char *rows
     fputs(" 0};\n", out);
 }
 
+static void write_cuts(FILE *out, size_t n, const char *target, const char *name, const struct cuts *cuts) {
+    fprintf(out, "static const double t%zu_%s_%s[%zu] = {", n, target, name, cuts->count + 1);
+    for (size_t i = 0; i < cuts->count; i++) {
+        fputs(i % 4 == 0 ? "\n    " : " ", out);
+        put_number(out, cuts->at[i]);
+        fputc(',', out);
+    }
+    fprintf(out, " 0};\nstatic const unsigned short t%zu_%s_%s_first[%zu] = {", n, target, name, cuts->key_count);
+    for (size_t i = 0; i < cuts->key_count; i++)
+        fprintf(out, "%s%u,", i % 20 == 0 ? "\n    " : " ", (unsigned)cuts->first[i]);
+    fputs("};\n", out);
+}
+
+static void write_held(FILE *out, size_t n, const char *target, const struct plan *plan) {
+    fprintf(out, "static const struct held_row t%zu_%s_held[%zu] = {\n", n, target, plan->held_count + 1);
+    for (size_t i = 0; i < plan->held_count; i++) {
+        const struct held_row *held = &plan->held[i];
+        fprintf(out, "    {%u, %u, %u, %u, {", held->row, held->aperture, held->cone, held->alpha_max);
+        for (size_t j = 0; j < ROW_USES_MAX; j++)
+            fprintf(out, "%s%u", j == 0 ? "" : ", ", held->factor_rows[j]);
+        fprintf(out, "}, %u},\n", held->asks);
+    }
+    fputs("    {0}};\n", out);
+}
+
+static void write_plan(FILE *out, size_t n, const char *target, const struct plan *plan) {
+    size_t zones = (plan->wavelengths.count + 1) * (plan->times.count + 1);
+    write_cuts(out, n, target, "wavelengths", &plan->wavelengths);
+    write_cuts(out, n, target, "times", &plan->times);
+    fprintf(out, "static const unsigned t%zu_%s_cell_of[%zu] = {", n, target, zones);
+    for (size_t i = 0; i < zones; i++)
+        fprintf(out, "%s%u,", i % 20 == 0 ? "\n    " : " ", plan->cell_of[i]);
+    fprintf(out, "};\nstatic const struct cell t%zu_%s_cells[%zu] = {", n, target, plan->cell_count);
+    for (size_t i = 0; i < plan->cell_count; i++)
+        fprintf(out, "%s{%u, %u},", i % 8 == 0 ? "\n    " : " ", plan->cells[i].first, plan->cells[i].count);
+    fputs("};\n", out);
+    write_held(out, n, target, plan);
+}
+
+static void write_plan_head(FILE *out, size_t n, const char *target, const struct plan *plan) {
+    const struct {
+        const char *name;
+        const struct cuts *cuts;
+    } both[] = {{"wavelengths", &plan->wavelengths}, {"times", &plan->times}};
+    fputc('{', out);
+    for (size_t i = 0; i < 2; i++)
+        fprintf(out, "{t%zu_%s_%s, %zu, t%zu_%s_%s_first, %zu, %zu, %zu}, ", n, target, both[i].name,
+                both[i].cuts->count, n, target, both[i].name, both[i].cuts->shift, both[i].cuts->lowest_key,
+                both[i].cuts->key_count);
+    fprintf(out, "t%zu_%s_cell_of, t%zu_%s_cells, %zu, t%zu_%s_held, %zu}", n, target, n, target, plan->cell_count, n,
+            target, plan->held_count);
+}
+
 /* ---- writing a table -------------------------------------------------------------------------- */
 
 static void write_arrays(FILE *out, size_t n, const struct bw_table *table) {
@@ -302,6 +355,8 @@ static void write_arrays(FILE *out, size_t n, const struct bw_table *table) {
     write_sums_and_times(out, n, table);
     write_index(out, n, "eye_bands", "eye_rows", &table->index[BW_EYE]);
     write_index(out, n, "skin_bands", "skin_rows", &table->index[BW_SKIN]);
+    write_plan(out, n, "eye", &table->plan[BW_EYE]);
+    write_plan(out, n, "skin", &table->plan[BW_SKIN]);
 }
 
 static void write_source_size(FILE *out, size_t n, const struct source_size *size) {
@@ -358,6 +413,11 @@ static void write_table(FILE *out, size_t n, const struct bw_table *table) {
             "    .index = {{t%zu_eye_bands, %zu, t%zu_eye_rows, %zu}, {t%zu_skin_bands, %zu, t%zu_skin_rows, %zu}},\n",
             n, table->index[BW_EYE].count, n, table->index[BW_EYE].rows_count, n, table->index[BW_SKIN].count, n,
             table->index[BW_SKIN].rows_count);
+    fputs("    .plan = {", out);
+    write_plan_head(out, n, "eye", &table->plan[BW_EYE]);
+    comma(out);
+    write_plan_head(out, n, "skin", &table->plan[BW_SKIN]);
+    fputs("},\n", out);
     fputs("    .memory = NULL,\n};\n\n", out);
 }
 
