@@ -11,10 +11,11 @@ static const char default_rules[] = "iec-60825-1-2014";
 
 static void read_rules(struct reading *reading, const struct section *section) {
     struct bw_case *the_case = reading->the_case;
-    enum presence presence = value_text(reading, section, "rules", the_case->rules, sizeof the_case->rules);
-    the_case->rules_given = presence == GIVEN;
-    if (presence != GIVEN)
+    char rules[BW_NAME_SIZE];
+    the_case->rules_given = value_text(reading, section, "rules", rules, sizeof rules) == GIVEN;
+    if (!the_case->rules_given)
         return;
+    snprintf(the_case->rules, sizeof the_case->rules, "%s", rules);
     /* Whether there is such a rule set is for the caller to say: --rules and --tables may bring another. */
     if (the_case->rules[strspn(the_case->rules, "abcdefghijklmnopqrstuvwxyz0123456789-")] != '\0')
         fault_key(reading, value_entry(section, "rules", NULL),

@@ -4,7 +4,7 @@
 #include <math.h>
 #include <stdlib.h>
 
-static const double on_outline_m = 0.001; /* plans are measured to a millimetre at best */
+static const double on_outline_m = 0.001 + 1e-9; /* plans are measured to a millimetre at best; and arithmetic */
 static const double least_area_m2 = 0.01;
 static const double cells_most = 4e6; /* what room takes */
 
