@@ -84,12 +84,16 @@ struct world {
     unsigned long rays, places;
 };
 
-/* The surfaces and the outline. An opening adds light to the map (it reflects or passes), never takes any: rays know
- * only the wall. */
+/* Surfaces, openings (a door may be shut, a window is of glass), and last the outline, which they lie in or on: of two
+ * walls at one place the first is met. */
 static void build_world(struct world *world) {
     const struct bw_room *room = &world->plan->room;
     for (size_t i = 0; i < room->surface_count; i++)
         world->walls[world->count++] = (struct wall){room->surfaces[i].segment, room->surfaces[i].material};
+    for (size_t i = 0; i < room->opening_count; i++)
+        world->walls[world->count++] =
+            (struct wall){room->openings[i].segment, room->openings[i].kind == BW_DOOR ? material(BW_MATT, 1, 0)
+                                                                                       : material(BW_GLASS, 0, 0)};
     for (size_t i = 0; i < room->outline.count; i++)
         world->walls[world->count++] = (struct wall){
             {room->outline.points[i], room->outline.points[(i + 1) % room->outline.count]}, room->walls};
@@ -167,7 +171,7 @@ static void follow(struct world *world, uint64_t *state, struct bw_point at, dou
         const struct wall *wall = NULL;
         for (size_t i = 0; i < world->count; i++) {
             double t = hit(at, dx, dy, world->walls[i].segment);
-            if (t < nearest) {
+            if (t < nearest - 1e-9) {
                 nearest = t;
                 wall = &world->walls[i];
             }
