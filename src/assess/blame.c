@@ -26,16 +26,16 @@ static bool fails_alone(const struct assess_job *job, const struct bw_distance_r
 }
 
 enum bw_status assess_blame(const struct assess_job *job, const struct bw_distance_result *distance,
-                            const struct bw_error *cause) {
+                            enum bw_status status, const struct bw_error *cause) {
     const struct bw_laser *laser = assess_laser(job, distance);
     const struct bw_handpiece *handpiece = assess_handpiece(job, distance);
-    for (size_t i = 0; cause->status != BW_NO_MEMORY && i < handpiece->output.count; i++) {
+    for (size_t i = 0; status != BW_NO_MEMORY && i < handpiece->output.count; i++) {
         const struct bw_emission *emission = &handpiece->output.emissions[i];
         struct bw_error own = {0};
         if (fails_alone(job, distance, emission, &own))
             return bw_error_set(job->error, own.status, "laser %s, emission %s (%.6g nm): %s", laser->name,
                                 emission->name, emission->wavelength_nm, own.text);
     }
-    return bw_error_set(job->error, cause->status, "laser %s, handpiece %s: %s", laser->name, handpiece->name,
-                        cause->text);
+    return bw_error_set(job->error, status, "laser %s, handpiece %s: %s", laser->name, handpiece->name,
+                        cause->text[0] ? cause->text : "cannot be assessed");
 }

@@ -224,5 +224,5 @@ enum bw_status assess_distance(const struct assess_job *job, size_t laser, size_
         status = permitted(job, distance, working, &cause);
     if (status == BW_OK && distance->working.failed)
         status = bw_error_set(&cause, BW_NO_MEMORY, "out of memory");
-    return status == BW_OK ? BW_OK : assess_blame(job, distance, &cause);
+    return status == BW_OK ? BW_OK : assess_blame(job, distance, status, &cause);
 }

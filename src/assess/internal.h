@@ -27,7 +27,7 @@ enum bw_status assess_distance(const struct assess_job *job, size_t laser, size_
                                struct bw_distance_result *distance);
 /* blame.c: names the emission that a failed preparation is about. */
 enum bw_status assess_blame(const struct assess_job *job, const struct bw_distance_result *distance,
-                            const struct bw_error *cause);
+                            enum bw_status status, const struct bw_error *cause);
 
 /* pairs.c: goggles against handpieces at their exits. */
 void assess_pairs(const struct assess_job *job);

@@ -8,8 +8,13 @@ static enum bw_status no_memory(const struct assess_job *job) {
     return bw_error_set(job->error, BW_NO_MEMORY, "out of memory");
 }
 
-static enum bw_status blame_room(const struct assess_job *job, size_t room, const struct bw_error *cause) {
-    return bw_error_set(job->error, cause->status, "room %s: %s", job->the_case->rooms[room].name, cause->text);
+/* The returned status counts: a failure is one even if it left no words. */
+static enum bw_status blame_room(const struct assess_job *job, size_t room, enum bw_status status,
+                                 const struct bw_error *cause) {
+    return bw_error_set(job->error, status, "room %s: %s", job->the_case->rooms[room].name,
+                        cause->text[0]           ? cause->text
+                        : status == BW_NO_MEMORY ? "out of memory"
+                                                 : "cannot be solved");
 }
 
 /* The handpieces used in the room, among those that were asked for. */
@@ -69,8 +74,9 @@ static enum bw_status densities(const struct assess_job *job, const struct bw_ro
     struct bw_room_source source = {distance->direct, distance->diffuse_view};
     struct bw_error cause = {0};
     double terms[BW_TERMS_MAX] = {0}, od[BW_EMISSIONS_MAX] = {0};
-    if (bw_room_terms_at(the_room, &source, the_room->persons[index].at, terms, &cause) != BW_OK)
-        return blame_room(job, room->room, &cause);
+    enum bw_status status = bw_room_terms_at(the_room, &source, the_room->persons[index].at, terms, &cause);
+    if (status != BW_OK)
+        return blame_room(job, room->room, status, &cause);
     bw_hazard_optical_density(distance->direct, terms, od);
     for (size_t i = 0; i < distance->direct->output->count; i++)
         if (!keep_density(&room->persons[index], distance->direct->output->emissions[i].wavelength_nm, od[i]))
@@ -85,14 +91,16 @@ static enum bw_status person(const struct assess_job *job, const struct bw_room_
     const struct bw_room *the_room = &job->the_case->rooms[room->room];
     struct bw_person_result *result = &room->persons[index];
     struct bw_error cause = {0};
+    enum bw_status status = BW_OK;
     if (room->solved)
         result->place = room->solution.persons[index];
-    else if (bw_room_at(the_room, sources, room->source_count, the_room->persons[index].at, &result->place, &cause) !=
-             BW_OK)
-        return blame_room(job, room->room, &cause);
+    else
+        status = bw_room_at(the_room, sources, room->source_count, the_room->persons[index].at, &result->place, &cause);
+    if (status != BW_OK)
+        return blame_room(job, room->room, status, &cause);
     result->needs_eyewear = !(result->place.ratio <= 1.);
     for (size_t i = 0; i < room->source_count; i++) {
-        enum bw_status status = densities(job, room, index, &job->result->distances[room->sources[i]]);
+        status = densities(job, room, index, &job->result->distances[room->sources[i]]);
         if (status != BW_OK)
             return status;
     }
@@ -104,8 +112,9 @@ static enum bw_status fill(const struct assess_job *job, struct bw_room_result *
     const struct bw_room *room = &job->the_case->rooms[result->room];
     struct bw_error cause = {0};
     if (job->options->parts & BW_PART_ROOM) {
-        if (bw_room_solve(room, sources, result->source_count, &result->solution, &cause) != BW_OK)
-            return blame_room(job, result->room, &cause);
+        enum bw_status status = bw_room_solve(room, sources, result->source_count, &result->solution, &cause);
+        if (status != BW_OK)
+            return blame_room(job, result->room, status, &cause);
         result->solved = true;
     }
     for (size_t i = 0; i < room->person_count; i++) {

@@ -139,6 +139,7 @@ void html_rooms(struct bw_text *out, const struct bw_result *result) {
 
         snprintf(id, sizeof id, "room-section-%zu", i);
         html_heading(out, id, title.data ? title.data : "Room");
+        out->failed = out->failed || title.failed;
         bw_text_free(&title);
         facts(out, result, found);
         bw_text_add(out, "<figure>\n");

@@ -58,6 +58,7 @@ bool plan_label(struct plan *plan, struct bw_point mark, double radius, const ch
 /* A label on a line. Returns: false if the place is taken. */
 bool plan_label_on(struct plan *plan, struct bw_point at, const char *text);
 void plan_text(struct bw_text *out, double x, double y, const char *anchor, const char *text); /* escapes */
+void plan_free_text(struct plan *plan, struct bw_text *text);            /* its failure becomes the plan's */
 void plan_cut(char *out, size_t size, const char *text, size_t columns); /* at most so many, with an ellipsis */
 
 /* plan_legend.c */

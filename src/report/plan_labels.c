@@ -79,21 +79,28 @@ void plan_text(struct bw_text *out, double x, double y, const char *anchor, cons
     bw_text_add(out, "</text>\n");
 }
 
+void plan_free_text(struct plan *plan, struct bw_text *text) {
+    plan->over.failed = plan->over.failed || text->failed;
+    bw_text_free(text);
+}
+
 void plan_cut(char *out, size_t size, const char *text, size_t columns) {
-    struct bw_text cut = {0};
+    static const char ellipsis[] = "\xE2\x80\xA6";
     bool all = report_width(text) <= columns;
-    size_t used = 0;
+    size_t used = 0, length = 0;
     while (*text) {
         unsigned long code;
-        text = report_next(text, &code);
+        const char *next = report_next(text, &code);
         used += (size_t)report_columns(code);
-        if (!all && used > columns - 1)
-            break;
-        report_encode(&cut, code);
+        if ((!all && used > columns - 1) || length + (size_t)(next - text) + sizeof ellipsis > size) {
+            memcpy(out + length, ellipsis, sizeof ellipsis);
+            return;
+        }
+        memcpy(out + length, text, (size_t)(next - text));
+        length += (size_t)(next - text);
+        text = next;
     }
-    /* A cut name has at most 4 bytes a column, which `size` allows for. */
-    snprintf(out, size, "%s%s", cut.data ? cut.data : "", all ? "" : "\xE2\x80\xA6");
-    bw_text_free(&cut);
+    out[length] = '\0';
 }
 
 /* The text stands at the side of its box that is nearer to the mark. */

@@ -203,7 +203,7 @@ static void key_person(struct plan *plan, size_t index) {
                     : found->verdict == BW_INSUFFICIENT ? "too weak"
                                                         : "no rating");
     key_text(plan, mark, text.data ? text.data : "");
-    bw_text_free(&text);
+    plan_free_text(plan, &text);
 }
 
 static void key_opening(struct plan *plan, size_t index) {
@@ -215,7 +215,7 @@ static void key_opening(struct plan *plan, size_t index) {
     bw_text_add(&text, "%s (%s): %s times the eye limit beyond it; needs %s", opening->name,
                 report_opening_kind(opening->kind), report_ratio(ratio, found->ratio_beyond), found->needs);
     key_text(plan, mark, text.data ? text.data : "");
-    bw_text_free(&text);
+    plan_free_text(plan, &text);
 }
 
 void plan_key(struct plan *plan) {

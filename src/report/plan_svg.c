@@ -31,7 +31,7 @@ static void title(struct plan *plan) {
     bw_text_add(&text, "Room %s%s%s", plan->room->name, plan->room->title[0] ? ": " : "",
                 plan->room->title[0] ? shown : "");
     plan_cut(name, sizeof name, text.data ? text.data : "", 58);
-    bw_text_free(&text);
+    plan_free_text(plan, &text);
     bw_text_add(&plan->over, "<text class=\"title\" x=\"16\" y=\"26\">");
     report_xml(&plan->over, name);
     bw_text_add(&plan->over, "</text>\n");
@@ -43,7 +43,7 @@ static void title(struct plan *plan) {
     }
     plan_cut(name, sizeof name, text.data ? text.data : "", 76);
     plan_text(&plan->over, 16, 48, "start", name);
-    bw_text_free(&text);
+    plan_free_text(plan, &text);
 }
 
 static void open_svg(struct bw_text *out, const struct plan *plan, bool document) {

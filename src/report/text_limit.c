@@ -93,6 +93,11 @@ static bool from_memory(const struct bw_limit_query *query) {
     return query->limits.limits[query->limits.governing].source.known == BW_MEMORY;
 }
 
+/* A customary time as short as this is that of the aversion response. */
+static bool rests_on_blinking(const struct bw_limit_query *query) {
+    return query->exposure_reason && query->exposure.exposure_s <= 0.25;
+}
+
 void bw_report_limit_text(struct bw_text *out, const struct bw_limit_query *query) {
     head(out, query);
     if (query->has_train)
@@ -102,4 +107,8 @@ void bw_report_limit_text(struct bw_text *out, const struct bw_limit_query *quer
     bw_text_add(out, "\n");
     text_wrapf(out, "", "Limits are rounded down.%s",
                from_memory(query) ? " The governing row comes from memory: compare it with a printed copy." : "");
+    if (rests_on_blinking(query))
+        text_wrap(out, "",
+                  "The time of 0.25 s rests on the aversion response; the German radiation protection commission "
+                  "(SSK, 15 March 2006) says that newer results do not bear this assumption out.");
 }
