@@ -1,8 +1,8 @@
 /* What falls beside the allowed aims: a beam has a width, and its edge lights more than its axis is turned to.
  *
- * A place at the distance L from the exit, in a direction that is beside all aims by the angle g, lies r = L cos g along
- * the nearest axis and L sin g from it; half the exit is taken off that. Nothing falls behind the exit. A place is never
- * worse off than one that is aimed at from the same distance, so the envelope on the axis bounds all. */
+ * A place at the distance L from the exit, in a direction that is beside all aims by the angle g, lies r = L cos g
+ * along the nearest axis and L sin g from it; half the exit is taken off that. Nothing falls behind the exit. A place
+ * is never worse off than one that is aimed at from the same distance, so the envelope on the axis bounds all. */
 #include "internal.h"
 
 #include <math.h>
@@ -54,17 +54,17 @@ double bw_room_beside_exactly(const struct bw_hazard *hazard, double length_m, d
     return fmin(ratio, bw_hazard_ratio_envelope(hazard, length_m));
 }
 
-/* Bound of one bin: offset at its least, distance along the axis anywhere in the bin. A Gaussian off its axis is largest
- * at one distance and falls to both sides, by less within a bin than the axis itself does; a top hat is no more than
- * its axis. So the larger of both ends, times the fall of the axis, is enough. */
+/* Bound of one bin: offset at its least, distance along the axis anywhere in the bin. A Gaussian off its axis is
+ * largest at one distance and falls to both sides, by less within a bin than the axis itself does; a top hat is no more
+ * than its axis. So the larger of both ends, times the fall of the axis, is enough. */
 static double bin_bound(const struct bw_hazard *hazard, const struct curve *lengths, const double *axis, size_t i,
                         size_t j, double radius_m) {
     double low_m = lengths->bound[i], high_m = lengths->bound[i + 1];
     double low_rad = angle_edge_rad(j), high_rad = angle_edge_rad(j + 1);
     double offset_m = fmax(0, low_m * sin(low_rad) - radius_m);
     double near_m = fmax(0, low_m * cos(high_rad)), far_m = high_m * cos(low_rad);
-    double ratio = fmax(bw_hazard_ratio_off_axis(hazard, near_m, offset_m),
-                        bw_hazard_ratio_off_axis(hazard, far_m, offset_m));
+    double ratio =
+        fmax(bw_hazard_ratio_off_axis(hazard, near_m, offset_m), bw_hazard_ratio_off_axis(hazard, far_m, offset_m));
     double fall = bw_hazard_ratio(hazard, near_m) / bw_hazard_ratio(hazard, far_m);
     return fmin(ratio * fmax(fall, 1.01), axis[i]);
 }

@@ -35,9 +35,13 @@ size_t bw_room_push_roots(struct workspace *workspace, const struct image *image
         workspace->indices[workspace->index_count++] = (uint32_t)i;
     for (size_t i = 0; i < image->pieces.count && workspace->part_count < workspace->part_capacity; i++) {
         struct quad piece = image->pieces.at[i];
-        workspace->parts[workspace->part_count++] = (struct part){
-            .piece = piece, .size_m = bw_room_quad_size_m(&piece), .share = 1, .chord_share = 1, .first = begin,
-            .count = workspace->index_count - begin, .bound = HUGE_VAL};
+        workspace->parts[workspace->part_count++] = (struct part){.piece = piece,
+                                                                  .size_m = bw_room_quad_size_m(&piece),
+                                                                  .share = 1,
+                                                                  .chord_share = 1,
+                                                                  .first = begin,
+                                                                  .count = workspace->index_count - begin,
+                                                                  .bound = HUGE_VAL};
     }
     return first;
 }
@@ -75,10 +79,13 @@ static enum decision decide(const struct bundle *bundle, const struct barrier *b
     return part->share > 0 && part->chord_share > 0 ? DECIDED : DARK;
 }
 
-/* Decides what can be decided. `to` keeps the rest; a chord alone keeps nothing open. Returns: false if dark. */
+/* Decides what can be decided; `to` keeps the rest. A chord is asked only while one of the stops is half in the way:
+ * all links go through a joint only if some go through one of its arms. (Chords stand last among the barriers.)
+ * Returns: false if dark. */
 static bool pass_barriers(struct workspace *workspace, const struct image *image, const struct bundle *bundle,
                           const struct part *from, struct part *to, bool *open) {
     size_t begin = workspace->index_count;
+    bool stopped = false;
     *open = false;
     if (begin + from->count > workspace->index_capacity) { /* no room to take notes: as if nothing stood in the way */
         *open = true;
@@ -86,14 +93,18 @@ static bool pass_barriers(struct workspace *workspace, const struct image *image
     }
     for (size_t i = 0; i < from->count; i++) {
         uint32_t index = workspace->indices[from->first + i];
-        enum decision decision = decide(bundle, &image->barriers[index], to);
+        const struct barrier *barrier = &image->barriers[index];
+        if (barrier->kind == BARRIER_CHORD && !stopped)
+            break;
+        enum decision decision = decide(bundle, barrier, to);
         if (decision == DARK) {
             workspace->index_count = begin;
             return false;
         }
         if (decision == OPEN) {
             workspace->indices[workspace->index_count++] = index;
-            *open = *open || image->barriers[index].kind != BARRIER_CHORD;
+            *open = *open || barrier->kind != BARRIER_CHORD;
+            stopped = stopped || barrier->kind == BARRIER_STOPS;
         }
     }
     to->first = begin;

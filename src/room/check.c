@@ -26,7 +26,8 @@ static enum bw_status check_outline(const struct bw_room *room, struct bw_error 
         return bw_error_set(error, BW_ARGUMENT, "room %s: the outline must be a polygon whose sides do not cross",
                             room->name);
     if (!(room->grid_m >= 0.002 && room->grid_m <= 1))
-        return bw_error_set(error, BW_ARGUMENT, "room %s: grid is %g m, outside 0.002 to 1 m", room->name, room->grid_m);
+        return bw_error_set(error, BW_ARGUMENT, "room %s: grid is %g m, outside 0.002 to 1 m", room->name,
+                            room->grid_m);
     if (!(room->bounces >= 0 && room->bounces <= BOUNCES_MAX))
         return bw_error_set(error, BW_ARGUMENT, "room %s: bounces is %d, outside 0 to %d", room->name, room->bounces,
                             BOUNCES_MAX);
@@ -56,8 +57,10 @@ static enum bw_status check_parts(const struct bw_room *room, struct bw_error *e
         const struct bw_treatment_area *area = &room->areas[i];
         if (area->outline.count < 1 || !finite_polygon(&area->outline) ||
             (area->outline.count > 2 && !bw_polygon_is_simple(&area->outline)))
-            return bw_error_set(error, BW_ARGUMENT, "treatment area %s: the outline must be a point or a polygon whose "
-                                "sides do not cross", area->name);
+            return bw_error_set(error, BW_ARGUMENT,
+                                "treatment area %s: the outline must be a point or a polygon whose "
+                                "sides do not cross",
+                                area->name);
         if (!(area->aim_from_deg <= area->aim_to_deg && isfinite(area->aim_from_deg) && isfinite(area->aim_to_deg)))
             return bw_error_set(error, BW_ARGUMENT, "treatment area %s: aims from %g to %g degrees", area->name,
                                 area->aim_from_deg, area->aim_to_deg);

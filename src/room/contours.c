@@ -29,8 +29,8 @@ static void lift(double *corner, double value) {
     *corner = isnan(*corner) || value > *corner ? value : *corner;
 }
 
-/* Corners outside the room take what the nearest inside have, twice over, so that the lines reach beyond the outline and
- * can be cut off at it. */
+/* Corners outside the room take what the nearest inside have, twice over, so that the lines reach beyond the outline
+ * and can be cut off at it. */
 static bool spread(struct field *field) {
     size_t count = field->columns * field->rows;
     double *before = malloc(count * sizeof *before);
@@ -243,7 +243,8 @@ static bool cut_stretch(struct cutting *cutting, struct bw_point a, struct bw_po
     for (size_t i = 0; i <= count; i++) {
         double to = cutting->cuts[i], middle = (from + to) / 2;
         struct bw_point start = {a.x_m + from * (b.x_m - a.x_m), a.y_m + from * (b.y_m - a.y_m)};
-        struct bw_point end = i == count ? b : (struct bw_point){a.x_m + to * (b.x_m - a.x_m), a.y_m + to * (b.y_m - a.y_m)};
+        struct bw_point end =
+            i == count ? b : (struct bw_point){a.x_m + to * (b.x_m - a.x_m), a.y_m + to * (b.y_m - a.y_m)};
         struct bw_point half = {a.x_m + middle * (b.x_m - a.x_m), a.y_m + middle * (b.y_m - a.y_m)};
         if (bw_polygon_contains(cutting->outline, half)) {
             if (cutting->inside.count == 0 && !add_point(&cutting->inside, start))

@@ -1,10 +1,10 @@
 /* Do the links between two convex quads cross a segment: all of them, some, none?
  *
- * Why the corners suffice. Let u, v be the ends of the segment, a and b the ends of a link, and turn(a, b, u) the signed
- * area of the triangle a b u. With b fixed it is affine in a, with a fixed affine in b. So if it is positive for all
- * pairs of corners it is positive for all a of the one quad and all b of the other. The link crosses the segment if a
- * and b lie on different sides of the line u v, and u and v on different sides of the line a b. All of these hold for all
- * links if they hold for the corners. */
+ * Why the corners suffice. Let u, v be the ends of the segment, a and b the ends of a link, and turn(a, b, u) the
+ * signed area of the triangle a b u. With b fixed it is affine in a, with a fixed affine in b. So if it is positive for
+ * all pairs of corners it is positive for all a of the one quad and all b of the other. The link crosses the segment if
+ * a and b lie on different sides of the line u v, and u and v on different sides of the line a b. All of these hold for
+ * all links if they hold for the corners. */
 #include "internal.h"
 
 #include <math.h>
@@ -24,21 +24,32 @@ static void widen(struct range *range, double value) {
     range->high = value > range->high ? value : range->high;
 }
 
-static struct range sides(const struct quad *quad, struct bw_segment s) {
+static struct range sides(const struct quad *quad, int corners, struct bw_segment s) {
     struct range range = {HUGE_VAL, -HUGE_VAL};
-    for (int i = 0; i < 4; i++)
+    for (int i = 0; i < corners; i++)
         widen(&range, cross(s.from, s.to, quad->at[i]));
     return range;
 }
 
 static struct range turns(const struct bundle *bundle, struct bw_point p) {
     struct range range = {HUGE_VAL, -HUGE_VAL};
-    for (int i = 0; i < 4; i++) {
+    for (int i = 0; i < bundle->a_corners; i++) {
         double ax = bundle->a.at[i].x_m - p.x_m, ay = bundle->a.at[i].y_m - p.y_m;
-        for (int j = 0; j < 4; j++)
+        for (int j = 0; j < bundle->b_corners; j++)
             widen(&range, ax * (bundle->b.at[j].y_m - p.y_m) - ay * (bundle->b.at[j].x_m - p.x_m));
     }
     return range;
+}
+
+static bool same(struct bw_point p, struct bw_point q) {
+    return p.x_m <= q.x_m && p.x_m >= q.x_m && p.y_m <= q.y_m && p.y_m >= q.y_m;
+}
+
+/* A point has one corner that counts, a segment two. */
+static int corners_of(const struct quad *quad) {
+    if (!same(quad->at[0], quad->at[3]) || !same(quad->at[1], quad->at[2]))
+        return 4;
+    return same(quad->at[0], quad->at[1]) ? 1 : 2;
 }
 
 struct bundle bw_room_bundle(const struct quad *a, const struct quad *b, double a_radius_m) {
@@ -51,7 +62,7 @@ struct bundle bw_room_bundle(const struct quad *a, const struct quad *b, double 
         widen(&y, a->at[i].y_m + a_radius_m);
         widen(&y, b->at[i].y_m);
     }
-    return (struct bundle){*a, *b, a_radius_m, {x.low, y.low}, {x.high, y.high}};
+    return (struct bundle){*a, *b, corners_of(a), corners_of(b), a_radius_m, {x.low, y.low}, {x.high, y.high}};
 }
 
 static bool boxes_apart(const struct bundle *bundle, struct bw_segment s) {
@@ -62,8 +73,10 @@ static bool boxes_apart(const struct bundle *bundle, struct bw_segment s) {
 /* How much turn(a, b, p) can change when a moves by its radius. */
 static double play(const struct bundle *bundle, struct bw_point p) {
     double far_m = 0;
-    for (int j = 0; j < 4; j++)
-        far_m = fmax(far_m, fabs(bundle->b.at[j].x_m - p.x_m) + fabs(bundle->b.at[j].y_m - p.y_m));
+    for (int j = 0; j < bundle->b_corners; j++) {
+        double off_m = fabs(bundle->b.at[j].x_m - p.x_m) + fabs(bundle->b.at[j].y_m - p.y_m);
+        far_m = off_m > far_m ? off_m : far_m;
+    }
     return (bundle->a_radius_m + hair_m) * far_m;
 }
 
@@ -86,7 +99,7 @@ enum crossing bw_room_crossing(const struct bundle *bundle, struct bw_segment s)
     if (boxes_apart(bundle, s))
         return CROSS_NONE;
     double length_m = fabs(s.to.x_m - s.from.x_m) + fabs(s.to.y_m - s.from.y_m), hair = hair_m * length_m;
-    struct range a = sides(&bundle->a, s), b = sides(&bundle->b, s);
+    struct range a = sides(&bundle->a, bundle->a_corners, s), b = sides(&bundle->b, bundle->b_corners, s);
     if ((a.low > hair && b.low > hair) || (a.high < -hair && b.high < -hair))
         return CROSS_NONE;
     if (on_line(a, hair) || on_line(b, hair))
@@ -103,7 +116,7 @@ enum crossing bw_room_crossing(const struct bundle *bundle, struct bw_segment s)
 static bool beyond(const struct quad *quad, struct bw_segment s, int inner, double margin_m) {
     double dx = s.to.x_m - s.from.x_m, dy = s.to.y_m - s.from.y_m, length_m = sqrt(dx * dx + dy * dy);
     double margin = (margin_m - hair_m) * length_m, hair = hair_m * length_m;
-    struct range range = sides(quad, s);
+    struct range range = sides(quad, 4, s);
     return inner > 0 ? range.high <= -margin && range.low < -hair : range.low >= margin && range.high > hair;
 }
 
@@ -116,7 +129,8 @@ static int outside(const struct quad *quad, struct bw_segment chord, struct bw_p
     struct bw_segment to = {chord.to, elbow}, from = {elbow, chord.from};
     if (beyond(quad, chord, inner, radius_m) || beyond(quad, to, inner, 0) || beyond(quad, from, inner, 0))
         return 1;
-    return beyond(quad, chord, -inner, radius_m) && beyond(quad, to, -inner, 0) && beyond(quad, from, -inner, 0) ? -1 : 0;
+    return beyond(quad, chord, -inner, radius_m) && beyond(quad, to, -inner, 0) && beyond(quad, from, -inner, 0) ? -1
+                                                                                                                 : 0;
 }
 
 static bool apart_from_elbow(const struct bundle *bundle, struct bw_segment chord, struct bw_point elbow) {
@@ -133,13 +147,13 @@ static bool apart_from_elbow(const struct bundle *bundle, struct bw_segment chor
 enum crossing bw_room_elbow(const struct bundle *bundle, struct bw_segment chord, struct bw_point elbow) {
     if (apart_from_elbow(bundle, chord, elbow))
         return CROSS_NONE;
-    int a = outside(&bundle->a, chord, elbow, bundle->a_radius_m), b = outside(&bundle->b, chord, elbow, 0);
-    if (a == 0 || b == 0)
-        return CROSS_SOME;
-    if (a < 0 && b < 0)
-        return CROSS_NONE;
     enum crossing crossing = bw_room_crossing(bundle, chord);
-    if (a > 0 && b > 0)
-        return crossing;
-    return crossing == CROSS_NONE ? CROSS_ALL : CROSS_SOME;
+    if (crossing == CROSS_SOME)
+        return CROSS_SOME;
+    int a = outside(&bundle->a, chord, elbow, bundle->a_radius_m), b = outside(&bundle->b, chord, elbow, 0);
+    if (crossing == CROSS_ALL)
+        return a > 0 && b > 0 ? CROSS_ALL : CROSS_SOME;
+    if (a * b < 0)
+        return CROSS_ALL;
+    return a * b > 0 ? CROSS_NONE : CROSS_SOME;
 }

@@ -85,9 +85,9 @@ static double pick(const struct bw_ratio *ratio, size_t only) {
     return only < BW_EMISSIONS_MAX ? ratio->emission[only] : ratio->total;
 }
 
-/* Train corrections change their law at these subtenses (limits tables, [train]): there a larger spot, or a place farther
- * off, may be the stricter. Between them a smaller spot is stricter, and the ratio falls with the distance: E falls as
- * 1/r^2, and no limit grows faster than the square of the subtense. */
+/* Train corrections change their law at these subtenses (limits tables, [train]): there a larger spot, or a place
+ * farther off, may be the stricter. Between them a smaller spot is stricter, and the ratio falls with the distance: E
+ * falls as 1/r^2, and no limit grows faster than the square of the subtense. */
 static const double steps_rad[] = {1.5e-3, 5e-3, 100e-3};
 enum { STEPS = 3 };
 static const double just_beyond = 1 + 1e-9;

@@ -5,8 +5,8 @@
 #include <stdio.h>
 #include <stdlib.h>
 
-static const double on_wall_m = 1e-3;     /* an opening drawn so close to a wall lies in it */
-static const double window_index = 1.52;  /* window glass, materials.ini */
+static const double on_wall_m = 1e-3;    /* an opening drawn so close to a wall lies in it */
+static const double window_index = 1.52; /* window glass, materials.ini */
 
 static bool add(struct elements *elements, const struct element *element) {
     if (elements->count == elements->capacity) {

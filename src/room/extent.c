@@ -3,8 +3,8 @@
 
 #include <math.h>
 
-/* Farthest corner of the chain from the nearest area. A distance to a convex piece is largest at a corner, so this bounds
- * the chain's inside too. */
+/* Farthest corner of the chain from the nearest area. A distance to a convex piece is largest at a corner, so this
+ * bounds the chain's inside too. */
 static double farthest_from_areas(const struct scene *scene, const struct bw_point *points, size_t count) {
     double farthest_m = 0;
     for (size_t k = 0; k < count; k++) {

@@ -137,8 +137,8 @@ static bool direct(struct image *image, const struct scene *scene, const struct 
     for (size_t i = 0; i < emitter->pieces.count; i++)
         if (!bw_room_add_quad(&image->pieces, emitter->pieces.at[i]))
             return false;
-    if (emitter->faces &&
-        !add_barrier(image, (struct barrier){BARRIER_FACING, emitter->facing, 1., emitter->facing.from, emitter->side, 0}))
+    if (emitter->faces && !add_barrier(image, (struct barrier){BARRIER_FACING, emitter->facing, 1.,
+                                                               emitter->facing.from, emitter->side, 0}))
         return false;
     return add_stops(image, scene, NULL, 0) && add_chords(image);
 }
@@ -187,8 +187,8 @@ static void reflect_angles(struct image *image, const struct element *element) {
     if (element->gleam == GLEAM_CONSTANT)
         image->share *= element->reflectance * element->behind;
     else
-        image->glints[image->glint_count++] = (struct glint){line_rad + bw_pi / 2, element->index, element->reflectance,
-                                                             element->behind, element->pane};
+        image->glints[image->glint_count++] =
+            (struct glint){line_rad + bw_pi / 2, element->index, element->reflectance, element->behind, element->pane};
 }
 
 /* One mirror more. */

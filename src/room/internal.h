@@ -41,6 +41,7 @@ double bw_room_turn(double angle_rad); /* to -pi .. pi */
 enum crossing { CROSS_NONE, CROSS_SOME, CROSS_ALL };
 struct bundle {
     struct quad a, b;
+    int a_corners, b_corners;
     double a_radius_m; /* links may begin this far beside a: half the exit of the handpiece */
     struct bw_point low, high;
 };
@@ -65,9 +66,9 @@ struct element {
     double reflectance; /* of it: whole, or at least */
     double index;
     bool pane;
-    double behind;      /* share that reaches the gleam and comes back (glass behind a cover) */
-    double matt;        /* diffuse share */
-    int side;           /* that can be lit: +1 left of from -> to, -1 right, 0 both */
+    double behind; /* share that reaches the gleam and comes back (glass behind a cover) */
+    double matt;   /* diffuse share */
+    int side;      /* that can be lit: +1 left of from -> to, -1 right, 0 both */
     bool on_outline;
 };
 struct elements {
@@ -109,7 +110,7 @@ struct aims {
 struct emitter { /* where light starts */
     struct quads pieces;
     struct aims aims;
-    bool faces;                /* only to one side of a line (a lit surface) */
+    bool faces; /* only to one side of a line (a lit surface) */
     struct bw_segment facing;
     int side;
     size_t area;
@@ -138,10 +139,10 @@ void bw_room_via(const struct scene *scene, const struct image *image, char via[
 /* ---- curves.c: ratio against length, tabulated so that it is never too low -------------------------------------- */
 
 struct curve {
-    int shift;          /* mantissa bits that a bin ignores */
+    int shift; /* mantissa bits that a bin ignores */
     uint64_t first;
-    size_t bins;        /* bound[0]: nearer than all bins; bound[i + 1]: bin i, and beyond the last */
-    double *bound;      /* never rises */
+    size_t bins;   /* bound[0]: nearer than all bins; bound[i + 1]: bin i, and beyond the last */
+    double *bound; /* never rises */
 };
 size_t bw_room_curve_bin(const struct curve *curve, double length_m);
 double bw_room_curve_at(const struct curve *curve, double length_m);
@@ -161,7 +162,7 @@ struct spot_curve { /* a lit spot, seen from a distance */
     struct spot_step steps[3 * BW_EMISSIONS_MAX];
 };
 enum bw_status bw_room_diffuse_curve(struct spot_curve *spot, double far_m, struct bw_error *error);
-double bw_room_diffuse_at(struct spot_curve *spot, double distance_m);            /* bound of the bin */
+double bw_room_diffuse_at(struct spot_curve *spot, double distance_m); /* bound of the bin */
 double bw_room_diffuse_exactly(const struct spot_curve *spot, double distance_m);
 
 /* ---- beside.c: what falls beside the allowed aims --------------------------------------------------------------- */
@@ -208,8 +209,8 @@ struct part { /* of an emitter, against one target */
     struct quad piece;
     double size_m;
     double share, chord_share;
-    bool clear;    /* nothing is left to decide */
-    bool aims_met; /* every link lies within the aims */
+    bool clear;          /* nothing is left to decide */
+    bool aims_met;       /* every link lies within the aims */
     size_t first, count; /* barriers still to decide: indices in the workspace */
     double length_m, bound, total_share, aside_rad;
 };
@@ -247,7 +248,7 @@ struct patch { /* part of a matt surface */
     size_t element;
     int side; /* that is lit and seen; 0 both */
 };
-struct lit { /* one patch by one source */
+struct lit {       /* one patch by one source */
     double share;  /* of its light that the patch sends out again; 0 = in the dark */
     double path_m; /* shortest way of the beam to it */
     size_t area;   /* where that begins */

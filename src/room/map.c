@@ -5,7 +5,8 @@
 #include <stdlib.h>
 
 struct bw_point bw_room_cell_corner(const struct bw_room_map *map, size_t column, size_t row) {
-    return (struct bw_point){map->origin.x_m + (double)column * map->cell_m, map->origin.y_m + (double)row * map->cell_m};
+    return (struct bw_point){map->origin.x_m + (double)column * map->cell_m,
+                             map->origin.y_m + (double)row * map->cell_m};
 }
 
 static size_t cells_across(double width_m, double cell_m) {
@@ -19,7 +20,8 @@ enum { CUT = 2 }; /* a side of the outline may go through the cell */
 static void mark_side(struct bw_room_map *map, struct bw_point a, struct bw_point b) {
     double hair = 1e-6, cell_m = map->cell_m;
     struct bw_point low = a.y_m < b.y_m ? a : b, high = a.y_m < b.y_m ? b : a;
-    double from = floor((low.y_m - map->origin.y_m) / cell_m - hair), to = floor((high.y_m - map->origin.y_m) / cell_m + hair);
+    double from = floor((low.y_m - map->origin.y_m) / cell_m - hair),
+           to = floor((high.y_m - map->origin.y_m) / cell_m + hair);
     for (double row = fmax(0, from); row <= to && row < (double)map->rows; row++) {
         double rise = high.y_m - low.y_m, y0 = map->origin.y_m + row * cell_m, y1 = y0 + cell_m;
         double t0 = rise > 0 ? fmin(fmax((y0 - low.y_m) / rise, 0), 1) : 0;
@@ -32,7 +34,8 @@ static void mark_side(struct bw_room_map *map, struct bw_point a, struct bw_poin
     }
 }
 
-static bool cell_is_inside(const struct bw_room_map *map, struct clipper *clipper, size_t column, size_t row, bool cut) {
+static bool cell_is_inside(const struct bw_room_map *map, struct clipper *clipper, size_t column, size_t row,
+                           bool cut) {
     struct bw_point low = bw_room_cell_corner(map, column, row), high = bw_room_cell_corner(map, column + 1, row + 1);
     if (!cut)
         return bw_polygon_contains(clipper->polygon,

@@ -30,8 +30,8 @@ struct light bw_room_diffuse_light(struct spot_curve *spot, size_t area, double 
 struct stage {
     struct scene *scene;
     const struct receiver *receiver;
-    double reflectance;        /* of what is treated */
-    size_t source;             /* of a lit surface */
+    double reflectance; /* of what is treated */
+    size_t source;      /* of a lit surface */
     const struct lit *lit;
 };
 

@@ -49,7 +49,8 @@ void bw_room_hunt_take(struct scene *scene, const struct image *image, const str
     size_t first = bw_room_push_roots(&scene->workspace, image), count = scene->workspace.part_count - first;
     for (size_t i = 0; i < hunt->count; i++)
         better = bw_room_worst(&scene->workspace, image, &exactly, &hunt->targets[i], first, count, &hunt->precision,
-                               &found) || better;
+                               &found) ||
+                 better;
     scene->workspace.part_count = 0;
     scene->workspace.index_count = 0;
     if (better)
@@ -194,7 +195,8 @@ enum bw_status bw_room_terms_at(const struct bw_room *room, const struct bw_room
         return status;
     double ratios[BW_TERMS_MAX] = {0};
     struct scene scene;
-    struct terms terms = {source->direct, malloc(sizeof *terms.one), point_target(at), bw_room_point_precision(), ratios};
+    struct terms terms = {source->direct, malloc(sizeof *terms.one), point_target(at), bw_room_point_precision(),
+                          ratios};
     struct receiver receiver = {wants_terms, take_terms, &terms};
     status = bw_room_scene_init(&scene, room, source, 1, false, error);
     if (status == BW_OK)

@@ -106,8 +106,10 @@ static bool equal(double a, double b) {
 /* Sides along the axes, so that the box around it is the quad itself. */
 static bool is_upright(const struct quad *quad) {
     const struct bw_point *p = quad->at;
-    return (equal(p[0].y_m, p[1].y_m) && equal(p[2].y_m, p[3].y_m) && equal(p[1].x_m, p[2].x_m) && equal(p[3].x_m, p[0].x_m)) ||
-           (equal(p[0].x_m, p[1].x_m) && equal(p[2].x_m, p[3].x_m) && equal(p[1].y_m, p[2].y_m) && equal(p[3].y_m, p[0].y_m));
+    return (equal(p[0].y_m, p[1].y_m) && equal(p[2].y_m, p[3].y_m) && equal(p[1].x_m, p[2].x_m) &&
+            equal(p[3].x_m, p[0].x_m)) ||
+           (equal(p[0].x_m, p[1].x_m) && equal(p[2].x_m, p[3].x_m) && equal(p[1].y_m, p[2].y_m) &&
+            equal(p[3].y_m, p[0].y_m));
 }
 
 /* The same to a box with sides along the axes. */
@@ -134,7 +136,8 @@ double bw_room_turn(double angle_rad) {
     return remainder(angle_rad, 2 * bw_pi);
 }
 
-/* The directions of b - a are those of a convex set (b less a), so its corners bound them, unless it holds the origin. */
+/* The directions of b - a are those of a convex set (b less a), so its corners bound them, unless it holds the origin.
+ */
 struct fan bw_room_fan(const struct quad *a, const struct quad *b) {
     struct bw_point from = bw_room_quad_middle(a), to = bw_room_quad_middle(b);
     double x = to.x_m - from.x_m, y = to.y_m - from.y_m, low = HUGE_VAL, high = -HUGE_VAL;

@@ -131,7 +131,8 @@ static double shorter_path_m(double path_m) {
 static struct spot_curve *find_curve(const struct scene *scene, size_t source, size_t emission, double path_m) {
     for (size_t i = 0; i < scene->spot_count; i++) {
         struct spot_curve *curve = scene->spots[i];
-        if (curve->source == source && curve->emission == emission && curve->path_m <= path_m && curve->path_m >= path_m)
+        if (curve->source == source && curve->emission == emission && curve->path_m <= path_m &&
+            curve->path_m >= path_m)
             return curve;
     }
     return NULL;

@@ -162,8 +162,14 @@ static void descend(struct sweep *sweep, struct block block, size_t first, size_
 void bw_room_sweep(struct scene *scene, const struct image *image, const struct light *light, struct bw_room_map *map,
                    struct pyramid *pyramid) {
     enum bw_path_kind kind = light->kind == BW_PATH_DIRECT && image->depth > 0 ? BW_PATH_MIRROR : light->kind;
-    struct sweep sweep = {scene, image, light, map, pyramid, {0.04, fmax(0.01, map->cell_m / 2), 2000},
-                          (unsigned char)kind, false};
+    struct sweep sweep = {scene,
+                          image,
+                          light,
+                          map,
+                          pyramid,
+                          {light->spot != NULL ? 0.1 : 0.05, fmax(0.01, map->cell_m / 2), 2000},
+                          (unsigned char)kind,
+                          false};
     size_t first = bw_room_push_roots(&scene->workspace, image), count = scene->workspace.part_count - first;
     descend(&sweep, (struct block){pyramid->levels - 1, 0, 0}, first, count);
     scene->workspace.part_count = 0;

@@ -104,7 +104,8 @@ static void test_whole_room(void **state) {
     bw_room_solution_free(&solution);
 }
 
-/* ---- mirrors, screens, aims --------------------------------------------------------------------------------------- */
+/* ---- mirrors, screens, aims ---------------------------------------------------------------------------------------
+ */
 
 /* Mirror on the line x = 0 from y = 1 to 3; source at (1, 2), image at (-1, 2). A screen keeps direct light off. */
 static void test_mirror(void **state) {
@@ -170,7 +171,8 @@ static void test_three_mirrors(void **state) {
     add_surface(&plan, 1.55, 2.5, 2, 2.5, dark());
     add_surface(&plan, 0.9, 2.5, 1.1, 2.5, dark());
     struct bw_place place = place_at(&plan, &handpiece, 1, 4);
-    /* Unfolded: images at -1, 3 (one), 5, -3 (two), 7, -5 (three); the link passes y = 2.5 half way, in cells of width 2. */
+    /* Unfolded: images at -1, 3 (one), 5, -3 (two), 7, -5 (three); the link passes y = 2.5 half way, in cells of
+     * width 2. */
     double best = HUGE_VAL;
     for (int k = -3; k <= 3; k++) {
         double image = 1 + 2.0 * k, half = (image + 1) / 2, folded = fabs(remainder(half, 4));
@@ -338,7 +340,8 @@ static void test_openings(void **state) {
     bw_room_solution_free(&solution);
 }
 
-/* ---- diffuse ------------------------------------------------------------------------------------------------------ */
+/* ---- diffuse ------------------------------------------------------------------------------------------------------
+ */
 
 /* The treated spot behind a handpiece that cannot be turned that way: seen as a diffuse source only. */
 static void test_treated(void **state) {
@@ -388,7 +391,8 @@ static void test_matt_wall(void **state) {
     assert_string_equal(place_at(&plan, &handpiece, 2.4, 3).via, "surface-0");
 }
 
-/* ---- results that belong together ----------------------------------------------------------------------------------- */
+/* ---- results that belong together -----------------------------------------------------------------------------------
+ */
 
 static void test_terms(void **state) {
     (void)state;
@@ -400,7 +404,8 @@ static void test_terms(void **state) {
     box_plan(&plan, 0, 0, 5, 4, 0.05);
     plan.room.treated = material(BW_MATT, 0.65, 0);
     add_couch(&plan, 2, 1.6, 3.2, 2.4);
-    assert_int_equal(bw_room_terms_at(&plan.room, &handpiece.source, (struct bw_point){2.6, 1.1}, terms, &error), BW_OK);
+    assert_int_equal(bw_room_terms_at(&plan.room, &handpiece.source, (struct bw_point){2.6, 1.1}, terms, &error),
+                     BW_OK);
     bw_hazard_term_ratios(&handpiece.direct, 0.5, want);
     for (size_t i = 0; i < handpiece.direct.term_count; i++)
         near("term", terms[i], want[i], 1e-9 * want[i]);
@@ -496,7 +501,8 @@ static void test_mirrored_room(void **state) {
     bw_room_solution_free(&solutions[1]);
 }
 
-/* ---- monotony ----------------------------------------------------------------------------------------------------- */
+/* ---- monotony -----------------------------------------------------------------------------------------------------
+ */
 
 static void furnished(struct plan *plan) {
     box_plan(plan, 0, 0, 5, 4, 0.05);
@@ -552,7 +558,8 @@ static void test_reflector(void **state) {
     bw_room_solution_free(&after);
 }
 
-/* ---- refusals ------------------------------------------------------------------------------------------------------ */
+/* ---- refusals ------------------------------------------------------------------------------------------------------
+ */
 
 static void refused(const struct plan *plan, const struct handpiece *handpiece, const char *part) {
     struct bw_room_solution solution;
@@ -593,7 +600,8 @@ static void test_refusals(void **state) {
     plan.areas[0].aim_to_deg = -1;
     refused(&plan, &handpiece, "aims");
     plan.areas[0].aim_to_deg = 360;
-    assert_int_equal(bw_room_at(&plan.room, &handpiece.source, 1, (struct bw_point){NAN, 0}, &place, NULL), BW_ARGUMENT);
+    assert_int_equal(bw_room_at(&plan.room, &handpiece.source, 1, (struct bw_point){NAN, 0}, &place, NULL),
+                     BW_ARGUMENT);
     assert_true(isnan(place.ratio));
 }
 

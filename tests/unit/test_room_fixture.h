@@ -33,8 +33,7 @@ struct handpiece {
     struct bw_room_source source;
 };
 
-static inline void prepare(struct handpiece *handpiece, double diffuse_s)
-{
+static inline void prepare(struct handpiece *handpiece, double diffuse_s) {
     struct bw_error error = {BW_OK, ""};
     const struct bw_table *table = bw_tables_find("iec-60825-1-2014");
     struct bw_viewing_case glance = {BW_EYE, 100, 0, 0}, long_look = {BW_EYE, diffuse_s, 0, 0};
@@ -46,8 +45,7 @@ static inline void prepare(struct handpiece *handpiece, double diffuse_s)
 }
 
 /* One continuous emission at 810 nm. */
-static inline void lamp(struct handpiece *handpiece, double power_w, double exit_m, double divergence_rad)
-{
+static inline void lamp(struct handpiece *handpiece, double power_w, double exit_m, double divergence_rad) {
     memset(handpiece, 0, sizeof *handpiece);
     struct bw_emission_input input = {810, power_w, NAN, NAN, NAN, NAN};
     struct bw_error error = {BW_OK, ""};
@@ -58,12 +56,10 @@ static inline void lamp(struct handpiece *handpiece, double power_w, double exit
 }
 
 /* Three wavelengths, one of them superpulsed, as in the design. */
-static inline void trident(struct handpiece *handpiece)
-{
+static inline void trident(struct handpiece *handpiece) {
     memset(handpiece, 0, sizeof *handpiece);
-    struct bw_emission_input inputs[3] = {{810, 8, NAN, NAN, NAN, NAN},
-                                          {905, NAN, 75, NAN, 150e-9, 10000},
-                                          {650, 0.002, NAN, NAN, NAN, NAN}};
+    struct bw_emission_input inputs[3] = {
+        {810, 8, NAN, NAN, NAN, NAN}, {905, NAN, 75, NAN, 150e-9, 10000}, {650, 0.002, NAN, NAN, NAN, NAN}};
     struct bw_error error = {BW_OK, ""};
     for (size_t i = 0; i < 3; i++) {
         assert_int_equal(bw_emission_resolve(&inputs[i], &handpiece->output.emissions[i], &error), BW_OK);
@@ -74,22 +70,19 @@ static inline void trident(struct handpiece *handpiece)
     prepare(handpiece, 100);
 }
 
-static inline struct bw_material material(enum bw_finish finish, double reflectance, double transmittance)
-{
+static inline struct bw_material material(enum bw_finish finish, double reflectance, double transmittance) {
     struct bw_material made = {.finish = finish, .reflectance = reflectance, .transmittance = transmittance};
     if (finish == BW_GLOSS || finish == BW_GLASS)
         made.refractive_index = 1.52;
     return made;
 }
 
-static inline struct bw_material dark(void)
-{
+static inline struct bw_material dark(void) {
     return material(BW_MATT, 0, 0);
 }
 
 /* Black walls, nothing treated that reflects, no bounces: only what a test adds shines. */
-static inline void begin_plan(struct plan *plan, const struct bw_point *outline, size_t count, double grid_m)
-{
+static inline void begin_plan(struct plan *plan, const struct bw_point *outline, size_t count, double grid_m) {
     memset(plan, 0, sizeof *plan);
     memcpy(plan->outline, outline, count * sizeof *outline);
     plan->room.outline = (struct bw_polygon){plan->outline, count};
@@ -101,15 +94,13 @@ static inline void begin_plan(struct plan *plan, const struct bw_point *outline,
     plan->room.persons = plan->persons;
 }
 
-static inline void box_plan(struct plan *plan, double x0, double y0, double x1, double y1, double grid_m)
-{
+static inline void box_plan(struct plan *plan, double x0, double y0, double x1, double y1, double grid_m) {
     const struct bw_point outline[4] = {{x0, y0}, {x1, y0}, {x1, y1}, {x0, y1}};
     begin_plan(plan, outline, 4, grid_m);
 }
 
 static inline void add_area(struct plan *plan, const struct bw_point *points, size_t count, double from_deg,
-                            double to_deg)
-{
+                            double to_deg) {
     size_t i = plan->room.area_count++;
     memcpy(plan->area_points[i], points, count * sizeof *points);
     plan->areas[i].outline = (struct bw_polygon){plan->area_points[i], count};
@@ -118,20 +109,17 @@ static inline void add_area(struct plan *plan, const struct bw_point *points, si
     snprintf(plan->areas[i].name, sizeof plan->areas[i].name, "area-%zu", i);
 }
 
-static inline void add_point_area(struct plan *plan, double x, double y)
-{
+static inline void add_point_area(struct plan *plan, double x, double y) {
     const struct bw_point at = {x, y};
     add_area(plan, &at, 1, 0, 360);
 }
 
-static inline void add_couch(struct plan *plan, double x0, double y0, double x1, double y1)
-{
+static inline void add_couch(struct plan *plan, double x0, double y0, double x1, double y1) {
     const struct bw_point points[4] = {{x0, y0}, {x1, y0}, {x1, y1}, {x0, y1}};
     add_area(plan, points, 4, 0, 360);
 }
 
-static inline void add_surface(struct plan *plan, double x0, double y0, double x1, double y1, struct bw_material made)
-{
+static inline void add_surface(struct plan *plan, double x0, double y0, double x1, double y1, struct bw_material made) {
     struct bw_surface *surface = &plan->surfaces[plan->room.surface_count];
     snprintf(surface->name, sizeof surface->name, "surface-%zu", plan->room.surface_count++);
     surface->segment = (struct bw_segment){{x0, y0}, {x1, y1}};
@@ -139,8 +127,7 @@ static inline void add_surface(struct plan *plan, double x0, double y0, double x
 }
 
 static inline struct bw_opening *add_opening(struct plan *plan, double x0, double y0, double x1, double y1,
-                                             enum bw_opening_kind kind, enum bw_cover cover)
-{
+                                             enum bw_opening_kind kind, enum bw_cover cover) {
     struct bw_opening *opening = &plan->openings[plan->room.opening_count];
     snprintf(opening->name, sizeof opening->name, "opening-%zu", plan->room.opening_count++);
     opening->segment = (struct bw_segment){{x0, y0}, {x1, y1}};
@@ -149,20 +136,18 @@ static inline struct bw_opening *add_opening(struct plan *plan, double x0, doubl
     return opening;
 }
 
-static inline void add_person(struct plan *plan, double x, double y)
-{
+static inline void add_person(struct plan *plan, double x, double y) {
     plan->persons[plan->room.person_count++].at = (struct bw_point){x, y};
 }
 
-static inline void solve(const struct plan *plan, const struct handpiece *handpiece, struct bw_room_solution *solution)
-{
+static inline void solve(const struct plan *plan, const struct handpiece *handpiece,
+                         struct bw_room_solution *solution) {
     struct bw_error error = {BW_OK, ""};
     if (bw_room_solve(&plan->room, &handpiece->source, 1, solution, &error) != BW_OK)
         fail_msg("%s", error.text);
 }
 
-static inline size_t cell_at(const struct bw_room_map *map, double x, double y)
-{
+static inline size_t cell_at(const struct bw_room_map *map, double x, double y) {
     size_t column = (size_t)fmax(0, floor((x - map->origin.x_m) / map->cell_m));
     size_t row = (size_t)fmax(0, floor((y - map->origin.y_m) / map->cell_m));
     column = column < map->columns ? column : map->columns - 1;
@@ -170,8 +155,7 @@ static inline size_t cell_at(const struct bw_room_map *map, double x, double y)
     return row * map->columns + column;
 }
 
-static inline double ratio_at(const struct bw_room_map *map, double x, double y)
-{
+static inline double ratio_at(const struct bw_room_map *map, double x, double y) {
     return map->ratio[cell_at(map, x, y)];
 }
 

@@ -38,7 +38,8 @@ static double share_at(const struct angle_case *angle, struct bw_material made) 
         fail_msg("%s", error.text);
     assert_int_equal(place.path, BW_PATH_MIRROR);
     double length_m = (1. + up) * hypot(1., angle->tangent), ratio = bw_hazard_ratio(&handpiece.direct, length_m);
-    if (!(fabs(place.length_m - length_m) <= 1e-12 * length_m) || !(fabs(place.ratio - place.share * ratio) <= 1e-9 * ratio))
+    if (!(fabs(place.length_m - length_m) <= 1e-12 * length_m) ||
+        !(fabs(place.ratio - place.share * ratio) <= 1e-9 * ratio))
         fail_msg("length %.15g, want %.15g", place.length_m, length_m);
     return place.share;
 }

@@ -5,7 +5,8 @@
 
 enum { ROOMS = 25, RAYS = 8000, STEPS = 5, DIFFUSE_EVERY = 8 };
 
-/* ---- numbers (xorshift; the same on every machine) ------------------------------------------------------------------ */
+/* ---- numbers (xorshift; the same on every machine) ------------------------------------------------------------------
+ */
 
 static double draw(uint64_t *state) {
     *state ^= *state << 13;
@@ -18,7 +19,8 @@ static double between(uint64_t *state, double low, double high) {
     return low + (high - low) * draw(state);
 }
 
-/* ---- rooms ----------------------------------------------------------------------------------------------------------- */
+/* ---- rooms
+ * ----------------------------------------------------------------------------------------------------------- */
 
 static struct bw_material any_material(uint64_t *state) {
     switch ((int)(draw(state) * 6)) {
@@ -68,7 +70,8 @@ static void any_room(struct plan *plan, uint64_t *state, int index) {
         add_opening(plan, 1, 0, 2, 0, index % 2 == 0 ? BW_WINDOW : BW_DOOR, BW_COVER_NONE);
 }
 
-/* ---- the tracer -------------------------------------------------------------------------------------------------------- */
+/* ---- the tracer
+ * -------------------------------------------------------------------------------------------------------- */
 
 struct wall {
     struct bw_segment segment;
@@ -92,11 +95,11 @@ static void build_world(struct world *world) {
         world->walls[world->count++] = (struct wall){room->surfaces[i].segment, room->surfaces[i].material};
     for (size_t i = 0; i < room->opening_count; i++)
         world->walls[world->count++] =
-            (struct wall){room->openings[i].segment, room->openings[i].kind == BW_DOOR ? material(BW_MATT, 1, 0)
-                                                                                       : material(BW_GLASS, 0, 0)};
+            (struct wall){room->openings[i].segment,
+                          room->openings[i].kind == BW_DOOR ? material(BW_MATT, 1, 0) : material(BW_GLASS, 0, 0)};
     for (size_t i = 0; i < room->outline.count; i++)
-        world->walls[world->count++] = (struct wall){
-            {room->outline.points[i], room->outline.points[(i + 1) % room->outline.count]}, room->walls};
+        world->walls[world->count++] =
+            (struct wall){{room->outline.points[i], room->outline.points[(i + 1) % room->outline.count]}, room->walls};
 }
 
 /* Distance along the ray to the segment; infinite if it is missed. */
@@ -228,7 +231,8 @@ static void throw_rays(struct world *world, uint64_t *state) {
     }
 }
 
-/* ---- the tests ----------------------------------------------------------------------------------------------------------- */
+/* ---- the tests
+ * ----------------------------------------------------------------------------------------------------------- */
 
 static uint64_t start_of(int index) {
     return UINT64_C(0x9E3779B97F4A7C15) * (uint64_t)(index + 1);
