@@ -58,6 +58,13 @@ struct bw_pair_verdict {
 void bw_eyewear_judge(const struct bw_goggles *goggles, const struct bw_output *output,
                       const double od_required[BW_EMISSIONS_MAX], struct bw_pair_verdict *verdict);
 
+/* The same, and what the equal shares would refuse passes if all that comes through these goggles together keeps the
+ * limit: an aiming beam that they let through by design is no reason to refuse a pair that stops the rest.
+ * term_ratios: at the place, without eyewear (bw_hazard_term_ratios). */
+void bw_eyewear_judge_together(const struct bw_goggles *goggles, const struct bw_hazard *hazard,
+                               const double term_ratios[BW_TERMS_MAX], const double od_required[BW_EMISSIONS_MAX],
+                               struct bw_pair_verdict *verdict);
+
 #ifdef __cplusplus
 }
 #endif

@@ -124,6 +124,8 @@ enum bw_status bw_hazard_diffuse_reach(const struct bw_hazard *hazard, const str
  * below c keeps its own. OD = log10(ratio / c), 0 where none is needed. */
 void bw_hazard_optical_density(const struct bw_hazard *hazard, const double term_ratios[BW_TERMS_MAX],
                                double od[BW_EMISSIONS_MAX]);
+/* The largest sum over terms that add; NAN if a ratio is. */
+double bw_hazard_total(const struct bw_hazard *hazard, const double term_ratios[BW_TERMS_MAX]);
 /* Term ratios at a distance, for bw_hazard_optical_density. */
 void bw_hazard_term_ratios(const struct bw_hazard *hazard, double distance_m, double term_ratios[BW_TERMS_MAX]);
 

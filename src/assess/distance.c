@@ -67,7 +67,7 @@ static struct bw_spot smallest_spot(const struct bw_output *output) {
 }
 
 /* Each term at its worst, at the exit or beyond. */
-static void worst_terms(const struct bw_hazard *hazard, double worst[BW_TERMS_MAX]) {
+void assess_worst_terms(const struct bw_hazard *hazard, double worst[BW_TERMS_MAX]) {
     double here[BW_TERMS_MAX];
     bw_hazard_term_ratios(hazard, 0., worst);
     for (size_t i = 0; i < hazard->output->count; i++) {
@@ -123,8 +123,8 @@ static void find_governing(const struct bw_hazard *hazard, size_t *emission, str
 static enum bw_status emissions(struct bw_distance_result *distance, struct bw_error *error) {
     const struct bw_hazard *direct = distance->direct;
     double eye[BW_TERMS_MAX] = {0}, skin[BW_TERMS_MAX] = {0}, od[BW_EMISSIONS_MAX] = {0};
-    worst_terms(direct, eye);
-    worst_terms(distance->skin_view, skin);
+    assess_worst_terms(direct, eye);
+    assess_worst_terms(distance->skin_view, skin);
     bw_hazard_optical_density(direct, eye, od);
     for (size_t i = 0; i < direct->output->count; i++) {
         struct bw_emission_result *emission = &distance->emissions[i];

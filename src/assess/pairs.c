@@ -6,14 +6,15 @@ void assess_pairs(const struct assess_job *job) {
     for (size_t i = 0; i < job->the_case->eyewear_count; i++) {
         for (size_t j = 0; j < result->distance_count; j++) {
             const struct bw_distance_result *distance = &result->distances[j];
-            double od[BW_EMISSIONS_MAX] = {0};
+            double od[BW_EMISSIONS_MAX] = {0}, terms[BW_TERMS_MAX] = {0};
+            assess_worst_terms(distance->direct, terms);
             for (size_t k = 0; k < distance->direct->output->count; k++)
                 od[k] = distance->emissions[k].optical_density;
             struct bw_pair_result *pair = &result->pairs[result->pair_count++];
             pair->eyewear = i;
             pair->laser = distance->laser;
             pair->handpiece = distance->handpiece;
-            bw_eyewear_judge(&job->the_case->eyewear[i], distance->direct->output, od, &pair->verdict);
+            bw_eyewear_judge_together(&job->the_case->eyewear[i], distance->direct, terms, od, &pair->verdict);
         }
     }
 }

@@ -49,7 +49,8 @@ static bool keep_density(struct bw_person_result *person, double wavelength_nm, 
 }
 
 static void judge(const struct assess_job *job, const struct bw_room_result *room, size_t index,
-                  const struct bw_distance_result *distance, const double od[BW_EMISSIONS_MAX]) {
+                  const struct bw_distance_result *distance, const double terms[BW_TERMS_MAX],
+                  const double od[BW_EMISSIONS_MAX]) {
     const struct bw_person *person = &job->the_case->rooms[room->room].persons[index];
     struct bw_person_result *result = &room->persons[index];
     if (!person->has_eyewear)
@@ -61,7 +62,7 @@ static void judge(const struct assess_job *job, const struct bw_room_result *roo
                                     .is_place = true,
                                     .room = room->room,
                                     .person = index};
-    bw_eyewear_judge(&job->the_case->eyewear[person->eyewear], distance->direct->output, od, &pair->verdict);
+    bw_eyewear_judge_together(&job->the_case->eyewear[person->eyewear], distance->direct, terms, od, &pair->verdict);
     if (!result->has_verdict || pair->verdict.verdict > result->verdict)
         result->verdict = pair->verdict.verdict;
     result->has_verdict = true;
@@ -82,7 +83,7 @@ static enum bw_status densities(const struct assess_job *job, const struct bw_ro
         if (!keep_density(&room->persons[index], distance->direct->output->emissions[i].wavelength_nm, od[i]))
             return bw_error_set(job->error, BW_ARGUMENT, "room %s: more than %zu wavelengths are used in it",
                                 the_room->name, sizeof room->persons[0].od / sizeof room->persons[0].od[0]);
-    judge(job, room, index, distance, od);
+    judge(job, room, index, distance, terms, od);
     return BW_OK;
 }
 

@@ -4,6 +4,7 @@
 #include <math.h>
 #include <stdio.h>
 #include <stdlib.h>
+#include <string.h>
 
 /* What a printed number is allowed to be off (base, bw_format): a density that is the requirement but for the last
  * digits of the arithmetic is the requirement. 1e-12 of it is 3e-11 of the transmittance. */
@@ -83,5 +84,38 @@ void bw_eyewear_judge(const struct bw_goggles *goggles, const struct bw_output *
         judge_emission(goggles, output->emissions[i].wavelength_nm, &verdict->emissions[i]);
         if (verdict->emissions[i].verdict > verdict->verdict)
             verdict->verdict = verdict->emissions[i].verdict;
+    }
+}
+
+/* What comes through the goggles, all together. An emission without a rating is not weakened at all. */
+static double ratio_behind(const struct bw_goggles *goggles, const struct bw_hazard *hazard,
+                           const double term_ratios[BW_TERMS_MAX]) {
+    double behind[BW_TERMS_MAX];
+    for (size_t i = 0; i < hazard->term_count; i++) {
+        const struct bw_emission *emission = &hazard->output->emissions[hazard->terms[i].emission];
+        const struct bw_rating *rating = bw_eyewear_rating(goggles, emission->wavelength_nm);
+        behind[i] = rating ? term_ratios[i] * pow(10., -rating->optical_density) : term_ratios[i];
+    }
+    return bw_hazard_total(hazard, behind);
+}
+
+/* Goggles against all that arrives at a place.
+ * Given:    goggles; hazard  direct view; term_ratios  without eyewear; od_required  the equal shares
+ * Returned: verdict  as bw_eyewear_judge, but sufficient if the sum behind the goggles is 1 or below
+ * Notes:    The shares are one way to keep the sum and not the only one; that the sum is kept is what protects. */
+void bw_eyewear_judge_together(const struct bw_goggles *goggles, const struct bw_hazard *hazard,
+                               const double term_ratios[BW_TERMS_MAX], const double od_required[BW_EMISSIONS_MAX],
+                               struct bw_pair_verdict *verdict) {
+    bw_eyewear_judge(goggles, hazard->output, od_required, verdict);
+    if (verdict->verdict == BW_SUFFICIENT || !(ratio_behind(goggles, hazard, term_ratios) <= 1.))
+        return;
+    verdict->verdict = BW_SUFFICIENT;
+    for (size_t i = 0; i < verdict->count; i++) {
+        struct bw_emission_verdict *emission = &verdict->emissions[i];
+        if (emission->verdict == BW_SUFFICIENT)
+            continue;
+        emission->verdict = BW_SUFFICIENT;
+        size_t length = strlen(emission->reason);
+        snprintf(emission->reason + length, sizeof emission->reason - length, "; all together keep the limit");
     }
 }

@@ -65,6 +65,12 @@ void bw_hazard_combine(const struct bw_hazard *hazard, const double ratios[BW_TE
         }
 }
 
+/* Given: hazard, term_ratios  one a term, such as those behind goggles.
+ * Returns: the largest sum over terms that add; 1 or below keeps the limit; NAN if a ratio is */
+double bw_hazard_total(const struct bw_hazard *hazard, const double term_ratios[BW_TERMS_MAX]) {
+    return bw_hazard_largest_sum(hazard, term_ratios, BW_EMISSIONS_MAX);
+}
+
 /* Given: hazard, distance_m from the exit along the axis.
  * Returns: the largest sum over terms that add; 1 or below keeps the limit; NAN for a bad distance */
 double bw_hazard_ratio(const struct bw_hazard *hazard, double distance_m) {
