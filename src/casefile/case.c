@@ -146,14 +146,21 @@ static enum bw_status judge_rest(const struct bw_text *bytes, struct bw_case **t
     struct bw_ini ini = {0};
     struct bw_faults again = {0};
     enum bw_status status = BW_INPUT;
-    if (repair_lines(bytes, faults, &plain, &lost) &&
-        bw_ini_read_bytes(plain.data, plain.length, &ini, &again, NULL) == BW_OK)
+    if (repair_lines(bytes, faults, &plain, &lost))
+        status = bw_ini_read_bytes(plain.data, plain.length, &ini, &again, NULL);
+    if (status == BW_OK)
         status = read_case(&ini, &lost, the_case, faults, error);
+    bool no_memory = lost.no_memory || status == BW_NO_MEMORY;
+    if (no_memory) {
+        if (error) /* of the guard's first fault */
+            *error = (struct bw_error){0};
+        bw_error_set(error, BW_NO_MEMORY, "out of memory");
+    }
     bw_faults_free(&again);
     bw_ini_free(&ini);
     bw_text_free(&plain);
     free(lost.lines);
-    return status;
+    return no_memory ? BW_NO_MEMORY : BW_INPUT;
 }
 
 /* A case from a file.

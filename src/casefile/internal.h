@@ -83,6 +83,7 @@ struct lost_lines {
     int *lines;
     size_t count, capacity;
     bool sections; /* among them the head of a section */
+    bool no_memory;
 };
 bool repair_lines(const struct bw_text *bytes, const struct bw_faults *faults, struct bw_text *plain,
                   struct lost_lines *lost);
@@ -165,8 +166,6 @@ void read_uses(struct reading *reading);
 enum presence read_beam(struct reading *reading, const struct section *section, struct bw_beam *beam);
 /* Whether everything is where it can be. */
 void check_room(struct reading *reading, const struct section *room);
-/* Whether a segment stays inside an outline. Its edge counts. */
-bool outline_holds_segment(const struct bw_polygon *outline, struct bw_segment segment);
 
 /* ---- texts ---------------------------------------------------------------------------------- */
 

@@ -16,8 +16,10 @@ static bool lose(struct lost_lines *lost, int line) {
     if (lost->count == lost->capacity) {
         size_t capacity = lost->capacity * 2 + 16;
         int *lines = realloc(lost->lines, capacity * sizeof *lines);
-        if (!lines)
+        if (!lines) {
+            lost->no_memory = true;
             return false;
+        }
         lost->lines = lines;
         lost->capacity = capacity;
     }
@@ -51,5 +53,6 @@ bool repair_lines(const struct bw_text *bytes, const struct bw_faults *faults, s
         bw_text_add_bytes(plain, "\n", 1);
         at += length + 1;
     }
-    return done && !plain->failed;
+    lost->no_memory = lost->no_memory || plain->failed;
+    return done && !lost->no_memory;
 }

@@ -82,12 +82,12 @@ static double meeting(struct bw_segment s, struct bw_segment wall) {
 }
 
 /* Between two places where it meets the outline, a segment is inside or outside as a whole. */
-bool outline_holds_segment(const struct bw_polygon *outline, struct bw_segment segment) {
+static bool holds_segment(struct reading *reading, const struct bw_polygon *outline, struct bw_segment segment) {
     if (!bw_polygon_contains(outline, segment.from) || !bw_polygon_contains(outline, segment.to))
         return false;
-    double *parts = malloc((outline->count + 2) * sizeof *parts);
+    double *parts = reading_allocate(reading, outline->count + 2, sizeof *parts);
     if (!parts)
-        return false;
+        return true; /* the case is refused all the same */
     size_t count = 0;
     parts[count++] = 0.;
     parts[count++] = 1.;
@@ -117,7 +117,7 @@ static void check_surface(struct reading *reading, const struct section *section
         outside(reading, value_entry(section, "from", NULL), room);
     if (!to)
         outside(reading, value_entry(section, "to", NULL), room);
-    if (from && to && !outline_holds_segment(&room->outline, segment))
+    if (from && to && !holds_segment(reading, &room->outline, segment))
         fault_section(reading, section,
                       "leaves the outline of room %s between its ends; one surface a wall would be right", room->name);
 }
@@ -139,7 +139,7 @@ static void check_area(struct reading *reading, const struct section *section, c
             return;
         }
     for (size_t i = 0; i < polygon->count; i++)
-        if (!outline_holds_segment(&room->outline, edge(polygon, i))) {
+        if (!holds_segment(reading, &room->outline, edge(polygon, i))) {
             fault_key(reading, entry, "leaves the outline of room %s after point %zu; an area inside would be right",
                       room->name, i + 1);
             return;
