@@ -2,6 +2,7 @@
 #include "internal.h"
 
 #include <math.h>
+#include <string.h>
 
 static const struct range diameters_m = {1e-6, 1.}, focal_lengths_m = {1e-3, 100.};
 static const struct range apertures = {0.01, 1.}, cores_m = {1e-6, 0.1};
@@ -55,10 +56,19 @@ static enum presence read_divergence(struct reading *reading, const struct secti
 }
 
 static enum presence read_definition(struct reading *reading, const struct section *section,
-                                     enum bw_diameter_definition *definition) {
+                                     const struct section *handpiece, enum bw_diameter_definition *definition) {
+    enum { DEFINITIONS = sizeof definitions / sizeof *definitions };
+    static const char key[] = "diameter_definition";
     size_t index = 0;
-    enum presence presence = value_choice(reading, section, "diameter_definition", definition_words,
-                                          sizeof definitions / sizeof *definitions, &index);
+    enum presence presence = value_choice(reading, section, key, definition_words, DEFINITIONS, &index);
+    const struct bw_ini_entry *general = handpiece ? value_entry(handpiece, key, NULL) : NULL;
+    if (presence == ABSENT && general) {
+        while (index < DEFINITIONS && strcmp(general->value, definition_words[index]) != 0)
+            index++;
+        if (index == DEFINITIONS)
+            return WRONG; /* told at the handpiece */
+        presence = GIVEN;
+    }
     *definition = definitions[index];
     if (presence == ABSENT && !section->lost_key)
         fault_section(
@@ -91,14 +101,15 @@ static enum presence through_lens(struct reading *reading, const struct section 
     return GIVEN;
 }
 
-static enum presence read_diameter(struct reading *reading, const struct section *section, struct bw_beam *beam) {
+static enum presence read_diameter(struct reading *reading, const struct section *section,
+                                   const struct section *handpiece, struct bw_beam *beam) {
     double diameter_m, divergence_rad;
     enum bw_diameter_definition definition;
     enum presence diameter = value_number(reading, section, "beam_diameter", diameters_m, &diameter_m);
     if (diameter == ABSENT)
         fault_missing(reading, section, "beam_diameter");
     enum presence divergence = read_divergence(reading, section, &divergence_rad);
-    enum presence defined = read_definition(reading, section, &definition);
+    enum presence defined = read_definition(reading, section, handpiece, &definition);
     if (diameter != GIVEN || divergence != GIVEN || defined != GIVEN)
         return WRONG;
     double d63_m = bw_diameter_to_d63(diameter_m, definition);
@@ -111,7 +122,8 @@ static enum presence read_diameter(struct reading *reading, const struct section
     return through_lens(reading, section, d63_m, beam->divergence_rad, beam) == WRONG ? WRONG : GIVEN;
 }
 
-enum presence read_beam(struct reading *reading, const struct section *section, struct bw_beam *beam) {
+enum presence read_beam(struct reading *reading, const struct section *section, const struct section *handpiece,
+                        struct bw_beam *beam) {
     static const char *const words[] = {"hyperbolic", "linear"};
     static const enum bw_spread spreads[] = {BW_HYPERBOLIC, BW_LINEAR};
     static const char *const keys[] = {"beam_diameter", "divergence", "diameter_definition", "divergence_definition",
@@ -122,7 +134,8 @@ enum presence read_beam(struct reading *reading, const struct section *section, 
     if (!any)
         return ABSENT;
     bool fibre = value_given(section, "fibre_na") || value_given(section, "fibre_core");
-    enum presence presence = fibre ? read_fibre(reading, section, beam) : read_diameter(reading, section, beam);
+    enum presence presence =
+        fibre ? read_fibre(reading, section, beam) : read_diameter(reading, section, handpiece, beam);
     size_t index = 0;
     enum presence spread = value_choice(reading, section, "spread", words, 2, &index);
     beam->spread = spreads[index];

@@ -6,11 +6,11 @@
 
 static const struct range exposures_s = {1e-13, 3e4}; /* what the published tables cover */
 
-static void read_emission_beam(struct reading *reading, struct section *section, const struct bw_laser *laser,
-                               struct bw_handpiece *handpiece) {
+static void read_emission_beam(struct reading *reading, const struct section *of, struct section *section,
+                               const struct bw_laser *laser, struct bw_handpiece *handpiece) {
     const struct section *emission = sections_refer(reading, section, SECTION_EMISSION, laser->name, section->names[2]);
     struct bw_beam beam = {0};
-    enum presence presence = read_beam(reading, section, &beam);
+    enum presence presence = read_beam(reading, section, of, &beam);
     if (presence == ABSENT && section->key_count == 0)
         fault_section(reading, section,
                       "has no beam; beam_diameter_mm and divergence_mrad would be right, or fibre_na "
@@ -22,10 +22,11 @@ static void read_emission_beam(struct reading *reading, struct section *section,
     handpiece->emission_beam_given[emission->index] = true;
 }
 
-static void read_emission_beams(struct reading *reading, const struct bw_laser *laser, struct bw_handpiece *handpiece) {
+static void read_emission_beams(struct reading *reading, const struct section *of, const struct bw_laser *laser,
+                                struct bw_handpiece *handpiece) {
     size_t at = 0;
     for (struct section *section; (section = sections_next(reading, &at, SECTION_BEAM, laser->name, handpiece->name));)
-        read_emission_beam(reading, section, laser, handpiece);
+        read_emission_beam(reading, of, section, laser, handpiece);
 }
 
 static bool all_have_beams(const struct bw_handpiece *handpiece) {
@@ -45,8 +46,8 @@ static void read_handpiece(struct reading *reading, const struct section *sectio
     handpiece->has_exposure = value_number(reading, section, "exposure", exposures_s, &handpiece->exposure_s) == GIVEN;
     output->count = laser->emission_count < BW_EMISSIONS_MAX ? laser->emission_count : BW_EMISSIONS_MAX;
     memcpy(output->emissions, laser->emissions, output->count * sizeof *output->emissions);
-    read_emission_beams(reading, laser, handpiece);
-    enum presence presence = read_beam(reading, section, &beam);
+    read_emission_beams(reading, section, laser, handpiece);
+    enum presence presence = read_beam(reading, section, NULL, &beam);
     if (presence == ABSENT && !all_have_beams(handpiece) && !section->lost_key && !reading->lost[SECTION_BEAM])
         fault_section(reading, section,
                       "has no beam; beam_diameter_mm and divergence_mrad would be right, or fibre_na "
@@ -78,7 +79,7 @@ static void check_owners(struct reading *reading) {
     for (size_t at = 0; (section = sections_next(reading, &at, SECTION_HANDPIECE, NULL, NULL));)
         if (!section->made) {
             sections_refer(reading, section, SECTION_LASER, section->names[0], NULL);
-            read_beam(reading, section, &beam);
+            read_beam(reading, section, NULL, &beam);
         }
     for (size_t at = 0; (section = sections_next(reading, &at, SECTION_BEAM, NULL, NULL));)
         if (!section->made && sections_refer(reading, section, SECTION_LASER, section->names[0], NULL))

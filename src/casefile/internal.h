@@ -162,8 +162,10 @@ void read_lasers(struct reading *reading);     /* with emissions */
 void read_handpieces(struct reading *reading); /* with beams */
 void read_rooms(struct reading *reading);      /* with what is in them */
 void read_uses(struct reading *reading);
-/* Geometry of a handpiece or beam. */
-enum presence read_beam(struct reading *reading, const struct section *section, struct bw_beam *beam);
+/* Geometry of a handpiece or beam. A beam takes the definition of diameters from its handpiece (may be NULL), unless it
+ * has one of its own. */
+enum presence read_beam(struct reading *reading, const struct section *section, const struct section *handpiece,
+                        struct bw_beam *beam);
 /* Whether everything is where it can be. */
 void check_room(struct reading *reading, const struct section *room);
 

@@ -65,7 +65,7 @@ static const char whole[] =
     "luminous_transmittance_pct = 38\n"
     "[use two trident spot-30]\n"
     "[material tray]\nfinish = mirror\nreflectance_pct = 60\ntransmittance_pct = 0\n"
-    "[beam trident spot-30 aiming]\nbeam_diameter_mm = 4\ndivergence_mrad = 12\ndiameter_definition = d86\n";
+    "[beam trident spot-30 aiming]\nbeam_diameter_mm = 4\ndivergence_mrad = 12\n";
 
 static void test_whole_laser(void **state) {
     (void)state;
@@ -127,7 +127,7 @@ static void test_whole_room(void **state) {
     near(c->eyewear[0].luminous_transmittance, .38, "luminous transmittance");
     assert_int_equal(c->use_count, 1);
     assert_true(c->uses[0].room == 0 && c->uses[0].laser == 0 && c->uses[0].handpiece == 0);
-    assert_int_equal(c->given.count, 55); /* 15 sections, 40 keys */
+    assert_int_equal(c->given.count, 54); /* 15 sections, 39 keys */
     assert_string_equal(c->given.entries[1].key, "title");
     bw_case_free(c);
 }
@@ -265,6 +265,26 @@ static void test_only_own_beams(void **state) {
     near(handpiece->output.beams[0].diameter_m, .4e-3, "core of a");
     near(handpiece->output.beams[1].diameter_m, .2e-3, "core of b");
     assert_true(handpiece->emission_beam_given[0] && handpiece->emission_beam_given[1]);
+    bw_case_free(c);
+}
+
+/* A beam has the definition of diameters of its handpiece or one of its own; nothing else of it. */
+static void test_definition_of_handpiece(void **state) {
+    (void)state;
+    struct bw_case *c = read_text(CASE "[laser heron]\n[emission heron a]\nwavelength_nm = 810\naverage_power_w = 8\n"
+                                       "[emission heron b]\nwavelength_nm = 650\naverage_power_mw = 1\n"
+                                       "[emission heron c]\nwavelength_nm = 660\naverage_power_mw = 1\n"
+                                       "[beam heron spot b]\nbeam_diameter_mm = 4\ndivergence_mrad = 10\n"
+                                       "[beam heron spot c]\nbeam_diameter_mm = 4\ndivergence_mrad = 10\n"
+                                       "diameter_definition = d86\n"
+                                       "[handpiece heron spot]\nbeam_diameter_mm = 30\ndivergence_mrad = 100\n"
+                                       "divergence_definition = half\ndiameter_definition = d63\nspread = linear\n");
+    const struct bw_beam *beams_of = c->lasers[0].handpieces[0].output.beams;
+    near(beams_of[0].divergence_rad, .2, "handpiece");
+    near(beams_of[1].diameter_m, .004, "d63, as the handpiece");
+    near(beams_of[1].divergence_rad, .01, "full angle, not as the handpiece");
+    assert_int_equal(beams_of[1].spread, BW_HYPERBOLIC);
+    near(beams_of[2].diameter_m, .004 * HALF_ROOT, "d86, its own");
     bw_case_free(c);
 }
 
@@ -598,6 +618,7 @@ static void test_no_such_file(void **state) {
 int main(void) {
     static void (*const single[])(void **) = {
         test_whole_laser,
+        test_definition_of_handpiece,
         test_whole_room,
         test_only_own_beams,
         test_most_emissions,
@@ -616,6 +637,7 @@ int main(void) {
     };
     static const char *const names[] = {
         "the whole description: laser",
+        "definition of the handpiece",
         "the whole description: room",
         "only own beams",
         "most emissions",
