@@ -63,18 +63,22 @@ static double last_waist_m(const struct bw_output *output) {
 }
 
 /* The envelope falls with the length, so its value at the lower edge bounds the bin. Before a waist it is costly, so
- * there one value serves 16 bins. */
+ * there one value serves 16 bins; and it is found by closing in, so what is a hair larger farther off is kept. */
 enum bw_status bw_room_direct_curve(const struct bw_hazard *hazard, double far_m, struct curve *curve) {
     static const size_t coarse = 16;
     enum bw_status status = init(curve, 10, far_m);
     if (status != BW_OK)
         return status;
-    double waist_m = last_waist_m(hazard->output);
+    double waist_m = last_waist_m(hazard->output), largest = 0;
     curve->bound[0] = bw_hazard_ratio_envelope(hazard, 0);
     for (size_t i = 0; i < curve->bins; i++) {
         double edge_m = lower_edge_m(curve, i);
         bool fine = edge_m >= waist_m || i % coarse == 0;
         curve->bound[i + 1] = fine ? bw_hazard_ratio_envelope(hazard, edge_m) : curve->bound[i];
+    }
+    for (size_t i = curve->bins + 1; i-- > 0;) {
+        largest = isnan(curve->bound[i]) ? HUGE_VAL : fmax(largest, curve->bound[i]); /* unknown is not safe */
+        curve->bound[i] = largest;
     }
     return BW_OK;
 }

@@ -91,20 +91,25 @@ static void add_parts(struct sweep *sweep, const struct target *target, const st
     }
 }
 
-/* Drops what a clear part outdoes everywhere in the block. Returns: the number left; clear: of them all. */
+/* Drops what a clear part outdoes everywhere in the block: no cell of it is farther from that part than its distance
+ * and the block's size. Returns: the number left; clear: of them all. */
 static size_t drop_outdone(struct sweep *sweep, const struct target *target, size_t first, bool *clear) {
     struct workspace *workspace = &sweep->scene->workspace;
+    size_t best = workspace->part_count, kept = first;
     double certain = 0;
     for (size_t i = first; i < workspace->part_count; i++) {
         const struct part *part = &workspace->parts[i];
-        if (part->clear) /* no cell of the block is farther from it than this */
-            certain =
-                fmax(certain, part->total_share * bw_room_bound_at(sweep->light, part->length_m + target->size_m));
+        if (!part->clear)
+            continue;
+        double least = part->total_share * bw_room_bound_at(sweep->light, part->length_m + target->size_m);
+        if (least > certain) {
+            certain = least;
+            best = i;
+        }
     }
-    size_t kept = first;
     *clear = true;
     for (size_t i = first; i < workspace->part_count; i++)
-        if (workspace->parts[i].bound >= certain) {
+        if (workspace->parts[i].bound >= certain || i == best) {
             *clear = *clear && workspace->parts[i].clear;
             workspace->parts[kept++] = workspace->parts[i];
         }

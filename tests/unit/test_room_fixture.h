@@ -71,6 +71,14 @@ static inline void trident(struct handpiece *handpiece) {
     prepare(handpiece, 100);
 }
 
+/* A lens that focuses at 0.4 m, and a wide top hat beside it. */
+static inline void lens(struct handpiece *handpiece) {
+    trident(handpiece);
+    handpiece->output.beams[0] = (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, 0.002, 0.05, 0.4, 0.02};
+    handpiece->output.beams[1] = (struct bw_beam){BW_TOP_HAT, BW_LINEAR, 0.01, 0.3, 0, 0.01};
+    prepare(handpiece, 100);
+}
+
 static inline struct bw_material material(enum bw_finish finish, double reflectance, double transmittance) {
     struct bw_material made = {.finish = finish, .reflectance = reflectance, .transmittance = transmittance};
     if (finish == BW_GLOSS || finish == BW_GLASS)

@@ -1,6 +1,6 @@
 /* room: never optimistic. A tracer of its own, as simple as can be, throws rays at random over random rooms: no ray
- * may find a place where its ratio exceeds the map's cell. And not idle: most cells in reach are close to the worst ray
- * that a dense search finds. */
+ * may find a place where its ratio exceeds the map's cell. And not too cautious: in 95 % of the cells in reach the map
+ * is within 10 % of the worst that a dense search finds. */
 #include "test_room_fixture.h"
 
 enum { ROOMS = 25, RAYS = 8000, STEPS = 5, DIFFUSE_EVERY = 8 };
@@ -83,7 +83,6 @@ struct world {
     const struct bw_room_solution *solution;
     size_t count;
     struct wall walls[2 * ROOM_PARTS];
-    double *best; /* of each cell, from rays */
     unsigned long rays, places;
 };
 
@@ -116,8 +115,6 @@ static void compare(struct world *world, struct bw_point at, double ratio, const
         return;
     size_t cell = cell_at(map, at.x_m, at.y_m);
     world->places++;
-    if (ratio > world->best[cell])
-        world->best[cell] = ratio;
     if (!(ratio <= map->ratio[cell] * (1 + 1e-9)))
         fail_msg("%s ray at %.6g %.6g: %.12g, but the map says %.12g (%s)", what, at.x_m, at.y_m, ratio,
                  map->ratio[cell], bw_path_name((enum bw_path_kind)map->path[cell]));
@@ -163,6 +160,18 @@ static double mirror_share(const struct bw_material *made, double cosine) {
 
 static double matt_share(const struct bw_material *made) {
     return made->finish == BW_MATT ? made->reflectance : made->matt_reflectance;
+}
+
+/* Light beside the axis, straight from the exit: it too counts, and most of all beside the allowed aims. The bound of
+ * the beam itself is coarse by the width of a pupil, hence 2 %. */
+static void look_beside(struct world *world, uint64_t *state, struct bw_point at, double dx, double dy) {
+    double along_m = between(state, 0.2, 3), offset_m = between(state, -0.4, 0.4) * along_m;
+    struct bw_point place = {at.x_m + along_m * dx - offset_m * dy, at.y_m + along_m * dy + offset_m * dx};
+    double share = open_share(world, at, place);
+    if (share > 0)
+        compare(world, place,
+                share * bw_hazard_ratio_off_axis(&world->handpiece->direct, along_m, fabs(offset_m)) / 1.02,
+                "sideways");
 }
 
 /* One leg after the other until nothing is left. */
@@ -226,6 +235,7 @@ static void throw_rays(struct world *world, uint64_t *state) {
         double bearing = between(state, area->aim_from_deg, area->aim_to_deg) * bw_pi / 180;
         struct bw_point at = any_position(&area->outline, state);
         follow(world, state, at, sin(bearing), cos(bearing), i % DIFFUSE_EVERY == 0);
+        look_beside(world, state, at, sin(bearing), cos(bearing));
         if (i % DIFFUSE_EVERY == 0)
             scatter(world, state, at, 0, world->plan->room.treated.reflectance);
     }
@@ -245,30 +255,77 @@ static void test_room_of_rays(void **state) {
     struct handpiece *handpiece = malloc(sizeof *handpiece);
     struct bw_room_solution solution;
     assert_true(plan != NULL && handpiece != NULL);
-    trident(handpiece);
+    if (index % 4 == 3)
+        lens(handpiece);
+    else
+        trident(handpiece);
     any_room(plan, &numbers, index);
     solve(plan, handpiece, &solution);
     struct world world = {.plan = plan, .handpiece = handpiece, .solution = &solution};
     build_world(&world);
-    world.best = calloc(solution.map.columns * solution.map.rows, sizeof *world.best);
-    assert_non_null(world.best);
     throw_rays(&world, &numbers);
     assert_true(world.rays == RAYS && world.places > RAYS);
-    free(world.best);
     bw_room_solution_free(&solution);
     free(plan);
     free(handpiece);
 }
 
+/* The worst of direct light in a cell, from 25 x 17 positions to 3 x 3 places. */
+static double dense_search(const struct world *world, size_t column, size_t row) {
+    const struct bw_room_map *map = &world->solution->map;
+    const struct bw_point *area = world->plan->room.areas[0].outline.points;
+    double worst = 0;
+    for (int k = 0; k < 425 * 9; k++) {
+        double s = k % 25 / 24., t = k / 25 % 17 / 16., u = k / 425 % 3 / 2., v = k / 1275 / 2.;
+        struct bw_point from = {area[0].x_m + s * (area[1].x_m - area[0].x_m) + t * (area[3].x_m - area[0].x_m),
+                                area[0].y_m + s * (area[1].y_m - area[0].y_m) + t * (area[3].y_m - area[0].y_m)};
+        struct bw_point to = {map->origin.x_m + ((double)column + u) * map->cell_m,
+                              map->origin.y_m + ((double)row + v) * map->cell_m};
+        double ratio = bw_hazard_ratio(&world->handpiece->direct, bw_distance(from, to));
+        if (ratio > worst)
+            worst = fmax(worst, ratio * open_share(world, from, to));
+    }
+    return worst;
+}
+
+static void test_tight(void **state) {
+    (void)state;
+    struct plan plan;
+    struct handpiece handpiece;
+    struct bw_room_solution solution;
+    trident(&handpiece);
+    box_plan(&plan, 0, 0, 5, 4, 0.05);
+    add_couch(&plan, 2, 1.6, 3.2, 2.4);
+    add_surface(&plan, 1, 1, 1.3, 2.5, dark());
+    add_surface(&plan, 3.8, 1.5, 4.2, 1.5, dark());
+    add_surface(&plan, 2, 3, 2.5, 3.2, dark());
+    add_surface(&plan, 2.5, 3.2, 3, 3, dark());
+    solve(&plan, &handpiece, &solution);
+    struct world world = {.plan = &plan, .handpiece = &handpiece, .solution = &solution};
+    build_world(&world);
+    unsigned reached = 0, tight = 0;
+    for (size_t row = 1; row < solution.map.rows - 1; row += 3)
+        for (size_t column = 1; column < solution.map.columns - 1; column += 3) {
+            double worst = dense_search(&world, column, row),
+                   map = solution.map.ratio[row * solution.map.columns + column];
+            reached += worst > 0;
+            tight += worst > 0 && map <= 1.1 * worst;
+        }
+    print_message("tight: %u of %u cells in reach within 10 %%\n", tight, reached);
+    assert_true(reached > 600 && tight >= 0.95 * reached);
+    bw_room_solution_free(&solution);
+}
+
 int main(void) {
     static int indices[ROOMS];
     static char names[ROOMS][64];
-    struct CMUnitTest tests[ROOMS];
+    struct CMUnitTest tests[ROOMS + 1];
     for (int i = 0; i < ROOMS; i++) {
         indices[i] = i;
         snprintf(names[i], sizeof names[i], "room %d, %d rays, numbers from %016llx", i, RAYS,
                  (unsigned long long)start_of(i));
         tests[i] = (struct CMUnitTest){names[i], test_room_of_rays, NULL, NULL, &indices[i]};
     }
+    tests[ROOMS] = (struct CMUnitTest)cmocka_unit_test(test_tight);
     return cmocka_run_group_tests_name("room: rays", tests, NULL, NULL) == 0 ? EXIT_SUCCESS : EXIT_FAILURE;
 }
