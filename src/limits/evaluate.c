@@ -14,7 +14,7 @@
 
 #include <math.h>
 
-/* The laws of the limits all at once: two square roots cost less than a guess which one a row wants. */
+/* The common laws all at once: two square roots cost less than a guess which one a row wants. */
 static void raise_time(struct query *query) {
     double half = sqrt(query->time_s), quarter = sqrt(half);
     query->time_powers[POWER_0] = 1.0;
@@ -25,7 +25,7 @@ static void raise_time(struct query *query) {
 }
 
 static double time_power(const struct query *query, const struct power *power) {
-    if (power->law == POWER_ANY || power->law == POWER_3_8) /* rare */
+    if (power->law >= POWER_COMMON)
         return bw_limits_raise(query->time_s, power);
     double value = query->time_powers[power->law];
     return power->inverse ? 1.0 / value : value;
@@ -268,6 +268,19 @@ static enum bw_status no_row(const struct query *query, struct bw_error *error) 
                         bw_limits_number(high, times.high));
 }
 
+/* Which of them is lower no processor can guess: chosen without a branch. */
+static size_t find_lowest(const struct bw_limit_set *limits) {
+    double lowest = limits->limits[0].radiant_exposure_j_m2;
+    size_t at = 0;
+    for (size_t i = 1; i < limits->count; i++) {
+        double value = limits->limits[i].radiant_exposure_j_m2;
+        bool keeps = lowest <= value;
+        at = keeps ? at : i;
+        lowest = keeps ? lowest : value;
+    }
+    return at;
+}
+
 enum bw_status bw_limits(const struct bw_table *table, enum bw_target target, const struct bw_exposure *exposure,
                          struct bw_limit_set *limits, struct bw_working *working, struct bw_error *error) {
     limits->count = limits->governing = 0;
@@ -287,9 +300,7 @@ enum bw_status bw_limits(const struct bw_table *table, enum bw_target target, co
     evaluate_cell(&query, plan, &plan->cells[cell_at(plan, query.wavelength_nm, query.time_s)], limits);
     if (limits->count == 0)
         return no_row(&query, error);
-    for (size_t i = 1; i < limits->count; i++)
-        if (!(limits->limits[limits->governing].radiant_exposure_j_m2 <= limits->limits[i].radiant_exposure_j_m2))
-            limits->governing = i;
+    limits->governing = find_lowest(limits);
     if (working != NULL)
         bw_working_lowest(&query, limits);
     return BW_OK;

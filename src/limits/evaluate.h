@@ -8,8 +8,8 @@ struct query {
     const struct bw_table *table;
     enum bw_target target;
     double wavelength_nm, time_s, subtense_mrad, area_m2;
-    double time_powers[POWER_LAWS]; /* time_s by each law, except POWER_ANY */
-    struct bw_working *working;     /* may be NULL */
+    double time_powers[POWER_COMMON]; /* time_s by each common law */
+    struct bw_working *working;       /* may be NULL */
 };
 
 /* The product as it grows, in symbols and in numbers; empty and unused without a working. */

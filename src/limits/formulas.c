@@ -1,6 +1,7 @@
 /* What one row says at one place: spans, powers, factors, time edges. Shared by the evaluator and the checker, so
  * that both read a table alike. */
 #include "internal.h"
+#include "power_of_ten.h"
 
 #include <math.h>
 
@@ -48,11 +49,9 @@ double bw_limits_raise(double base, const struct power *power) {
 }
 
 double bw_limits_factor_row(const struct factor_row *row, double x) {
-    static const double log2_of_10 =
-        3.321928094887362347870319429489390175865; /* exp2() takes a third of pow()'s time */
     if (row->constant)
         return row->offset + row->scale;
-    return row->offset + row->scale * exp2(log2_of_10 * (row->slope * (x - row->origin)));
+    return row->offset + row->scale * power_of_ten(row->slope * (x - row->origin));
 }
 
 double bw_limits_factor(const struct bw_table *table, int factor, double x, const struct power *power,

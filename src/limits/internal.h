@@ -31,9 +31,8 @@ struct span {
     bool open_low, open_high;
 };
 
-/* An exponent, with the law that the evaluator may use instead of pow(). */
-enum power_law { POWER_ANY, POWER_0, POWER_1_4, POWER_3_8, POWER_1_2, POWER_3_4, POWER_1 };
-enum { POWER_LAWS = 7 };
+/* An exponent, with the law that the evaluator may use instead of pow(). The common laws come first. */
+enum power_law { POWER_0, POWER_1_4, POWER_1_2, POWER_3_4, POWER_1, POWER_COMMON, POWER_3_8 = POWER_COMMON, POWER_ANY };
 struct power {
     double exponent;
     enum power_law law; /* of the exponent's magnitude */
@@ -185,7 +184,7 @@ struct band_index {
 
 /* Ascending cuts divide the numbers into zones: zone 0 lies below the first cut, zone k from cut k - 1 up to cut k. */
 struct cuts {
-    const double *at;
+    const double *at; /* NAN after the last: no number is at or above it */
     size_t count;
     const unsigned short *first; /* where to begin the search, by the leading bits of the number; see plan.h */
     size_t shift, lowest_key, key_count;

@@ -21,7 +21,7 @@ static inline size_t zone_of(const struct cuts *cuts, double x) {
     size_t key = leading_bits(x, cuts->shift);
     key = key < cuts->lowest_key ? 0 : key - cuts->lowest_key;
     size_t zone = cuts->first[key < cuts->key_count ? key : cuts->key_count - 1];
-    while (zone < cuts->count && x >= cuts->at[zone])
+    while (x >= cuts->at[zone])
         zone++;
     return zone;
 }

@@ -37,14 +37,36 @@ static void cut_span(const struct span *span, double *cuts, size_t *count) {
         span->open_high ? span->high : nextafter(span->high * (1.0 + limits_edge_rounding), limits_infinity);
 }
 
-static struct span times_of(const struct edge *from, const struct edge *to) {
-    return (struct span){from->factor == EDGE_IS_NUMBER ? from->value_s : 0.0,
-                         to->factor == EDGE_IS_NUMBER ? to->value_s : limits_infinity, false, false};
+/* Between these the value of a symbolic edge lies, whatever the wavelength and the source: each of its rows rises or
+ * falls from end to end. The edge itself is asked; the bound only has to be wide enough. */
+static struct span reach_of(const struct bw_table *table, const struct edge *edge) {
+    static const double margin = 1e-6;
+    struct span reach = {edge->value_s, edge->value_s, false, false};
+    if (edge->factor == EDGE_IS_NUMBER)
+        return reach;
+    const struct factor *factor = &table->factors[edge->factor];
+    reach = (struct span){limits_infinity, 0.0, false, false};
+    for (size_t i = factor->first; i < factor->first + factor->count; i++) {
+        const struct factor_row *row = &table->factor_rows[i];
+        double ends[] = {bw_limits_factor_row(row, row->argument.low), bw_limits_factor_row(row, row->argument.high)};
+        reach.low = fmin(reach.low, fmin(ends[0], ends[1]) * (1.0 - margin));
+        reach.high = fmax(reach.high, fmax(ends[0], ends[1]) * (1.0 + margin));
+    }
+    return reach;
+}
+
+/* The longest span of time between these edges. */
+static struct span times_of(const struct bw_table *table, const struct edge *from, const struct edge *to) {
+    return (struct span){reach_of(table, from).low, reach_of(table, to).high, false, false};
+}
+
+static struct span size_times(const struct size_row *row) {
+    return (struct span){row->from.value_s, row->to.value_s, false, false};
 }
 
 static void cut_sizes(struct planning *planning, const struct size_row *rows, size_t count) {
     for (size_t i = 0; i < count; i++) {
-        struct span times = times_of(&rows[i].from, &rows[i].to);
+        struct span times = size_times(&rows[i]);
         cut_span(&rows[i].wavelength_nm, planning->wavelengths, &planning->wavelength_count);
         cut_span(&times, planning->times, &planning->time_count);
     }
@@ -76,7 +98,7 @@ static bool take_cuts(struct planning *planning) {
     if (planning->wavelengths == NULL || planning->times == NULL)
         return false;
     for (size_t i = 0; i < planning->row_count; i++) {
-        struct span times = times_of(&planning->rows[i]->from, &planning->rows[i]->to);
+        struct span times = times_of(planning->table, &planning->rows[i]->from, &planning->rows[i]->to);
         cut_span(&planning->rows[i]->wavelength_nm, planning->wavelengths, &planning->wavelength_count);
         cut_span(&times, planning->times, &planning->time_count);
     }
@@ -97,6 +119,7 @@ static bool take_cuts(struct planning *planning) {
 /* The search for a zone begins at the one where numbers with the same leading bits begin. One key below the first cut
  * stands for all smaller numbers, one after the last for all that is larger. */
 static bool fill_cuts(struct planning *planning, struct cuts *cuts, double *at, size_t count, size_t shift) {
+    at[count] = limits_nan;
     *cuts = (struct cuts){.at = at, .count = count, .shift = shift, .key_count = 1};
     if (count > 0) {
         cuts->lowest_key = leading_bits(at[0], shift) - 1;
@@ -136,7 +159,7 @@ static unsigned short only_size(const struct size_row *rows, size_t count, const
                                 double wavelength_nm, double time_s) {
     unsigned short only = NO_ROW;
     for (size_t i = 0; i < count; i++) {
-        struct span times = times_of(&rows[i].from, &rows[i].to);
+        struct span times = size_times(&rows[i]);
         if ((effect != NULL && rows[i].effect != *effect) ||
             !bw_limits_in_span(&rows[i].wavelength_nm, wavelength_nm) || !bw_limits_in_span(&times, time_s))
             continue;
@@ -168,7 +191,7 @@ static unsigned short only_alpha_max(const struct source_size *size, double time
     if (size->count == 0 || time_s < size->rows[0].from.value_s)
         return NO_ROW;
     for (size_t i = 0; i < size->count; i++) {
-        struct span times = times_of(&size->rows[i].from, &size->rows[i].to);
+        struct span times = size_times(&size->rows[i]);
         if (!bw_limits_in_span(&times, time_s))
             continue;
         if (only != NO_ROW)
@@ -222,7 +245,7 @@ static void take_candidates(struct planning *planning, double wavelength_nm) {
 static size_t holding(const struct planning *planning, double time_s, const struct limit_row **rows) {
     size_t count = 0;
     for (size_t i = 0; i < planning->candidate_count; i++) {
-        struct span times = times_of(&planning->candidates[i]->from, &planning->candidates[i]->to);
+        struct span times = times_of(planning->table, &planning->candidates[i]->from, &planning->candidates[i]->to);
         if (!bw_limits_in_span(&times, time_s))
             continue;
         if (rows != NULL)

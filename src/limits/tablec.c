@@ -286,7 +286,8 @@ static void write_cuts(FILE *out, size_t n, const char *target, const char *name
         put_number(out, cuts->at[i]);
         fputc(',', out);
     }
-    fprintf(out, " 0};\nstatic const unsigned short t%zu_%s_%s_first[%zu] = {", n, target, name, cuts->key_count);
+    fprintf(out, " (double)NAN};\nstatic const unsigned short t%zu_%s_%s_first[%zu] = {", n, target, name,
+            cuts->key_count);
     for (size_t i = 0; i < cuts->key_count; i++)
         fprintf(out, "%s%u,", i % 20 == 0 ? "\n    " : " ", (unsigned)cuts->first[i]);
     fputs("};\n", out);
