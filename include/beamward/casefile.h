@@ -16,6 +16,7 @@ struct bw_handpiece {
     struct bw_output output;  /* the laser's emissions, each with its beam from this handpiece */
     bool has_exposure;
     double exposure_s;        /* overrides the customary time */
+    bool definition_assumed;  /* a diameter without its definition was taken as d86, the narrowest beam */
     bool emission_beam_given[BW_EMISSIONS_MAX]; /* [beam ...] section of its own */
     int line;
 };

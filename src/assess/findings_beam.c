@@ -61,6 +61,13 @@ static void exposure(const struct assess_job *job, const char *subject, const st
                        seconds_words(given, distance->glance.exposure_s));
 }
 
+static void definition(const struct assess_job *job, const char *subject, const struct bw_distance_result *distance) {
+    if (assess_handpiece(job, distance)->definition_assumed)
+        assess_finding(job, BW_NOTE, subject,
+                       "The case does not say how the beam diameter is defined; d86 (1/e2 of the peak) was taken, the "
+                       "safe side. Ask the maker and enter diameter_definition.");
+}
+
 static void meter(const struct assess_job *job) {
     struct bw_text text = {0};
     for (size_t i = 0; i < job->the_case->laser_count; i++) {
@@ -90,6 +97,7 @@ void assess_beam_findings(const struct assess_job *job) {
         skin(job, subject, distance);
         diffuse(job, subject, distance);
         exposure(job, subject, distance);
+        definition(job, subject, distance);
     }
     meter(job);
 }

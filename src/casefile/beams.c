@@ -69,13 +69,18 @@ static enum presence read_definition(struct reading *reading, const struct secti
             return WRONG; /* told at the handpiece */
         presence = GIVEN;
     }
+    if (presence == ABSENT) { /* the safe side: of all definitions it makes the narrowest beam */
+        *definition = BW_D86;
+        return GIVEN;
+    }
     *definition = definitions[index];
-    if (presence == ABSENT && !section->lost_key)
-        fault_section(
-            reading, section,
-            "diameter_definition is missing; d63, d86, fwhm or top-hat as the maker states it would be right; "
-            "d86 is the safe side if he does not");
     return presence;
+}
+
+bool beam_assumes_definition(const struct section *section, const struct section *handpiece) {
+    static const char key[] = "diameter_definition";
+    return value_entry(section, "beam_diameter", NULL) && !value_entry(section, key, NULL) &&
+           !(handpiece && value_entry(handpiece, key, NULL));
 }
 
 static enum presence through_lens(struct reading *reading, const struct section *section, double beam_m,

@@ -35,7 +35,7 @@ static void read_case_section(struct reading *reading) {
         return;
     }
     if (value_text(reading, section, "title", the_case->title, sizeof the_case->title) == ABSENT)
-        fault_missing(reading, section, "title");
+        snprintf(the_case->title, sizeof the_case->title, "Untitled case");
     read_rules(reading, section);
     value_choice(reading, section, "units", units, 2, &index);
     the_case->us_units = index == 1;

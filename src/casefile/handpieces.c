@@ -11,6 +11,7 @@ static void read_emission_beam(struct reading *reading, const struct section *of
     const struct section *emission = sections_refer(reading, section, SECTION_EMISSION, laser->name, section->names[2]);
     struct bw_beam beam = {0};
     enum presence presence = read_beam(reading, section, of, &beam);
+    handpiece->definition_assumed = handpiece->definition_assumed || beam_assumes_definition(section, of);
     if (presence == ABSENT && section->key_count == 0)
         fault_section(reading, section,
                       "has no beam; beam_diameter_mm and divergence_mrad would be right, or fibre_na "
@@ -48,6 +49,7 @@ static void read_handpiece(struct reading *reading, const struct section *sectio
     memcpy(output->emissions, laser->emissions, output->count * sizeof *output->emissions);
     read_emission_beams(reading, section, laser, handpiece);
     enum presence presence = read_beam(reading, section, NULL, &beam);
+    handpiece->definition_assumed = handpiece->definition_assumed || beam_assumes_definition(section, NULL);
     if (presence == ABSENT && !all_have_beams(handpiece) && !section->lost_key && !reading->lost[SECTION_BEAM])
         fault_section(reading, section,
                       "has no beam; beam_diameter_mm and divergence_mrad would be right, or fibre_na "

@@ -166,6 +166,8 @@ void read_uses(struct reading *reading);
  * has one of its own. */
 enum presence read_beam(struct reading *reading, const struct section *section, const struct section *handpiece,
                         struct bw_beam *beam);
+/* True if the beam has a diameter and nothing says how it is defined. */
+bool beam_assumes_definition(const struct section *section, const struct section *handpiece);
 /* Whether everything is where it can be. */
 void check_room(struct reading *reading, const struct section *room);
 

@@ -193,6 +193,8 @@ static struct beam_case {
      .03 * HALF_ROOT, .2 * HALF_ROOT, 0., .03 * HALF_ROOT},
     {"beam: d63", "beam_diameter_mm = 30\ndivergence_mrad = 200\ndiameter_definition = d63", BW_GAUSSIAN, BW_HYPERBOLIC,
      .03, .2, 0., .03},
+    {"beam: undefined is d86", "beam_diameter_mm = 30\ndivergence_mrad = 200", BW_GAUSSIAN, BW_HYPERBOLIC,
+     .03 * HALF_ROOT, .2 * HALF_ROOT, 0., .03 * HALF_ROOT},
     {"beam: fwhm", "beam_diameter_mm = 30\ndivergence_mrad = 200\ndiameter_definition = fwhm", BW_GAUSSIAN,
      BW_HYPERBOLIC, .03 / 0.83255461115769769, .2 / 0.83255461115769769, 0., .03 / 0.83255461115769769},
     {"beam: top hat", "beam_diameter_mm = 30\ndivergence_mrad = 200\ndiameter_definition = top-hat", BW_TOP_HAT,
