@@ -110,6 +110,9 @@ $(BUILD)/obj/%.o: src/%.c
 	@mkdir -p $(@D)
 	$(COMPILE) $(INCLUDE_INI) -DBEAMWARD_VERSION='"$(VERSION)"' -c $< -o $@
 
+# Loops over many numbers: nothing in them reads errno or a trap, so that they can become vector instructions.
+$(BUILD)/obj/limits/columns.o $(BUILD)/obj/hazard/columns.o: override CFLAGS += -O3 -fno-math-errno -fno-trapping-math
+
 define module_rule
 $(call archive,$(1)): $(call objects,$(1)) $$($(1)_EXTRA)
 	@mkdir -p $$(@D)

@@ -104,6 +104,40 @@ enum bw_status bw_limits_skin(const struct bw_table *table, const struct bw_expo
 enum bw_status bw_limits(const struct bw_table *table, enum bw_target target, const struct bw_exposure *exposure,
                          struct bw_limit_set *limits, struct bw_working *working, struct bw_error *error);
 
+/* ---- many exposures at once ------------------------------------------------------------------ */
+
+/* Many exposures to sources of one size. */
+struct bw_exposures {
+    size_t count;
+    const double *wavelengths_nm, *times_s; /* `count` of each */
+    double subtense_rad, area_m2;           /* as in bw_exposure, of all */
+};
+
+/* The lowest limit of each exposure, with the bits that bw_limits() gives, but several at a time. No allocation.
+ * Returned: arrays of `count`; NULL where not wanted; NAN where bw_limits() would return an error.
+ * Returns:  the number of those. */
+size_t bw_limits_many(const struct bw_table *table, enum bw_target target, const struct bw_exposures *exposures,
+                      double *radiant_exposures_j_m2, double *irradiances_w_m2, double *apertures_m);
+size_t bw_limits_eye_many(const struct bw_table *table, size_t count, const double *wavelengths_nm,
+                          const double *times_s, double *radiant_exposures_j_m2, double *irradiances_w_m2);
+
+/* Some of the many, in which the same effects have a limit: a column an effect, `count` numbers each. */
+struct bw_limit_column {
+    enum bw_effect effect;
+    const double *radiant_exposure_j_m2, *irradiance_w_m2, *aperture_m, *acceptance_rad; /* as in bw_limit */
+};
+struct bw_limit_batch {
+    size_t count;          /* 1 to BW_BATCH_MAX */
+    const size_t *places;  /* which of the exposures they are */
+    size_t column_count;   /* 0: bw_limits() would return an error */
+    struct bw_limit_column columns[BW_EFFECTS]; /* ascending by effect */
+};
+enum { BW_BATCH_MAX = 128 };
+typedef void bw_limit_visitor(void *context, const struct bw_limit_batch *batch);
+/* Hands every limit of each exposure to the visitor, batch by batch, each exposure once, in no particular order. */
+void bw_limits_visit(const struct bw_table *table, enum bw_target target, const struct bw_exposures *exposures,
+                     bw_limit_visitor *visitor, void *context);
+
 /* Times at which a row of this target and wavelength begins or ends, ascending [s]: where the worst
  * window of a train can lie. Symbolic edges (T1, T2) are given at their value for this exposure.
  * Returns: the number written (at most `capacity`). */
