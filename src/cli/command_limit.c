@@ -16,8 +16,8 @@ static const struct cli_option options[] = {
 
 static bool read_train(const struct cli_arguments *arguments, struct bw_limit_query *query, bool *wrong) {
     bool has_duration, has_rate;
-    struct bw_emission_input input = {.wavelength_nm = query->exposure.wavelength_nm, .average_power_w = NAN,
-                                      .peak_power_w = NAN, .pulse_energy_j = 1};
+    struct bw_emission_input input = {.wavelength_nm = query->exposure.wavelength_nm, .average_power_w = (double)NAN,
+                                      .peak_power_w = (double)NAN, .pulse_energy_j = 1};
     *wrong = !cli_number(arguments, "--pulse-duration", 1e-13, 3e4, &has_duration, &input.pulse_duration_s) ||
              !cli_number(arguments, "--rate", 1e-9, 1e12, &has_rate, &input.repetition_rate_hz);
     if (*wrong || (!has_duration && !has_rate))
