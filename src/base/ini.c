@@ -62,7 +62,7 @@ static bool write_all(int file, const char *bytes, size_t length) {
     return true;
 }
 
-/* iniparser 4.1 takes only a file name: hand it the very bytes that the guard saw, in a file without a name. */
+/* iniparser 4.1 takes only a file name: hand it the bytes that the guard saw, in a file without a name. */
 static enum bw_status load_bytes(const char *bytes, size_t length, dictionary **read, struct bw_error *error) {
     char path[64];
     FILE *fallback = NULL; /* for kernels without memfd_create */
@@ -144,8 +144,10 @@ enum bw_status bw_ini_read_bytes(const char *bytes, size_t length, struct bw_ini
         if (status == BW_OK && faults->count == 0 && ini->count == 0)
             bw_faults_add(faults, 0, "", "", "empty: no section in it; the first line could be [case]");
     }
-    if (status == BW_OK && faults->count == 0 && !faults->out_of_memory && !plain.failed)
-        status = read_twice(bytes, length, ini, faults, error);
+    if (status == BW_OK && faults->count == 0 && !faults->out_of_memory && !plain.failed) {
+        bw_ini_blank_section_comments(plain.data, plain.length);
+        status = read_twice(plain.data, plain.length, ini, faults, error);
+    }
     bw_faults_sort(faults);
     if (status == BW_NO_MEMORY || plain.failed || faults->out_of_memory)
         status = bw_error_set(error, BW_NO_MEMORY, "out of memory");

@@ -108,9 +108,9 @@ static void scan_section(struct scan *scan, struct line line) {
     scan->has_section = false;
     if (!close)
         bw_faults_add(scan->faults, line.number, "", "", "section without its closing ]");
-    else if (left > 0 && is_comment(rest, left))
-        bw_faults_add(scan->faults, line.number, "", "", "comment after a section; put it on a line of its own");
-    else if (left > 0)
+    else if (left > 0 && is_comment(rest, left) && memchr(rest, '=', left))
+        bw_faults_add(scan->faults, line.number, "", "", "a key in the comment after a section; put it on its own line");
+    else if (left > 0 && !is_comment(rest, left))
         bw_faults_add(scan->faults, line.number, "", "", "text after the ] of a section; begin a new line");
     else
         scan->has_section = accept_name(scan, name, length, wrong, line.number);
@@ -229,6 +229,21 @@ enum bw_status bw_ini_guard_lines(const char *bytes, size_t length, struct bw_in
     enum bw_status status = scan->status;
     free(scan);
     return status;
+}
+
+/* iniparser refuses a file with a comment behind a section, which a person finds natural: it gets blanks instead. */
+void bw_ini_blank_section_comments(char *bytes, size_t length) {
+    for (size_t at = 0; at < length;) {
+        char *line = bytes + at, *end = memchr(line, '\n', length - at);
+        size_t left = end ? (size_t)(end - line) : length - at;
+        at += left + 1;
+        size_t blanks = 0;
+        while (blanks < left && is_blank(line[blanks]))
+            blanks++;
+        char *close = blanks < left && line[blanks] == '[' ? memchr(line, ']', left) : NULL;
+        for (char *c = close ? close + 1 : line + left; c < line + left; c++)
+            *c = *c == '\r' ? '\r' : ' ';
+    }
 }
 
 /* ---- names ---------------------------------------------------------------------------------- */

@@ -29,6 +29,8 @@ bool bw_ini_guard_bytes(const char *bytes, size_t length, struct bw_text *plain,
  * the blanks between their words as written, which is how iniparser knows them.
  * Returns: BW_OK, also with faults; BW_NO_MEMORY. */
 enum bw_status bw_ini_guard_lines(const char *bytes, size_t length, struct bw_ini *ini, struct bw_faults *faults);
+/* Overwrites the comments behind sections, in lines that the guard has accepted. */
+void bw_ini_blank_section_comments(char *bytes, size_t length);
 /* Refuses names that stand twice, after lower-casing, however many blanks stand between their words. */
 enum bw_status bw_ini_guard_repeats(const struct bw_ini *ini, struct bw_faults *faults);
 /* One blank between the words of a section. */

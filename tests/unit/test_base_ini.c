@@ -52,11 +52,7 @@ static struct ini_case refused[] = {
     {"refused: quote not closed", BYTES("[a]\nx = \"1\n"), "F:2: [a] x: quote without its closing \"\n"},
     {"refused: apostrophe not closed", BYTES("[a]\nx = 's-Gravenhage\n"), "F:2: [a] x: quote without its closing '\n"},
     {"refused: key behind a section", BYTES("[a] ; x = 1\n"),
-     "F:1: comment after a section; put it on a line of its own\n"},
-    {"refused: comment behind a section", BYTES("[a] # why\nx = 1\n"),
-     "F:1: comment after a section; put it on a line of its own\n"},
-    {"refused: comment behind a section that ends in ]", BYTES("[a] ; [b]\nx = 1\n"),
-     "F:1: comment after a section; put it on a line of its own\n"},
+     "F:1: a key in the comment after a section; put it on its own line\n"},
     {"refused: text behind a section", BYTES("[a] x = 1\n"), "F:1: text after the ] of a section; begin a new line\n"},
     {"refused: two closing brackets", BYTES("[a]]\n"), "F:1: text after the ] of a section; begin a new line\n"},
     {"refused: two opening brackets", BYTES("[[a]\n"),
@@ -131,6 +127,8 @@ static struct ini_case refused[] = {
 
 static struct ini_case accepted[] = {
     {"accepted: plain", BYTES("[case]\ntitle = Room 2\n"), "1 case||\n2 case|title|Room 2\n"},
+    {"accepted: comment behind a section", BYTES("[a] ; why\r\nx = 1\n[b]# c\n"), "1 a||\n2 a|x|1\n3 b||\n"},
+    {"accepted: comment behind a section that ends in ]", BYTES("[a] ; [b]\nx = 1\n"), "1 a||\n2 a|x|1\n"},
     {"accepted: no line feed at the end", BYTES("[a]\nx = 1"), "1 a||\n2 a|x|1\n"},
     {"accepted: section alone", BYTES("[a]"), "1 a||\n"},
     {"accepted: CR LF", BYTES("[a]\r\n\r\nx = 1\r\n; c\r\ny = 2\r\n"), "1 a||\n3 a|x|1\n5 a|y|2\n"},
