@@ -30,7 +30,7 @@ FILE_TESTS = $(patsubst tests/%.c,$(BUILD)/tests/%,$(wildcard tests/reference/te
                                                               tests/bad_cases/test_*.c tests/cli/test_*.c))
 TESTS = $(UNIT_TESTS) $(PUBLISHED_TESTS) $(FILE_TESTS)
 
-.PHONY: all demo test tests run-tests check clang sanitize demo-run packages-build packages-test packages-check clean help
+.PHONY: all demo test tests run-tests check clang sanitize bench demo-run packages-build packages-test packages-check packages-bench clean help
 .SECONDARY:
 all: $(PROGRAM)
 
@@ -38,6 +38,7 @@ help:
 	@echo 'make demo      get what is missing, build, run the whole job on examples/'
 	@echo 'make test      get what is missing, build, run every test'
 	@echo 'make check     the tests again with clang and under the address and undefined-behaviour sanitizers'
+	@echo 'make bench     how fast it is, beside numpy and GNU Octave'
 	@echo 'make all       build only: $(PROGRAM)'
 	@echo 'make clean     remove $(BUILD)/'
 
@@ -93,6 +94,9 @@ packages-test:
 packages-check:
 	$(call need,check beamward,,clang,clang)
 
+packages-bench: # without numpy python3 says so, and its words are programs that are not there
+	$(call need,run the benchmark,,octave-cli $(PYTHON) $(shell $(PYTHON) -c 'import numpy' 2>&1 | tail -n 1 | cut -d: -f1),python3-numpy octave)
+
 # ---- assurances ---------------------------------------------------------------------------------
 
 check: clang sanitize
@@ -103,6 +107,22 @@ sanitize: packages-build packages-test
 	@$(MAKE) --no-print-directory -j2 BUILD=$(BUILD)/sanitize \
 	    CFLAGS='-O1 -g -fsanitize=address,undefined -fno-sanitize-recover=all -fno-omit-frame-pointer' all tests
 	@$(MAKE) --no-print-directory BUILD=$(BUILD)/sanitize run-tests
+
+# A benchmark, not a test: times depend on the machine. The same work in three languages, the answers compared.
+PYTHON ?= /usr/bin/python3
+BENCH = $(BUILD)/bench
+BENCH_FILES = $(BENCH)/pairs $(BENCH)/results $(BENCH)/times
+bench: packages-build packages-bench
+	@$(MAKE) --no-print-directory -j2 $(BENCH)/bench_beamward
+	@$(BENCH)/bench_beamward $(BENCH_FILES)
+	@env -u OPENBLAS_CORETYPE -u OPENBLAS_L2_SIZE $(PYTHON) tests/bench/bench_numpy.py $(BENCH_FILES)
+	@octave-cli --norc --no-history tests/bench/bench_octave.m $(BENCH_FILES)
+	@awk -F';' 'NR == 1 { ours = $$2 } \
+	    { printf "  %-20s best %7.1f ms, median %7.1f ms, %5.1f times the time of beamward\n", $$1, $$2 * 1e3, $$3 * 1e3, $$2 / ours }' \
+	    $(BENCH)/times
+$(BENCH)/bench_beamward: $(BUILD)/testobj/bench/bench_beamward.o $(BUILD)/testobj/bench/bench.o $(call archives_from,hazard)
+	@mkdir -p $(@D)
+	$(SAY)$(CC) $(CFLAGS) -Wl,--wrap=malloc -Wl,--wrap=calloc -Wl,--wrap=realloc $^ -lm -o $@
 
 # ---- building -----------------------------------------------------------------------------------
 

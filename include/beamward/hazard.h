@@ -140,6 +140,26 @@ enum bw_status bw_hazard_permitted_time(const struct bw_table *table, const stru
                                         struct bw_permitted_time *time, struct bw_working *working,
                                         struct bw_error *error);
 
+/* ---- many beams at once ---------------------------------------------------------------------- */
+
+/* Many continuous beams, one emission each: Gaussian, hyperbolic spread, the waist at the exit, seen as a point
+ * source. Arrays of `count`; diameters and divergences (full angle) d63. */
+struct bw_simple_beams {
+    size_t count;
+    const double *wavelengths_nm, *exposures_s;
+    const double *powers_w;        /* above 0, to 1e15 */
+    const double *diameters_m;     /* at the exit, 0 to 10 */
+    const double *divergences_rad; /* 0 to pi */
+    double distance_m;             /* where the densities are wanted, 0 or more, finite */
+};
+/* The hazards of an eye in each beam, as bw_limits_eye(), bw_hazard_reach() and bw_hazard_optical_density() give them,
+ * but several at a time; the distances from the closed form. No allocation.
+ * Returned: arrays of `count`, NULL where not wanted. radiant_exposures_j_m2  the lowest limit; nohd_m  INFINITY when
+ *           unbounded; densities  at the distance. All NAN where those functions would return an error.
+ * Returns:  the number of those. */
+size_t bw_hazard_many(const struct bw_table *table, const struct bw_simple_beams *beams,
+                      double *radiant_exposures_j_m2, double *nohd_m, double *densities);
+
 #ifdef __cplusplus
 }
 #endif

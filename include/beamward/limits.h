@@ -113,7 +113,8 @@ struct bw_exposures {
     double subtense_rad, area_m2;           /* as in bw_exposure, of all */
 };
 
-/* The lowest limit of each exposure, with the bits that bw_limits() gives, but several at a time. No allocation.
+/* The lowest limit of each exposure, with the bits that bw_limits() gives, but several at a time. No allocation; about
+ * 64 KiB of stack.
  * Returned: arrays of `count`; NULL where not wanted; NAN where bw_limits() would return an error.
  * Returns:  the number of those. */
 size_t bw_limits_many(const struct bw_table *table, enum bw_target target, const struct bw_exposures *exposures,

@@ -8,7 +8,7 @@
 #include <string.h>
 
 /* A block is sorted, then worked off in batches; both small enough for the stack and the nearest cache. */
-enum { BLOCK = 4096, CELLS_MAX = 1024, EFFECT_COLUMNS = 4 };
+enum { BLOCK = 8192, CELLS_MAX = 1024, EFFECT_COLUMNS = 4 };
 
 struct block {
     size_t first, count;
@@ -240,19 +240,29 @@ static void scatter(const struct bw_limit_batch *batch, const double column[], d
         out[batch->places[i]] = column[i];
 }
 
+static void take(struct lowest *lowest, const struct bw_limit_batch *batch, const struct bw_limit_column *column) {
+    scatter(batch, column->radiant_exposure_j_m2, lowest->radiant_exposures_j_m2);
+    scatter(batch, column->irradiance_w_m2, lowest->irradiances_w_m2);
+    scatter(batch, column->aperture_m, lowest->apertures_m);
+}
+
+/* The lowest of at most all effects, in columns of its own: NAN at first, which any limit replaces. */
 static void take_lowest(void *context, const struct bw_limit_batch *batch) {
     struct lowest *lowest = context;
     double columns[3][BW_BATCH_MAX];
     struct column_limit found = {columns[0], columns[1], columns[2]};
+    if (batch->column_count == 1) {
+        take(lowest, batch, &batch->columns[0]);
+        return;
+    }
     lowest->missing += batch->column_count == 0 ? batch->count : 0;
-    for (size_t c = 0; c < 3; c++)
-        for (size_t i = 0; i < batch->count; i++)
-            columns[c][i] = limits_nan; /* any limit replaces it */
+    for (size_t i = 0; i < batch->count; i++)
+        columns[0][i] = columns[1][i] = columns[2][i] = limits_nan;
     for (size_t i = 0; i < batch->column_count; i++)
         bw_column_lowest(batch->count, &batch->columns[i], &found);
-    scatter(batch, columns[0], lowest->radiant_exposures_j_m2);
-    scatter(batch, columns[1], lowest->irradiances_w_m2);
-    scatter(batch, columns[2], lowest->apertures_m);
+    take(lowest, batch,
+         &(struct bw_limit_column){
+             .radiant_exposure_j_m2 = columns[0], .irradiance_w_m2 = columns[1], .aperture_m = columns[2]});
 }
 
 size_t bw_limits_many(const struct bw_table *table, enum bw_target target, const struct bw_exposures *exposures,

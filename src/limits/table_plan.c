@@ -316,7 +316,7 @@ static bool plan_target(struct planning *planning, struct plan *plan) {
     plan->cell_count = planning->cell_count;
     plan->held = planning->held;
     plan->held_count = planning->held_count;
-    enum { WAVELENGTH_SHIFT = 52 - 6, TIME_SHIFT = 52 - 3 }; /* 64 and 8 keys an octave */
+    enum { WAVELENGTH_SHIFT = 52 - 7, TIME_SHIFT = 52 - 4 }; /* 128 and 16 keys an octave */
     return fill_cuts(planning, &plan->wavelengths, planning->wavelengths, planning->wavelength_count,
                      WAVELENGTH_SHIFT) &&
            fill_cuts(planning, &plan->times, planning->times, planning->time_count, TIME_SHIFT);

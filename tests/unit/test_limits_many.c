@@ -147,7 +147,7 @@ static void test_eye_entry(void **state) {
 /* Every count around the sizes of a batch and of a block. */
 static void test_counts(void **state) {
     (void)state;
-    static const size_t counts[] = {1, 2, 127, 128, 129, 4095, 4096, 4097, 8192};
+    static const size_t counts[] = {1, 2, 127, 128, 129, 8191, 8192, 8193, 16384};
     struct exposures *many = new_exposures(2);
     for (size_t i = 0; i < sizeof counts / sizeof counts[0]; i++) {
         check(bw_tables_find("icnirp-2013"), BW_EYE, many, counts[i], 0, 0);
