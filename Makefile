@@ -30,7 +30,7 @@ FILE_TESTS = $(patsubst tests/%.c,$(BUILD)/tests/%,$(wildcard tests/reference/te
                                                               tests/bad_cases/test_*.c tests/cli/test_*.c))
 TESTS = $(UNIT_TESTS) $(PUBLISHED_TESTS) $(FILE_TESTS)
 
-.PHONY: all demo test tests run-tests check clang sanitize bench demo-run packages-build packages-test packages-check packages-bench clean help
+.PHONY: all demo test tests run-tests check clang sanitize bench coverage demo-run packages-build packages-test packages-check packages-bench clean help
 .SECONDARY:
 all: $(PROGRAM)
 
@@ -39,6 +39,7 @@ help:
 	@echo 'make test      get what is missing, build, run every test'
 	@echo 'make check     the tests again with clang and under the address and undefined-behaviour sanitizers'
 	@echo 'make bench     how fast it is, beside numpy and GNU Octave'
+	@echo 'make coverage  branches of limits, beam and hazard that the tests take'
 	@echo 'make all       build only: $(PROGRAM)'
 	@echo 'make clean     remove $(BUILD)/'
 
@@ -123,6 +124,19 @@ bench: packages-build packages-bench
 $(BENCH)/bench_beamward: $(BUILD)/testobj/bench/bench_beamward.o $(BUILD)/testobj/bench/bench.o $(call archives_from,hazard)
 	@mkdir -p $(@D)
 	$(SAY)$(CC) $(CFLAGS) -Wl,--wrap=malloc -Wl,--wrap=calloc -Wl,--wrap=realloc $^ -lm -o $@
+
+# Branches of the floors that decide, by the whole test run. A line a file, then the branches never taken.
+COVERED = limits beam hazard
+coverage: packages-build packages-test
+	@rm -rf $(BUILD)/coverage/report; find $(BUILD)/coverage -name '*.gcda' -delete 2>/dev/null || true
+	@$(MAKE) --no-print-directory -j2 BUILD=$(BUILD)/coverage CFLAGS='-O0 -g --coverage' all tests
+	@$(MAKE) --no-print-directory BUILD=$(BUILD)/coverage run-tests
+	@mkdir -p $(BUILD)/coverage/report; for module in $(COVERED); do \
+	    for data in $(BUILD)/coverage/obj/$$module/*.gcda; do \
+	        gcov -b -c -t -o $$(dirname $$data) $$data >$(BUILD)/coverage/report/$$module-$$(basename $$data .gcda).gcov; \
+	    done; \
+	done
+	@sh tests/coverage/report.sh $(BUILD)/coverage/report
 
 # ---- building -----------------------------------------------------------------------------------
 
