@@ -120,11 +120,12 @@ static double close_in(struct search *search, double near_m, double far_m) {
 static const double steps_rad[] = {1.5e-3, 5e-3, 100e-3};
 enum { STEPS = 3, PLACES_MAX = STEPS * BW_EMISSIONS_MAX };
 
-static double farthest_step_m(const struct bw_spot *spot, size_t count, double below_m) {
-    double farthest_m = 0.;
-    for (size_t i = 0; i < count; i++)
+static double farthest_step_m(const struct search *search, double below_m) {
+    double farthest_m = 0., magnification = bw_hazard_magnification(search->hazard); /* an aid shows the angle so wide */
+    for (size_t i = 0; i < search->hazard->output->count; i++)
         for (size_t j = 0; j < STEPS; j++) {
-            double place_m = spot->diameter_m[i] / 2. / tan(steps_rad[j] / 2.) * (1. + 1e-9);
+            double half_m = search->spot->diameter_m[i] / 2.;
+            double place_m = half_m / tan(steps_rad[j] / magnification / 2.) * (1. + 1e-9);
             if (place_m < below_m)
                 farthest_m = fmax(farthest_m, place_m);
         }
@@ -136,7 +137,7 @@ static double farthest_step_m(const struct bw_spot *spot, size_t count, double b
 static double inward(struct search *search, double far_m, double nearest_m) {
     static const double stride = 0.94;
     while (search->status == BW_OK && far_m > nearest_m) {
-        double step_m = farthest_step_m(search->spot, search->hazard->output->count, far_m);
+        double step_m = farthest_step_m(search, far_m);
         double near_m = fmax(fmax(stride * far_m, step_m), nearest_m);
         if (!(ratio_at(search, near_m) <= 1.))
             return close_in(search, near_m, far_m);
@@ -147,7 +148,7 @@ static double inward(struct search *search, double far_m, double nearest_m) {
 
 static double solve(struct search *search) {
     size_t count = search->hazard->output->count;
-    double smallest_m = HUGE_VAL, last_step_m = farthest_step_m(search->spot, count, HUGE_VAL);
+    double smallest_m = HUGE_VAL, last_step_m = farthest_step_m(search, HUGE_VAL);
     for (size_t i = 0; i < count; i++)
         smallest_m = fmin(smallest_m, search->spot->diameter_m[i]);
     double far_m = fmax(1e-3, 2. * last_step_m), near_m = last_step_m;

@@ -52,16 +52,17 @@ static enum bw_status fill_emission(struct bw_hazard *hazard, size_t emission, d
     struct bw_train_limit_set set;
     struct bw_error reason = {.status = BW_OK};
     char name[NAMED_SIZE] = "";
-    viewing.subtense_rad = subtense_rad;
+    viewing.subtense_rad = fmin(subtense_rad * bw_hazard_magnification(hazard), bw_pi / 2.);
     if (working != NULL)
         bw_working_heading(working, "%s", name_emission(&hazard->output->emissions[emission], name));
-    enum bw_status status =
-        bw_hazard_train_limits(hazard->table, &hazard->output->emissions[emission], &viewing, &set, working, &reason);
+    enum bw_status status = bw_hazard_corner_limits(hazard, emission, &viewing, &set, working, &reason);
     if (status != BW_OK)
         return bw_error_set(error, status, "%s: %s", name_emission(&hazard->output->emissions[emission], name),
                             reason.text);
-    for (size_t i = 0; i < set.count; i++)
+    for (size_t i = 0; i < set.count; i++) {
+        bw_hazard_before_eye(hazard, emission, &set.limits[i], working);
         hazard->terms[hazard->term_count++] = (struct bw_term){emission, set.limits[i]};
+    }
     return BW_OK;
 }
 
@@ -115,5 +116,7 @@ enum bw_status bw_hazard_prepare(const struct bw_table *table, const struct bw_o
             return status;
         subtense_rad[i] = viewing->subtense_rad;
     }
+    if (bw_hazard_check_before_eye(output, error) != BW_OK)
+        return BW_ARGUMENT;
     return bw_hazard_fill(hazard, subtense_rad, working, error);
 }
