@@ -24,9 +24,10 @@ static double subtense_rad(double diameter_m, double distance_m) {
 }
 
 /* Irradiance per watt from a matt spot, seen along its normal: rho / (pi r^2), but nowhere more than the spot itself
- * sends out, rho x 4 / (pi d^2). The mean over an aperture is no more than that. */
-static double irradiance_per_w(const struct bw_spot *spot, size_t emission, double distance_m) {
-    double nearest_m = fmax(distance_m, spot->diameter_m[emission] / 2.);
+ * sends out, rho x 4 / (pi d^2). The mean over an aperture is no more than that, nor than all that is sent out falling
+ * into the aperture, rho x 4 / (pi D^2). */
+static double irradiance_per_w(const struct bw_spot *spot, const struct bw_term *term, double distance_m) {
+    double nearest_m = fmax(distance_m, fmax(spot->diameter_m[term->emission], term->limit.aperture_m) / 2.);
     return spot->reflectance / bw_pi / nearest_m / nearest_m;
 }
 
@@ -59,7 +60,7 @@ static enum bw_status ratio_with_working(const struct bw_hazard *hazard, const s
     for (size_t i = 0; i < here.term_count; i++) {
         const struct bw_term *term = &here.terms[i];
         double power_w = here.output->emissions[term->emission].average_power_w;
-        double per_w = irradiance_per_w(spot, term->emission, distance_m);
+        double per_w = irradiance_per_w(spot, term, distance_m);
         ratios[i] = power_w * per_w / term->limit.irradiance_w_m2;
         bw_working_step(working, "ratio", ratios[i], "", NULL, "rho P / (pi r^2) / E_limit",
                         "%.6g W x %.6g 1/m2 / %.6g W/m2 (%g nm, %s)", power_w, per_w, term->limit.irradiance_w_m2,
