@@ -71,6 +71,11 @@ static enum bw_status answer(const struct assess_job *job, const struct bw_dista
     return BW_OK;
 }
 
+/* What differs only by the rounding of the arithmetic is the same. */
+static double rounded(double value) {
+    return isnan(value) ? value : round(value * 1e9) / 1e9;
+}
+
 /* An exposure at the end of the table cannot be longer: then the difference is taken to one side. */
 static enum bw_status measure(const struct assess_job *job, const struct bw_distance_result *distance,
                               const struct input *input, struct bw_sensitivity *result, struct bw_error *error) {
@@ -83,8 +88,8 @@ static enum bw_status measure(const struct assess_job *job, const struct bw_dist
     if (status != BW_OK)
         return status;
     double per_cent = 100. * (step + up), middle_m = (less.nohd_m + more.nohd_m) / 2.;
-    result->nohd_pct_per_pct = 100. * (more.nohd_m - less.nohd_m) / middle_m / per_cent;
-    result->od_per_pct = (more.density - less.density) / per_cent;
+    result->nohd_pct_per_pct = rounded(100. * (more.nohd_m - less.nohd_m) / middle_m / per_cent);
+    result->od_per_pct = rounded((more.density - less.density) / per_cent);
     return BW_OK;
 }
 

@@ -7,13 +7,13 @@
 
 static const double large_m2 = 2.; /* more than any printed step of area */
 
-/* Area of the widest spot that the handpiece may have, by its 1/e2 diameter; no body is larger.
+/* Area of the largest spot, by its 1/e2 diameter; no body is larger. Of tolerances the narrowest beam is the worst here
+ * too: on any area the ratio falls with the width of the beam that lights it, or stays.
  * Source: common practice, no source. */
-static double spot_area_m2(const struct assess_job *job, const struct bw_distance_result *distance, double at_m) {
-    struct bw_output widest = assess_widest_output(job, distance);
+static double spot_area_m2(const struct bw_distance_result *distance, double at_m) {
     double largest_m2 = 0.;
-    for (size_t i = 0; i < widest.count; i++) {
-        const struct bw_beam *beam = &widest.beams[i];
+    for (size_t i = 0; i < distance->output.count; i++) {
+        const struct bw_beam *beam = &distance->output.beams[i];
         double width_m = bw_beam_diameter_m(beam, at_m);
         if (beam->profile == BW_GAUSSIAN)
             width_m = bw_diameter_from_d63(width_m, BW_D86);
@@ -26,7 +26,7 @@ double assess_skin_area_m2(const struct assess_job *job, const struct bw_distanc
     const struct bw_handpiece *handpiece = assess_handpiece(job, distance);
     if (!distance->skin_area_matters)
         return 0.;
-    return handpiece->has_exposed_skin ? handpiece->exposed_skin_m2 : spot_area_m2(job, distance, at_m);
+    return handpiece->has_exposed_skin ? handpiece->exposed_skin_m2 : spot_area_m2(distance, at_m);
 }
 
 struct skin_case {

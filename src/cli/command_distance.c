@@ -3,7 +3,7 @@
 
 static const struct cli_option options[] = {
     CLI_NARROWING_OPTIONS,
-    {"--at", "M,M...", "also the longest permitted exposures at these distances in m"},
+    {"--at", "M,M...", "longest exposures at these distances in m as well"},
     CLI_COMMON_OPTIONS,
 };
 

@@ -23,19 +23,51 @@ static double ratio_for(struct search *search, double exposure_s) {
     return search->status == BW_OK ? ratio : nan("");
 }
 
-/* Halves, first by the factor, then by the difference, until safe and unsafe are neighbours to 1e-12.
- * Returns: the safe one */
-static double close_in(struct search *search, double safe_s, double unsafe_s) {
-    while (search->status == BW_OK && unsafe_s > safe_s * (1. + 1e-12)) {
-        double middle_s = unsafe_s > 2. * safe_s ? sqrt(safe_s) * sqrt(unsafe_s) : safe_s + (unsafe_s - safe_s) / 2.;
-        if (!(middle_s > safe_s && middle_s < unsafe_s))
-            break;
-        if (ratio_for(search, middle_s) <= 1.)
-            safe_s = middle_s;
-        else
-            unsafe_s = middle_s;
+static const double close_enough = 1e-12;
+
+/* A time that is safe and a longer one that is not, with their ratios. */
+struct bracket {
+    double safe_s, unsafe_s, safe_ratio, unsafe_ratio;
+};
+
+static void try_time(struct search *search, struct bracket *bracket, double time_s) {
+    if (!(time_s > bracket->safe_s && time_s < bracket->unsafe_s))
+        return;
+    double ratio = ratio_for(search, time_s);
+    if (ratio <= 1.) {
+        bracket->safe_s = time_s;
+        bracket->safe_ratio = ratio;
+    } else {
+        bracket->unsafe_s = time_s;
+        bracket->unsafe_ratio = ratio;
     }
-    return safe_s;
+}
+
+/* Where a power law through both ends has the ratio 1; tried a hair to each side. Most ratios are power laws. */
+static void try_power_law(struct search *search, struct bracket *bracket) {
+    double rise = log(bracket->unsafe_ratio / bracket->safe_ratio);
+    double time_s = bracket->safe_s * exp(log(bracket->unsafe_s / bracket->safe_s) * -log(bracket->safe_ratio) / rise);
+    try_time(search, bracket, time_s * (1. - close_enough / 4.));
+    try_time(search, bracket, time_s * (1. + close_enough / 4.));
+}
+
+/* Alternates power laws, which meet most ratios at once, and halvings (first of the factor, then of the difference),
+ * which meet all, until safe and unsafe are neighbours to 1e-12.
+ * Returns: the safe one */
+static double close_in(struct search *search, struct bracket bracket) {
+    while (search->status == BW_OK && bracket.unsafe_s > bracket.safe_s * (1. + close_enough)) {
+        double safe_s = bracket.safe_s, unsafe_s = bracket.unsafe_s;
+        try_power_law(search, &bracket);
+        if (bracket.unsafe_s <= bracket.safe_s * (1. + close_enough))
+            break;
+        double wide = bracket.unsafe_s / bracket.safe_s;
+        try_time(search, &bracket,
+                 wide > 2. ? bracket.safe_s * sqrt(wide)
+                           : bracket.safe_s + (bracket.unsafe_s - bracket.safe_s) / 2.);
+        if (!(bracket.safe_s > safe_s || bracket.unsafe_s < unsafe_s))
+            break; /* neighbouring numbers */
+    }
+    return bracket.safe_s;
 }
 
 /* The next time at which a limit of any emission changes its law. */
@@ -55,19 +87,21 @@ static double next_edge_s(struct search *search, double after_s) {
 
 /* Goes from edge to edge to the first one that is not safe; in between the ratio never falls. */
 static void solve(struct search *search, struct bw_permitted_time *time) {
-    double safe_s = shortest_s;
+    struct bracket bracket = {.safe_s = shortest_s, .safe_ratio = ratio_for(search, shortest_s)};
     search->viewing.exposure_s = longest_s;
-    if (!(ratio_for(search, shortest_s) <= 1.)) {
+    if (!(bracket.safe_ratio <= 1.)) {
         time->exposure_s = 0.;
         return;
     }
-    while (search->status == BW_OK && safe_s < longest_s) {
-        double edge_s = next_edge_s(search, safe_s);
-        if (!(ratio_for(search, edge_s) <= 1.)) {
-            time->exposure_s = close_in(search, safe_s, edge_s);
+    while (search->status == BW_OK && bracket.safe_s < longest_s) {
+        bracket.unsafe_s = next_edge_s(search, bracket.safe_s);
+        bracket.unsafe_ratio = ratio_for(search, bracket.unsafe_s);
+        if (!(bracket.unsafe_ratio <= 1.)) {
+            time->exposure_s = close_in(search, bracket);
             return;
         }
-        safe_s = edge_s;
+        bracket.safe_s = bracket.unsafe_s;
+        bracket.safe_ratio = bracket.unsafe_ratio;
     }
     *time = (struct bw_permitted_time){HUGE_VAL, true};
 }
