@@ -179,7 +179,7 @@ static struct glass_case {
     {"4000 nm: no band, all of it", 4000., 1.},
     {"4001 nm: nothing", 4001., 0.},
     {"10600 nm: nothing", 10600., 0.},
-    {"not a number: nothing is claimed to be seen through it", NAN, 0.},
+    {"not a number: nothing is claimed to be seen through it", NONE, 0.},
 };
 
 static void test_glass(void **state) {
@@ -221,11 +221,11 @@ static struct refused_case {
     double magnification, objective_m, transmittance, passes;
 } refused[] = {
     {"magnification below 1", 0.9, 0.05, 1, 1},     {"magnification beyond 200", 201, 0.05, 1, 1},
-    {"no magnification", NAN, 0.05, 1, 1},          {"objective of nothing", 7, 0, 1, 1},
-    {"objective beyond 1 m", 7, 1.1, 1, 1},         {"objective NaN", 7, NAN, 1, 1},
-    {"transmittance above 1", 7, 0.05, 1.01, 1},    {"transmittance NaN", 7, 0.05, NAN, 1},
+    {"no magnification", NONE, 0.05, 1, 1},          {"objective of nothing", 7, 0, 1, 1},
+    {"objective beyond 1 m", 7, 1.1, 1, 1},         {"objective NaN", 7, NONE, 1, 1},
+    {"transmittance above 1", 7, 0.05, 1.01, 1},    {"transmittance NaN", 7, 0.05, NONE, 1},
     {"goggles that amplify", 7, 0.05, 1, 1.01},     {"goggles below nothing", 7, 0.05, 1, -0.1},
-    {"goggles of NaN", 7, 0.05, 1, NAN},
+    {"goggles of NaN", 7, 0.05, 1, NONE},
 };
 
 static void test_refused(void **state) {
@@ -350,7 +350,7 @@ static struct time_case {
 } times[] = {
     {"1 us", 1e-6, 1e-6},     {"0.123 s", 0.123, 0.123},     {"an edge, 10 s", 10., 10.},
     {"29999 s", 29999., 29999.}, {"exactly the last time", 3e4, HUGE_VAL}, {"never", 1e9, HUGE_VAL},
-    {"at once", 1e-14, 0.},   {"not a number: no time at all", NAN, 0.},
+    {"at once", 1e-14, 0.},   {"not a number: no time at all", NONE, 0.},
 };
 
 static void test_time(void **state) {
