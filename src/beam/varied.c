@@ -42,16 +42,22 @@ enum bw_status bw_emission_varied(const struct bw_emission_input *given, double 
     enum bw_status status = bw_emission_resolve(given, emission, error);
     if (status != BW_OK)
         return status;
+    if (!(power > 0. && power < HUGE_VAL)) {
+        emission->average_power_w = emission->peak_power_w = emission->pulse_energy_j = nan("");
+        return bw_error_set(error, BW_ARGUMENT, "power is %g times what was given; it must be above 0", power);
+    }
     keep_enough(&input, emission);
     if (!emission->continuous && !isnan(input.pulse_duration_s)) {
         double rate_hz = emission->repetition_rate_hz * (isnan(input.repetition_rate_hz) ? 1. : rate);
         input.pulse_duration_s = fmin(input.pulse_duration_s * duration, 1. / rate_hz);
     }
     input.repetition_rate_hz *= rate;
-    input.average_power_w *= power;
-    input.peak_power_w *= power;
-    input.pulse_energy_j *= power;
-    return bw_emission_resolve(&input, emission, error);
+    status = bw_emission_resolve(&input, emission, error);
+    /* All powers and energies are proportional, whichever of them were given. */
+    emission->average_power_w *= power;
+    emission->peak_power_w *= power;
+    emission->pulse_energy_j *= power;
+    return status;
 }
 
 /* A beam with the diameter and the divergence that were given so many times as large.

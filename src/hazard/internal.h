@@ -58,6 +58,10 @@ void bw_hazard_train_working(const struct train_case *train, const struct tally 
 
 /* ---- prepare.c --------------------------------------------------------------------------------- */
 
+/* Limits of one emission for a source of this subtense. */
+enum bw_status bw_hazard_emission_limits(const struct bw_hazard *hazard, size_t emission, double subtense_rad,
+                                         struct bw_train_limit_set *limits, struct bw_working *working,
+                                         struct bw_error *error);
 /* Fills terms and sums from table, output and viewing, each emission with its own subtense. */
 enum bw_status bw_hazard_fill(struct bw_hazard *hazard, const double subtense_rad[BW_EMISSIONS_MAX],
                               struct bw_working *working, struct bw_error *error);

@@ -46,23 +46,31 @@ static const char *name_emission(const struct bw_emission *emission, char text[N
     return text;
 }
 
+/* For a source that looks so wide to the naked eye, before what is in front of the eye. */
+enum bw_status bw_hazard_emission_limits(const struct bw_hazard *hazard, size_t emission, double subtense_rad,
+                                         struct bw_train_limit_set *limits, struct bw_working *working,
+                                         struct bw_error *error) {
+    struct bw_viewing_case viewing = hazard->viewing;
+    viewing.subtense_rad = fmin(subtense_rad * bw_hazard_magnification(hazard), bw_pi / 2.);
+    enum bw_status status = bw_hazard_corner_limits(hazard, emission, &viewing, limits, working, error);
+    for (size_t i = 0; status == BW_OK && i < limits->count; i++)
+        bw_hazard_before_eye(hazard, emission, &limits->limits[i], working);
+    return status;
+}
+
 static enum bw_status fill_emission(struct bw_hazard *hazard, size_t emission, double subtense_rad,
                                     struct bw_working *working, struct bw_error *error) {
-    struct bw_viewing_case viewing = hazard->viewing;
     struct bw_train_limit_set set;
     struct bw_error reason = {.status = BW_OK};
     char name[NAMED_SIZE] = "";
-    viewing.subtense_rad = fmin(subtense_rad * bw_hazard_magnification(hazard), bw_pi / 2.);
     if (working != NULL)
         bw_working_heading(working, "%s", name_emission(&hazard->output->emissions[emission], name));
-    enum bw_status status = bw_hazard_corner_limits(hazard, emission, &viewing, &set, working, &reason);
+    enum bw_status status = bw_hazard_emission_limits(hazard, emission, subtense_rad, &set, working, &reason);
     if (status != BW_OK)
         return bw_error_set(error, status, "%s: %s", name_emission(&hazard->output->emissions[emission], name),
                             reason.text);
-    for (size_t i = 0; i < set.count; i++) {
-        bw_hazard_before_eye(hazard, emission, &set.limits[i], working);
+    for (size_t i = 0; i < set.count; i++)
         hazard->terms[hazard->term_count++] = (struct bw_term){emission, set.limits[i]};
-    }
     return BW_OK;
 }
 
