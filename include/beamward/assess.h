@@ -19,6 +19,39 @@ struct bw_emission_result {
     double optical_density;      /* needed at the exit, sharing the allowance */
 };
 
+/* The same with every tolerance left out. */
+struct bw_nominal {
+    struct bw_reach nohd, skin, diffuse;
+    double ratio_at_exit, skin_ratio_at_exit;
+    double optical_density[BW_EMISSIONS_MAX];
+};
+
+/* The eye behind loupes, a microscope or binoculars. */
+struct bw_aid_result {
+    size_t aid;
+    struct bw_reach nohd; /* extended: through the aid or, if that is farther, of the naked eye that looks past it */
+    bool naked_decides;
+    double ratio_at_exit; /* likewise */
+};
+
+/* How long until the limits are reached somewhere on the axis. */
+struct bw_place_times {
+    bool at_exit; /* where the hazard is worst, at the exit or beyond; else at at_m */
+    double at_m;
+    double eye_ratio, skin_ratio; /* for the exposure times of the handpiece */
+    struct bw_permitted_time eye, skin;
+    struct bw_permitted_time *behind; /* the eye behind each pair of goggles of the case */
+};
+
+/* How much one input moves the answers: central difference on the evaluation itself, about the values as given. */
+struct bw_sensitivity {
+    const char *quantity; /* "power", "pulse duration", "repetition rate", "beam diameter", "divergence", "exposure time" */
+    size_t emission;      /* BW_EMISSIONS_MAX: of all that share it */
+    double nohd_pct_per_pct; /* NAN if there is no NOHD, or none that ends */
+    double od_per_pct;       /* of the largest density at the exit */
+};
+enum { BW_SENSITIVITIES_MAX = 5 * BW_EMISSIONS_MAX + 3 };
+
 struct bw_distance_result { /* one handpiece */
     size_t laser, handpiece;
     struct bw_exposure_time glance, skin_time, diffuse_time;
@@ -35,10 +68,17 @@ struct bw_distance_result { /* one handpiece */
     struct bw_train_limit skin_governing;
     struct bw_emission_result emissions[BW_EMISSIONS_MAX];
     struct bw_hazard *direct, *diffuse_view, *skin_view; /* prepared */
-    bool has_permitted; /* asked for with options.at_m */
-    double at_m;
-    struct bw_permitted_time permitted_eye, permitted_skin;
-    double ratio_at_m;
+    struct bw_output output; /* what was judged: with tolerances at their worst corner, else the handpiece's own */
+    struct bw_tolerance tolerances[BW_EMISSIONS_MAX];
+    bool has_tolerance;
+    struct bw_nominal nominal; /* with has_tolerance */
+    bool skin_area_matters;    /* the rule set limits large areas of skin more strictly here */
+    double skin_area_m2;       /* then: the area at the exit */
+    size_t aid_count, place_count, sensitivity_count;
+    struct bw_aid_result *aids;
+    struct bw_place_times exit;
+    struct bw_place_times *places; /* at each of options.at_m */
+    struct bw_sensitivity *sensitivity; /* the one that moves the NOHD most first, then the density */
     struct bw_working working; /* empty unless options.working */
 };
 
@@ -59,6 +99,10 @@ struct bw_person_result {
     bool has_verdict; /* wears goggles */
     enum bw_verdict verdict;
     bool needs_eyewear; /* ratio above 1 */
+    bool through_aid;   /* the place is that of the eye behind the aid, which is worse off than without */
+    bool has_times;     /* with BW_PART_ROOM */
+    struct bw_permitted_time eye, worn, skin; /* until the limit is reached: without goggles, behind those worn, of skin */
+    double skin_ratio;
 };
 struct bw_room_result {
     size_t room;
@@ -67,6 +111,18 @@ struct bw_room_result {
     bool solved;     /* false without BW_PART_ROOM: persons only, no map, no openings */
     struct bw_room_solution solution;
     struct bw_person_result *persons;
+};
+
+/* What somebody received. */
+struct bw_incident_result {
+    size_t incident;
+    double eye_ratio;       /* multiple of the limit for that time, behind the goggles if any */
+    double naked_eye_ratio; /* without them */
+    double skin_ratio;
+    struct bw_place eye_place, skin_place; /* how it came there; on an axis: direct */
+    size_t eye_source, skin_source; /* index into distances: the handpiece that is worst */
+    struct bw_permitted_time eye, skin; /* how long it would have taken to reach the limit */
+    struct bw_working working;
 };
 
 enum bw_severity { BW_DANGER, BW_ACTION, BW_CAUTION, BW_NOTE };
@@ -80,20 +136,22 @@ struct bw_finding {
 struct bw_result {
     const struct bw_case *the_case;
     const struct bw_table *table;
-    size_t distance_count, pair_count, room_count, finding_count;
+    size_t distance_count, pair_count, room_count, finding_count, incident_count;
     struct bw_distance_result *distances;
     struct bw_pair_result *pairs;
     struct bw_room_result *rooms;
+    struct bw_incident_result *incidents;
     struct bw_finding *findings; /* in order of severity */
     bool needs_action;           /* any finding of danger or action */
 };
 
-enum bw_part { BW_PART_DISTANCE = 1, BW_PART_EYEWEAR = 2, BW_PART_ROOM = 4, BW_PART_ALL = 7 };
+enum bw_part { BW_PART_DISTANCE = 1, BW_PART_EYEWEAR = 2, BW_PART_ROOM = 4, BW_PART_INCIDENT = 8, BW_PART_ALL = 15 };
+enum { BW_PLACES_MAX = 16 };
 struct bw_assess_options {
     unsigned parts;             /* of enum bw_part; eyewear and room include the distances that they need */
     const char *laser, *handpiece, *room; /* NULL = all */
-    bool has_at;
-    double at_m;                /* permitted exposure time at this distance */
+    size_t at_count;
+    double at_m[BW_PLACES_MAX]; /* permitted exposure times at these distances */
     bool working;
 };
 /* Returns: BW_OK; BW_OUT_OF_RANGE (a wavelength that the rule set lacks; names the emission); BW_INPUT (a name that the

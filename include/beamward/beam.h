@@ -37,6 +37,17 @@ struct bw_emission {
 enum bw_status bw_emission_resolve(const struct bw_emission_input *input, struct bw_emission *emission,
                                    struct bw_error *error);
 
+/* How far what is known of an emission may be off, as shares (0.1 = 10 %), 0 or more. */
+struct bw_tolerance {
+    struct bw_emission_input given;
+    double power;          /* of average power, peak power and pulse energy together */
+    double duration, rate; /* of the pulses; below 1 */
+};
+/* What was given, with its powers and energy, pulse duration and rate so many times as large.
+ * Returns: as bw_emission_resolve. */
+enum bw_status bw_emission_varied(const struct bw_emission_input *given, double power, double duration, double rate,
+                                  struct bw_emission *emission, struct bw_error *error);
+
 /* Largest energy that the emission sends in any window of this length [J]. Closed form. */
 double bw_train_window_energy(const struct bw_emission *emission, double window_s);
 /* Pulses of an exposure of this length that begins with a pulse (1 for continuous). */
@@ -68,6 +79,9 @@ struct bw_beam bw_beam_from_fibre(double numerical_aperture, double core_m);
 /* Lens: waist at the focal length, divergence beam/f behind it, waist diameter f x incoming divergence.
  * beam_m and divergence_rad are d63 at the lens. */
 struct bw_beam bw_beam_from_lens(double focal_length_m, double beam_m, double divergence_rad, enum bw_profile profile);
+
+/* The beam with the diameter and the divergence that were given so many times as large. */
+struct bw_beam bw_beam_varied(const struct bw_beam *beam, double diameter, double divergence);
 
 /* d63 at a distance from the exit: hyperbolic d^2 = a^2 + (phi r)^2, linear d = a + phi |r|, r from the waist. */
 double bw_beam_diameter_m(const struct bw_beam *beam, double distance_m);

@@ -56,11 +56,30 @@ enum bw_status bw_hazard_train_limits(const struct bw_table *table, const struct
 
 enum { BW_EMISSIONS_MAX = 16, BW_TERMS_MAX = BW_EMISSIONS_MAX * BW_EFFECTS };
 
-/* What leaves one handpiece at once. */
+/* Loupes, an operating microscope, binoculars: what the eye may look through. */
+enum { BW_AID_BANDS_MAX = 16 };
+struct bw_aid_band { /* both ends included */
+    double low_nm, high_nm, transmittance;
+};
+struct bw_aid {
+    char name[BW_NAME_SIZE], title[BW_TITLE_SIZE];
+    double magnification; /* angular, 1 to 200 */
+    double objective_m;   /* diameter of the objective of one eye, 1e-3 to 1 */
+    size_t band_count;
+    struct bw_aid_band bands[BW_AID_BANDS_MAX]; /* where none holds a wavelength, all is taken to pass */
+};
+/* Share that the optics pass: the largest of the bands that hold the wavelength, 1 without any; 0 where glass is taken
+ * to pass nothing. */
+double bw_aid_transmittance(const struct bw_aid *aid, double wavelength_nm);
+
+/* What leaves one handpiece at once, and what is in its way to the eye. The pointers may be NULL: nothing. */
 struct bw_output {
     size_t count; /* 1 to BW_EMISSIONS_MAX */
     struct bw_emission emissions[BW_EMISSIONS_MAX];
     struct bw_beam beams[BW_EMISSIONS_MAX];
+    const struct bw_aid *aid;        /* the eye looks through it */
+    const double *passes;            /* share of each emission that goggles let through to the eye, 0 to 1 */
+    const struct bw_tolerance *tolerances; /* of each emission: limits are then those of the worst corner of duration and rate */
 };
 
 /* One emission against one effect: ratio = average power x irradiance per watt / limit. */
@@ -94,6 +113,8 @@ double bw_hazard_ratio(const struct bw_hazard *hazard, double distance_m);
 void bw_hazard_ratio_detail(const struct bw_hazard *hazard, double distance_m, struct bw_ratio *ratio);
 /* The same for a place off the axis by offset_m: an upper bound that never rises with the offset. */
 double bw_hazard_ratio_off_axis(const struct bw_hazard *hazard, double distance_m, double offset_m);
+/* How the ratio on the axis comes about. */
+void bw_hazard_ratio_working(const struct bw_hazard *hazard, double distance_m, struct bw_working *working);
 /* Envelope: the largest ratio at this distance or farther (focused beams); at most 1e-4 above it, never below. */
 double bw_hazard_ratio_envelope(const struct bw_hazard *hazard, double distance_m);
 
@@ -135,6 +156,12 @@ struct bw_permitted_time {
     double exposure_s;
     bool unbounded;
 };
+/* The ratio after an exposure of this length, at some place. */
+typedef enum bw_status bw_ratio_after(double exposure_s, void *context, double *ratio, struct bw_error *error);
+/* Longest exposure of which, and of all shorter ones, the ratio is 1 or below; outputs: all that the ratio is of. */
+enum bw_status bw_hazard_time_to_limit(const struct bw_table *table, const struct bw_output *const *outputs,
+                                       size_t count, const struct bw_viewing_case *viewing, bw_ratio_after *ratio_after,
+                                       void *context, struct bw_permitted_time *time, struct bw_error *error);
 enum bw_status bw_hazard_permitted_time(const struct bw_table *table, const struct bw_output *output,
                                         const struct bw_viewing_case *viewing, double distance_m,
                                         struct bw_permitted_time *time, struct bw_working *working,

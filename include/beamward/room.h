@@ -38,6 +38,8 @@ struct bw_person {
     struct bw_point at;
     bool has_eyewear;
     size_t eyewear; /* index into the case's goggles */
+    bool has_aid;
+    size_t aid; /* index into the case's optical aids */
 };
 
 struct bw_room {

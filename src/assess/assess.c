@@ -73,6 +73,8 @@ static enum bw_status run(const struct assess_job *job) {
         status = make_pairs(job);
     if (status == BW_OK && (job->options->parts & (BW_PART_EYEWEAR | BW_PART_ROOM)))
         status = rooms(job);
+    if (status == BW_OK && (job->options->parts & BW_PART_INCIDENT))
+        status = assess_incidents(job);
     if (status == BW_OK)
         status = assess_findings(job);
     return status;
@@ -108,7 +110,15 @@ void bw_result_free(struct bw_result *result) {
         free(result->distances[i].diffuse_view);
         free(result->distances[i].skin_view);
         bw_working_free(&result->distances[i].working);
+        for (size_t j = 0; j < result->distances[i].place_count; j++)
+            free(result->distances[i].places[j].behind);
+        free(result->distances[i].exit.behind);
+        free(result->distances[i].places);
+        free(result->distances[i].aids);
+        free(result->distances[i].sensitivity);
     }
+    for (size_t i = 0; i < result->incident_count; i++)
+        bw_working_free(&result->incidents[i].working);
     for (size_t i = 0; i < result->room_count; i++) {
         free(result->rooms[i].sources);
         free(result->rooms[i].persons);
@@ -120,5 +130,6 @@ void bw_result_free(struct bw_result *result) {
     free(result->pairs);
     free(result->rooms);
     free(result->findings);
+    free(result->incidents);
     free(result);
 }

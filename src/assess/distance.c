@@ -45,13 +45,13 @@ static enum bw_status find_times(const struct assess_job *job, struct bw_distanc
     return status;
 }
 
-static enum bw_status prepare(const struct assess_job *job, const struct bw_distance_result *distance,
+enum bw_status assess_prepare(const struct assess_job *job, const struct bw_distance_result *distance,
                               struct bw_viewing_case viewing, struct bw_hazard **hazard, struct bw_working *working,
                               struct bw_error *error) {
     *hazard = calloc(1, sizeof **hazard);
     if (!*hazard)
         return bw_error_set(error, BW_NO_MEMORY, "out of memory");
-    return bw_hazard_prepare(job->table, &assess_handpiece(job, distance)->output, &viewing, *hazard, working, error);
+    return bw_hazard_prepare(job->table, &distance->output, &viewing, *hazard, working, error);
 }
 
 /* Where each emission is narrowest: a place of the beam as near as an eye or a sheet of paper can come. */
@@ -100,7 +100,7 @@ static double alone(const struct bw_hazard *hazard, size_t emission) {
 }
 
 /* The term that governs where the hazard is worst: at the exit, or at the waist of one of the emissions. */
-static void find_governing(const struct bw_hazard *hazard, size_t *emission, struct bw_train_limit *limit,
+void assess_find_governing(const struct bw_hazard *hazard, size_t *emission, struct bw_train_limit *limit,
                            double *at_m) {
     struct bw_ratio ratio;
     bw_hazard_ratio_detail(hazard, 0., &ratio);
@@ -143,28 +143,27 @@ static enum bw_status eye_direct(const struct assess_job *job, struct bw_distanc
                                  struct bw_working *working, struct bw_error *error) {
     bw_working_heading(working, "Eye in the direct beam, exposure %g s", distance->glance.exposure_s);
     struct bw_viewing_case viewing = {.target = BW_EYE, .exposure_s = distance->glance.exposure_s};
-    enum bw_status status = prepare(job, distance, viewing, &distance->direct, working, error);
+    enum bw_status status = assess_prepare(job, distance, viewing, &distance->direct, working, error);
     if (status == BW_OK)
         status = bw_hazard_reach(distance->direct, BW_EMISSIONS_MAX, &distance->nohd, working, error);
     if (status != BW_OK)
         return status;
     distance->ratio_at_exit = bw_hazard_ratio_envelope(distance->direct, 0.);
-    find_governing(distance->direct, &distance->governing_emission, &distance->governing, &distance->worst_m);
+    assess_find_governing(distance->direct, &distance->governing_emission, &distance->governing, &distance->worst_m);
     return BW_OK;
 }
 
-static enum bw_status skin(const struct assess_job *job, struct bw_distance_result *distance,
-                           struct bw_working *working, struct bw_error *error) {
-    bw_working_heading(working, "Skin in the beam, exposure %g s", distance->skin_time.exposure_s);
-    struct bw_viewing_case viewing = {.target = BW_SKIN, .exposure_s = distance->skin_time.exposure_s};
-    enum bw_status status = prepare(job, distance, viewing, &distance->skin_view, working, error);
-    if (status == BW_OK)
-        status = bw_hazard_reach(distance->skin_view, BW_EMISSIONS_MAX, &distance->skin, working, error);
-    if (status != BW_OK)
+/* A wider spot looks wider, and is mostly the safer for it; but the correction of a train may be stricter for it. */
+static enum bw_status try_widest_spot(const struct assess_job *job, struct bw_distance_result *distance,
+                                      struct bw_error *error) {
+    struct bw_output widest = assess_widest_output(job, distance);
+    struct bw_spot spot = smallest_spot(&widest);
+    struct bw_reach reach;
+    enum bw_status status = bw_hazard_diffuse_reach(distance->diffuse_view, &spot, &reach, NULL, error);
+    if (status != BW_OK || reach.distance_m <= distance->diffuse.distance_m)
         return status;
-    double at_m;
-    distance->skin_ratio_at_exit = bw_hazard_ratio_envelope(distance->skin_view, 0.);
-    find_governing(distance->skin_view, &distance->skin_governing_emission, &distance->skin_governing, &at_m);
+    distance->diffuse_spot = spot;
+    distance->diffuse = reach;
     return BW_OK;
 }
 
@@ -173,30 +172,27 @@ static enum bw_status eye_diffuse(const struct assess_job *job, struct bw_distan
     bw_working_heading(working, "Eye on the diffuse reflection, reflectance 1, smallest spot, exposure %g s",
                        distance->diffuse_time.exposure_s);
     struct bw_viewing_case viewing = {.target = BW_EYE, .exposure_s = distance->diffuse_time.exposure_s};
-    enum bw_status status = prepare(job, distance, viewing, &distance->diffuse_view, working, error);
+    enum bw_status status = assess_prepare(job, distance, viewing, &distance->diffuse_view, working, error);
     if (status != BW_OK)
         return status;
     distance->diffuse_spot = smallest_spot(distance->diffuse_view->output);
+    status = bw_hazard_diffuse_reach(distance->diffuse_view, &distance->diffuse_spot, &distance->diffuse, NULL, error);
+    if (status == BW_OK && distance->has_tolerance)
+        status = try_widest_spot(job, distance, error);
+    if (status != BW_OK || working == NULL)
+        return status;
     return bw_hazard_diffuse_reach(distance->diffuse_view, &distance->diffuse_spot, &distance->diffuse, working, error);
 }
 
-static enum bw_status permitted(const struct assess_job *job, struct bw_distance_result *distance,
-                                struct bw_working *working, struct bw_error *error) {
-    if (!job->options->has_at)
-        return BW_OK;
-    const struct bw_output *output = &assess_handpiece(job, distance)->output;
-    double at_m = job->options->at_m;
-    struct bw_viewing_case eye = distance->direct->viewing, on_skin = distance->skin_view->viewing;
-    bw_working_heading(working, "Longest permitted exposure at %g m", at_m);
-    distance->has_permitted = true;
-    distance->at_m = at_m;
-    distance->ratio_at_m = bw_hazard_ratio(distance->direct, at_m);
-    enum bw_status status =
-        bw_hazard_permitted_time(job->table, output, &eye, at_m, &distance->permitted_eye, working, error);
+/* The three distances, and what each emission needs. */
+enum bw_status assess_figures(const struct assess_job *job, struct bw_distance_result *distance,
+                              struct bw_working *working, struct bw_error *error) {
+    enum bw_status status = eye_direct(job, distance, working, error);
     if (status == BW_OK)
-        status =
-            bw_hazard_permitted_time(job->table, output, &on_skin, at_m, &distance->permitted_skin, working, error);
-    return status;
+        status = assess_skin(job, distance, working, error);
+    if (status == BW_OK)
+        status = eye_diffuse(job, distance, working, error);
+    return status == BW_OK ? emissions(distance, error) : status;
 }
 
 /* All that is asked of one handpiece.
@@ -213,15 +209,15 @@ enum bw_status assess_distance(const struct assess_job *job, size_t laser, size_
     distance->handpiece = handpiece;
     enum bw_status status = find_times(job, distance, &cause);
     if (status == BW_OK)
-        status = eye_direct(job, distance, working, &cause);
+        status = assess_find_output(job, distance, working, &cause);
     if (status == BW_OK)
-        status = skin(job, distance, working, &cause);
+        status = assess_figures(job, distance, working, &cause);
     if (status == BW_OK)
-        status = eye_diffuse(job, distance, working, &cause);
+        status = assess_aids(job, distance, working, &cause);
     if (status == BW_OK)
-        status = emissions(distance, &cause);
+        status = assess_times(job, distance, working, &cause);
     if (status == BW_OK)
-        status = permitted(job, distance, working, &cause);
+        status = assess_sensitivity(job, distance, &cause);
     if (status == BW_OK && distance->working.failed)
         status = bw_error_set(&cause, BW_NO_MEMORY, "out of memory");
     return status == BW_OK ? BW_OK : assess_blame(job, distance, status, &cause);

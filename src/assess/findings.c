@@ -66,6 +66,7 @@ enum bw_status assess_findings(const struct assess_job *job) {
     struct bw_error own = {0};
     struct assess_job inner = *job;
     inner.error = &own;
+    assess_incident_findings(&inner);
     assess_people_findings(&inner);
     assess_opening_findings(&inner);
     assess_eyewear_findings(&inner);

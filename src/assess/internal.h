@@ -27,6 +27,82 @@ enum bw_status assess_distance(const struct assess_job *job, size_t laser, size_
                                struct bw_distance_result *distance);
 /* Each term at its worst, at the exit or at a waist beyond it. */
 void assess_worst_terms(const struct bw_hazard *hazard, double worst[BW_TERMS_MAX]);
+enum bw_status assess_prepare(const struct assess_job *job, const struct bw_distance_result *distance,
+                              struct bw_viewing_case viewing, struct bw_hazard **hazard, struct bw_working *working,
+                              struct bw_error *error);
+/* The term that governs where the hazard is worst: at the exit, or at the waist of one of the emissions. */
+void assess_find_governing(const struct bw_hazard *hazard, size_t *emission, struct bw_train_limit *limit, double *at_m);
+
+/* distance.c: distances and densities of distance->output for its exposure times. */
+enum bw_status assess_figures(const struct assess_job *job, struct bw_distance_result *distance,
+                              struct bw_working *working, struct bw_error *error);
+
+/* tolerances.c: the output at the worst corner of the tolerances, and the figures without any. */
+enum bw_status assess_find_output(const struct assess_job *job, struct bw_distance_result *distance,
+                                  struct bw_working *working, struct bw_error *error);
+/* The widest spots that the tolerances allow. */
+struct bw_output assess_widest_output(const struct assess_job *job, const struct bw_distance_result *distance);
+
+/* skin.c: how far skin in the beam is at risk; the large-area rule. */
+enum bw_status assess_skin(const struct assess_job *job, struct bw_distance_result *distance,
+                           struct bw_working *working, struct bw_error *error);
+/* The exposed area of skin at a distance, 0 where it does not matter. */
+double assess_skin_area_m2(const struct assess_job *job, const struct bw_distance_result *distance, double at_m);
+
+/* aids.c, times.c, sensitivity.c: more about one handpiece. */
+enum bw_status assess_aids(const struct assess_job *job, struct bw_distance_result *distance,
+                           struct bw_working *working, struct bw_error *error);
+enum bw_status assess_times(const struct assess_job *job, struct bw_distance_result *distance,
+                            struct bw_working *working, struct bw_error *error);
+enum bw_status assess_sensitivity(const struct assess_job *job, struct bw_distance_result *distance,
+                                  struct bw_error *error);
+
+/* view.c: the eye or skin of somebody, at a distance on the axis of a handpiece or at a place in a room, behind what
+ * they wear. */
+struct assess_light { /* one handpiece that may reach them */
+    const struct bw_distance_result *distance;
+    struct bw_output output;
+    double passes[BW_EMISSIONS_MAX];
+    struct bw_hazard direct, diffuse;
+};
+struct assess_view {
+    const struct assess_job *job;
+    enum bw_target target;
+    const struct bw_aid *aid;         /* NULL: none */
+    const struct bw_goggles *goggles; /* NULL: none */
+    const struct bw_room *room;       /* NULL: on the axis of one handpiece */
+    struct bw_point at;               /* in the room */
+    bool at_exit;                     /* on the axis: where it is worst, at the exit or beyond */
+    double distance_m;                /* on the axis, else */
+    size_t count;
+    struct assess_light *lights;
+    struct bw_room_source *sources;
+    struct bw_place place; /* of the last ratio; on the axis: direct */
+};
+/* One light a handpiece. assess_view_close also after a failure. */
+enum bw_status assess_view_open(struct assess_view *view, const struct bw_distance_result *const *distances,
+                                size_t count, struct bw_error *error);
+void assess_view_close(struct assess_view *view);
+/* After an exposure of this length; context is the view. */
+enum bw_status assess_view_ratio(double exposure_s, void *context, double *ratio, struct bw_error *error);
+/* For the exposure times of each handpiece. */
+enum bw_status assess_view_customary(struct assess_view *view, double *ratio, struct bw_error *error);
+enum bw_status assess_view_time(struct assess_view *view, struct bw_permitted_time *time, struct bw_error *error);
+struct bw_permitted_time assess_shorter(struct bw_permitted_time a, struct bw_permitted_time b);
+
+/* persons.c: times and aids of the people in a room. */
+enum bw_status assess_person_aid(const struct assess_job *job, const struct bw_room_result *room, size_t index,
+                                 struct bw_error *error);
+enum bw_status assess_person_terms(const struct assess_job *job, const struct bw_room_result *room, size_t index,
+                                   const struct bw_distance_result *distance, double term_ratios[BW_TERMS_MAX],
+                                   struct bw_error *error);
+enum bw_status assess_person_times(const struct assess_job *job, const struct bw_room_result *room, size_t index,
+                                   struct bw_error *error);
+
+/* incidents.c */
+enum bw_status assess_incidents(const struct assess_job *job);
+void assess_incident_findings(const struct assess_job *job); /* findings_incidents.c */
+
 /* blame.c: names the emission that a failed preparation is about. */
 enum bw_status assess_blame(const struct assess_job *job, const struct bw_distance_result *distance,
                             enum bw_status status, const struct bw_error *cause);

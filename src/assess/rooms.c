@@ -76,6 +76,8 @@ static enum bw_status densities(const struct assess_job *job, const struct bw_ro
     struct bw_error cause = {0};
     double terms[BW_TERMS_MAX] = {0}, od[BW_EMISSIONS_MAX] = {0};
     enum bw_status status = bw_room_terms_at(the_room, &source, the_room->persons[index].at, terms, &cause);
+    if (status == BW_OK && the_room->persons[index].has_aid)
+        status = assess_person_terms(job, room, index, distance, terms, &cause);
     if (status != BW_OK)
         return blame_room(job, room->room, status, &cause);
     bw_hazard_optical_density(distance->direct, terms, od);
@@ -97,6 +99,10 @@ static enum bw_status person(const struct assess_job *job, const struct bw_room_
         result->place = room->solution.persons[index];
     else
         status = bw_room_at(the_room, sources, room->source_count, the_room->persons[index].at, &result->place, &cause);
+    if (status == BW_OK && the_room->persons[index].has_aid)
+        status = assess_person_aid(job, room, index, &cause);
+    if (status == BW_OK && (job->options->parts & BW_PART_ROOM))
+        status = assess_person_times(job, room, index, &cause);
     if (status != BW_OK)
         return blame_room(job, room->room, status, &cause);
     result->needs_eyewear = !(result->place.ratio <= 1.);

@@ -93,8 +93,8 @@ static void keep_given(struct reading *reading) {
 
 static void read_all(struct reading *reading) {
     static void (*const readers[])(struct reading *) = {
-        sections_read,   read_case_section, read_materials, read_goggles, read_lasers,
-        read_handpieces, read_rooms,        read_uses,      keep_given,
+        sections_read,   read_case_section, read_materials, read_goggles,   read_aids,  read_lasers,
+        read_handpieces, read_rooms,        read_uses,      read_incidents, keep_given,
     };
     for (size_t i = 0; i < sizeof readers / sizeof *readers && !reading->no_memory; i++)
         readers[i](reading);
@@ -185,6 +185,7 @@ enum bw_status bw_case_read(const char *path, struct bw_case **the_case, struct 
 static void free_laser(struct bw_laser *laser) {
     free(laser->emissions);
     free(laser->handpieces);
+    free(laser->tolerances);
 }
 
 void bw_case_free(struct bw_case *the_case) {
@@ -198,6 +199,8 @@ void bw_case_free(struct bw_case *the_case) {
     free(the_case->rooms);
     free(the_case->eyewear);
     free(the_case->uses);
+    free(the_case->aids);
+    free(the_case->incidents);
     bw_ini_free(&the_case->given);
     free(the_case);
 }

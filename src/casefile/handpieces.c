@@ -5,6 +5,7 @@
 #include <string.h>
 
 static const struct range exposures_s = {1e-13, 3e4}; /* what the published tables cover */
+static const struct range skins_m2 = {1e-6, 2.};      /* nobody has more */
 
 static void read_emission_beam(struct reading *reading, const struct section *of, struct section *section,
                                const struct bw_laser *laser, struct bw_handpiece *handpiece) {
@@ -20,6 +21,8 @@ static void read_emission_beam(struct reading *reading, const struct section *of
     if (!emission || emission->index >= BW_EMISSIONS_MAX)
         return;
     handpiece->output.beams[emission->index] = beam;
+    read_beam_tolerance(reading, section, of, &handpiece->diameter_tolerance[emission->index],
+                        &handpiece->divergence_tolerance[emission->index]);
     handpiece->emission_beam_given[emission->index] = true;
 }
 
@@ -37,6 +40,29 @@ static bool all_have_beams(const struct bw_handpiece *handpiece) {
     return handpiece->output.count > 0;
 }
 
+static bool any_tolerance(const struct bw_laser *laser, const struct bw_handpiece *handpiece) {
+    for (size_t i = 0; i < handpiece->output.count; i++) {
+        const struct bw_tolerance *emission = &laser->tolerances[i];
+        if (emission->power > 0. || emission->duration > 0. || emission->rate > 0. ||
+            handpiece->diameter_tolerance[i] > 0. || handpiece->divergence_tolerance[i] > 0.)
+            return true;
+    }
+    return false;
+}
+
+/* The emissions that have no beam of their own take the handpiece's. */
+static void share_beam(struct reading *reading, const struct section *section, const struct bw_beam *beam,
+                       struct bw_handpiece *handpiece) {
+    double diameter, divergence;
+    read_beam_tolerance(reading, section, NULL, &diameter, &divergence);
+    for (size_t i = 0; i < handpiece->output.count; i++)
+        if (!handpiece->emission_beam_given[i]) {
+            handpiece->output.beams[i] = *beam;
+            handpiece->diameter_tolerance[i] = diameter;
+            handpiece->divergence_tolerance[i] = divergence;
+        }
+}
+
 static void read_handpiece(struct reading *reading, const struct section *section, const struct bw_laser *laser,
                            struct bw_handpiece *handpiece) {
     struct bw_beam beam = {0};
@@ -45,6 +71,8 @@ static void read_handpiece(struct reading *reading, const struct section *sectio
     handpiece->line = section->head->line;
     value_text(reading, section, "title", handpiece->title, sizeof handpiece->title);
     handpiece->has_exposure = value_number(reading, section, "exposure", exposures_s, &handpiece->exposure_s) == GIVEN;
+    handpiece->has_exposed_skin =
+        value_number(reading, section, "exposed_skin", skins_m2, &handpiece->exposed_skin_m2) == GIVEN;
     output->count = laser->emission_count < BW_EMISSIONS_MAX ? laser->emission_count : BW_EMISSIONS_MAX;
     memcpy(output->emissions, laser->emissions, output->count * sizeof *output->emissions);
     read_emission_beams(reading, section, laser, handpiece);
@@ -54,9 +82,8 @@ static void read_handpiece(struct reading *reading, const struct section *sectio
         fault_section(reading, section,
                       "has no beam; beam_diameter_mm and divergence_mrad would be right, or fibre_na "
                       "and fibre_core_mm");
-    for (size_t i = 0; i < output->count; i++)
-        if (!handpiece->emission_beam_given[i])
-            output->beams[i] = beam;
+    share_beam(reading, section, &beam, handpiece);
+    handpiece->has_tolerance = any_tolerance(laser, handpiece);
 }
 
 static void read_handpieces_of(struct reading *reading, struct section *of) {

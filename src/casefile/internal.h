@@ -21,6 +21,8 @@ enum section_kind {
     SECTION_EYEWEAR,
     SECTION_USE,
     SECTION_MATERIAL,
+    SECTION_AID,
+    SECTION_INCIDENT,
     SECTION_KINDS
 };
 
@@ -150,6 +152,11 @@ enum presence value_point(struct reading *reading, const struct section *section
                           struct bw_point *point);
 /* Bearings `FROM .. TO`. */
 enum presence value_aim(struct reading *reading, const struct section *section, double *from_deg, double *to_deg);
+/* The name of one of some things; *index is its place. what: "eyewear", as in [eyewear NAME]. */
+enum presence value_name(struct reading *reading, const struct section *section, const char *key,
+                         enum section_kind kind, const char *const *names, size_t count, size_t *index);
+enum presence value_eyewear(struct reading *reading, const struct section *section, size_t *index);
+enum presence value_aid(struct reading *reading, const struct section *section, size_t *index);
 /* The name of a material, the case's own or a published one. */
 enum presence value_material(struct reading *reading, const struct section *section, const char *key,
                              struct bw_material *material);
@@ -162,6 +169,13 @@ void read_lasers(struct reading *reading);     /* with emissions */
 void read_handpieces(struct reading *reading); /* with beams */
 void read_rooms(struct reading *reading);      /* with what is in them */
 void read_uses(struct reading *reading);
+void read_aids(struct reading *reading);
+void read_incidents(struct reading *reading);
+/* How far what is given of an emission may be off; `tolerance` has what was given already. */
+void read_emission_tolerance(struct reading *reading, const struct section *section, struct bw_tolerance *tolerance);
+/* The same for a beam; from its handpiece (may be NULL) unless it has its own. */
+void read_beam_tolerance(struct reading *reading, const struct section *section, const struct section *handpiece,
+                         double *diameter, double *divergence);
 /* Geometry of a handpiece or beam. A beam takes the definition of diameters from its handpiece (may be NULL), unless it
  * has one of its own. */
 enum presence read_beam(struct reading *reading, const struct section *section, const struct section *handpiece,

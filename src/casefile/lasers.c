@@ -18,7 +18,8 @@ static bool any_wrong(const enum presence *presences, size_t count) {
     return false;
 }
 
-static void read_emission(struct reading *reading, const struct section *section, struct bw_emission *emission) {
+static void read_emission(struct reading *reading, const struct section *section, struct bw_emission *emission,
+                          struct bw_tolerance *tolerance) {
     struct bw_emission_input input;
     struct bw_error error = {0};
     enum presence presences[] = {
@@ -41,22 +42,26 @@ static void read_emission(struct reading *reading, const struct section *section
     if (bw_emission_resolve(&input, emission, &error) != BW_OK)
         fault_section(reading, section, "%s", error.text);
     snprintf(emission->name, sizeof emission->name, "%s", section->names[1]);
+    tolerance->given = input;
+    read_emission_tolerance(reading, section, tolerance);
 }
 
 static void read_emissions(struct reading *reading, const struct section *of, struct bw_laser *laser) {
     size_t at = 0, count = sections_count(reading, SECTION_EMISSION, laser->name, NULL);
     laser->emissions = reading_allocate(reading, count, sizeof *laser->emissions);
+    laser->tolerances = reading_allocate(reading, count, sizeof *laser->tolerances);
     if (count == 0 && !reading->lost[SECTION_EMISSION])
         fault_section(reading, of, "has no emission; [emission %s NAME] with wavelength and power would be right",
                       laser->name);
     if (count > BW_EMISSIONS_MAX)
         fault_section(reading, of, "has %zu emissions; at most %d would be right", count, BW_EMISSIONS_MAX);
     for (struct section *section;
-         laser->emissions && (section = sections_next(reading, &at, SECTION_EMISSION, laser->name, NULL));) {
+         laser->emissions && laser->tolerances &&
+         (section = sections_next(reading, &at, SECTION_EMISSION, laser->name, NULL));) {
         section->index = laser->emission_count++;
         section->parent = of->index;
         section->made = true;
-        read_emission(reading, section, &laser->emissions[section->index]);
+        read_emission(reading, section, &laser->emissions[section->index], &laser->tolerances[section->index]);
     }
 }
 

@@ -113,37 +113,13 @@ static void read_area(struct reading *reading, struct section *section, struct b
     }
 }
 
-static void read_worn(struct reading *reading, const struct section *section, struct bw_person *person) {
-    const struct bw_ini_entry *entry = value_entry(section, "eyewear", NULL);
-    if (!entry || strcmp(entry->value, "none") == 0)
-        return;
-    const struct bw_case *the_case = reading->the_case;
-    for (size_t i = 0; i < the_case->eyewear_count; i++)
-        if (strcmp(the_case->eyewear[i].name, entry->value) == 0) {
-            person->has_eyewear = true;
-            person->eyewear = i;
-            return;
-        }
-    const char *names[256] = {"none"};
-    size_t count = 1;
-    for (size_t i = 0; i < the_case->eyewear_count && count < sizeof names / sizeof *names; i++)
-        names[count++] = the_case->eyewear[i].name;
-    const char *nearest = bw_nearest_name(entry->value, names, count);
-    if (reading->lost[SECTION_EYEWEAR])
-        return;
-    if (nearest)
-        fault_key(reading, entry, "%s: there is no such eyewear; did you mean %s?", entry->value, nearest);
-    else
-        fault_key(reading, entry, "%s: there is no such eyewear; add [eyewear %s], or write none", entry->value,
-                  entry->value);
-}
-
 static void read_person(struct reading *reading, struct section *section, struct bw_room *room) {
     struct bw_person *person = &room->persons[section->index];
     snprintf(person->name, sizeof person->name, "%s", section->names[1]);
     value_text(reading, section, "title", person->title, sizeof person->title);
     section->made = read_end(reading, section, "at", &person->at);
-    read_worn(reading, section, person);
+    person->has_eyewear = value_eyewear(reading, section, &person->eyewear) == GIVEN;
+    person->has_aid = value_aid(reading, section, &person->aid) == GIVEN;
 }
 
 /* What can be in a room, and where its number is kept. */

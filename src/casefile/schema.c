@@ -28,6 +28,7 @@ static const struct unit_word time_units[] = {
     {"s", "s", 1.}, {"ms", "ms", 1e-3}, {"us", "us", 1e-6}, {"ns", "ns", 1e-9}};
 static const struct unit_word rate_units[] = {{"hz", "Hz", 1.}, {"khz", "kHz", 1e3}};
 static const struct unit_word second_units[] = {{"s", "s", 1.}};
+static const struct unit_word area_units[] = {{"cm2", "cm2", 1e-4}, {"m2", "m2", 1.}};
 static const struct unit_word percent_units[] = {{"pct", "%", 1e-2}};
 
 static const struct unit_family length = {length_units, COUNT(length_units)};
@@ -40,6 +41,7 @@ static const struct unit_family energy = {energy_units, COUNT(energy_units)};
 static const struct unit_family duration = {time_units, COUNT(time_units)};
 static const struct unit_family rate = {rate_units, COUNT(rate_units)};
 static const struct unit_family seconds = {second_units, COUNT(second_units)};
+static const struct unit_family area = {area_units, COUNT(area_units)};
 static const struct unit_family percent = {percent_units, COUNT(percent_units)};
 
 /* ---- keys ----------------------------------------------------------------------------------- */
@@ -50,8 +52,10 @@ static const struct unit_family percent = {percent_units, COUNT(percent_units)};
     {"beam_diameter", &length, "beam_diameter_mm = 30"}, {"divergence", &angle, "divergence_mrad = 200"},              \
         {"diameter_definition", NULL, "diameter_definition = d86"},                                                    \
         {"divergence_definition", NULL, "divergence_definition = full"}, {"spread", NULL, "spread = hyperbolic"},      \
-        {"fibre_na", NULL, "fibre_na = 0.22"}, {"fibre_core", &length, "fibre_core_mm = 0.4"}, {                       \
-        "lens_focal_length", &length, "lens_focal_length_mm = 50"                                                      \
+        {"fibre_na", NULL, "fibre_na = 0.22"}, {"fibre_core", &length, "fibre_core_mm = 0.4"},                         \
+        {"lens_focal_length", &length, "lens_focal_length_mm = 50"},                                                   \
+        {"diameter_tolerance", &percent, "diameter_tolerance_pct = 10"}, {                                             \
+        "divergence_tolerance", &percent, "divergence_tolerance_pct = 10"                                              \
     }
 
 static const struct key_word case_keys[] = {
@@ -67,8 +71,16 @@ static const struct key_word emission_keys[] = {
     {"pulse_energy", &energy, "pulse_energy_uj = 11"},
     {"pulse_duration", &duration, "pulse_duration_ns = 150"},
     {"repetition_rate", &rate, "repetition_rate_hz = 10000"},
+    {"tolerance", &percent, "tolerance_pct = 20"},
+    {"power_tolerance", &percent, "power_tolerance_pct = 20"},
+    {"average_power_tolerance", &percent, "average_power_tolerance_pct = 20"},
+    {"peak_power_tolerance", &percent, "peak_power_tolerance_pct = 20"},
+    {"pulse_energy_tolerance", &percent, "pulse_energy_tolerance_pct = 20"},
+    {"pulse_duration_tolerance", &percent, "pulse_duration_tolerance_pct = 10"},
+    {"repetition_rate_tolerance", &percent, "repetition_rate_tolerance_pct = 5"},
 };
-static const struct key_word handpiece_keys[] = {TITLE_KEY, BEAM_KEYS, {"exposure", &seconds, "exposure_s = 10"}};
+static const struct key_word handpiece_keys[] = {TITLE_KEY, BEAM_KEYS, {"exposure", &seconds, "exposure_s = 10"},
+                                                 {"exposed_skin", &area, "exposed_skin_cm2 = 50"}};
 static const struct key_word beam_keys[] = {BEAM_KEYS};
 static const struct key_word room_keys[] = {
     TITLE_KEY,
@@ -100,6 +112,7 @@ static const struct key_word person_keys[] = {
     TITLE_KEY,
     {"at", &place, "at_m = 2.6 1.2"},
     {"eyewear", NULL, "eyewear = none"},
+    {"aid", NULL, "aid = none"},
 };
 static const struct key_word eyewear_keys[] = {
     TITLE_KEY,
@@ -107,6 +120,23 @@ static const struct key_word eyewear_keys[] = {
     {"od", NULL, "od = 800-820 6.2, 890-1070 5.5"},
     {"luminous_transmittance", &percent, "luminous_transmittance_pct = 38"},
     {"inspected", NULL, "inspected = 2025-03-14"},
+};
+static const struct key_word aid_keys[] = {
+    TITLE_KEY,
+    {"magnification", NULL, "magnification = 2.5"},
+    {"objective_diameter", &length, "objective_diameter_mm = 20"},
+    {"transmittance_pct", NULL, "transmittance_pct = 400-700 90, 700-1400 70"},
+};
+static const struct key_word incident_keys[] = {
+    TITLE_KEY,
+    {"room", NULL, "room = two"},
+    {"at", &place, "at_m = 2.6 1.2"},
+    {"laser", NULL, "laser = trident"},
+    {"handpiece", NULL, "handpiece = spot-30"},
+    {"distance", &length, "distance_m = 0.4"},
+    {"exposure", &seconds, "exposure_s = 2"},
+    {"eyewear", NULL, "eyewear = none"},
+    {"aid", NULL, "aid = none"},
 };
 static const struct key_word material_keys[] = {
     TITLE_KEY,
@@ -138,6 +168,8 @@ static const struct section_word section_words[SECTION_KINDS] = {
     [SECTION_EYEWEAR] = {"eyewear", 1, "NAME", "[eyewear wraps]", 200, eyewear_keys, COUNT(eyewear_keys)},
     [SECTION_USE] = {"use", 3, "ROOM LASER HANDPIECE", "[use two trident spot-30]", 500, NULL, 0},
     [SECTION_MATERIAL] = {"material", 1, "NAME", "[material tray]", 200, material_keys, COUNT(material_keys)},
+    [SECTION_AID] = {"aid", 1, "NAME", "[aid loupes]", 100, aid_keys, COUNT(aid_keys)},
+    [SECTION_INCIDENT] = {"incident", 1, "NAME", "[incident first]", 200, incident_keys, COUNT(incident_keys)},
 };
 
 const struct section_word *schema_section(enum section_kind kind) {
@@ -188,8 +220,6 @@ static const struct {
     {"burst_", "bursts are not in this version; describe the train as if it ran without gaps, the stricter side"},
     {"pulses", "measured and counted trains are not in this version; describe a regular train at least as strong"},
     {"pulse_count", "counted pulses are not in this version; describe a regular train at least as strong"},
-    {"tolerance", "tolerances are not in this version; write the worst values: highest power, smallest diameter and "
-                  "divergence"},
     {"emitter_", "clusters of emitters are not in this version; describe one emitter with the power of all, the "
                  "stricter side"},
     {"beam_diameter_x_", "elliptical beams are not in this version; write the smaller diameter as beam_diameter_mm"},
@@ -203,7 +233,7 @@ static const char *why_not_built(const char *key) {
     for (size_t i = 0; i < COUNT(not_built); i++)
         if (strncmp(key, not_built[i].begin, strlen(not_built[i].begin)) == 0)
             return not_built[i].text;
-    return strstr(key, "_tolerance") ? not_built[4].text : NULL;
+    return NULL;
 }
 
 static void add_units(struct bw_text *text, const struct key_word *word) {

@@ -3,7 +3,7 @@
 
 static const struct cli_option options[] = {
     CLI_NARROWING_OPTIONS,
-    {"--at", "M", "also the longest permitted exposure at this distance in m"},
+    {"--at", "M,M...", "longest exposures at these distances in m as well"},
     CLI_COMMON_OPTIONS,
 };
 
@@ -13,7 +13,7 @@ static enum cli_exit run(const struct cli_arguments *arguments) {
     enum cli_exit exit_code = cli_job_read(arguments, &job);
     if (exit_code != CLI_DONE)
         return exit_code;
-    exit_code = cli_job_assess(arguments, &job, BW_PART_DISTANCE, &result);
+    exit_code = cli_job_assess(arguments, &job, BW_PART_DISTANCE | BW_PART_INCIDENT, &result);
     if (exit_code == CLI_DONE) {
         struct bw_text text = {0};
         if (cli_wants_json(arguments))

@@ -110,6 +110,25 @@ void cli_job_free(struct cli_job *job) {
     *job = (struct cli_job){0};
 }
 
+/* --at M or M,M,M. Returns: false after printing what is wrong. */
+static bool read_distances(const struct cli_arguments *arguments, struct bw_assess_options *options) {
+    const char *value = cli_value(arguments, "--at");
+    for (const char *next = value; next; next = strchr(next, ',') ? strchr(next, ',') + 1 : NULL) {
+        char number[40];
+        snprintf(number, sizeof number, "%.*s", (int)strcspn(next, ","), next);
+        double *at_m = &options->at_m[options->at_count < BW_PLACES_MAX ? options->at_count : 0];
+        if (options->at_count == BW_PLACES_MAX || strcspn(next, ",") >= sizeof number ||
+            !bw_parse_number(number, at_m) || !(*at_m >= 0 && *at_m <= 1e9)) {
+            cli_usage_error(arguments->command,
+                            "--at %s: at most %d distances of 0 to 1e+09 m would be right, as in 0.1,0.5,1", value,
+                            BW_PLACES_MAX);
+            return false;
+        }
+        options->at_count++;
+    }
+    return true;
+}
+
 enum cli_exit cli_job_assess(const struct cli_arguments *arguments, const struct cli_job *job, unsigned parts,
                              struct bw_result **result) {
     struct bw_assess_options options = {
@@ -119,7 +138,7 @@ enum cli_exit cli_job_assess(const struct cli_arguments *arguments, const struct
         .room = cli_value(arguments, "--room"),
         .working = cli_value(arguments, "--working") != NULL || parts == BW_PART_ALL,
     };
-    if (!cli_number(arguments, "--at", 0, 1e9, &options.has_at, &options.at_m))
+    if (!read_distances(arguments, &options))
         return CLI_WRONG_INPUT;
     struct bw_error error = {0};
     if (bw_assess(job->the_case, job->table, &options, result, &error) != BW_OK)

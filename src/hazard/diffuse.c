@@ -24,9 +24,10 @@ static double subtense_rad(double diameter_m, double distance_m) {
 }
 
 /* Irradiance per watt from a matt spot, seen along its normal: rho / (pi r^2), but nowhere more than the spot itself
- * sends out, rho x 4 / (pi d^2). The mean over an aperture is no more than that. */
-static double irradiance_per_w(const struct bw_spot *spot, size_t emission, double distance_m) {
-    double nearest_m = fmax(distance_m, spot->diameter_m[emission] / 2.);
+ * sends out, rho x 4 / (pi d^2). The mean over an aperture is no more than that, nor than all that is sent out falling
+ * into the aperture, rho x 4 / (pi D^2). */
+static double irradiance_per_w(const struct bw_spot *spot, const struct bw_term *term, double distance_m) {
+    double nearest_m = fmax(distance_m, fmax(spot->diameter_m[term->emission], term->limit.aperture_m) / 2.);
     return spot->reflectance / bw_pi / nearest_m / nearest_m;
 }
 
@@ -59,7 +60,7 @@ static enum bw_status ratio_with_working(const struct bw_hazard *hazard, const s
     for (size_t i = 0; i < here.term_count; i++) {
         const struct bw_term *term = &here.terms[i];
         double power_w = here.output->emissions[term->emission].average_power_w;
-        double per_w = irradiance_per_w(spot, term->emission, distance_m);
+        double per_w = irradiance_per_w(spot, term, distance_m);
         ratios[i] = power_w * per_w / term->limit.irradiance_w_m2;
         bw_working_step(working, "ratio", ratios[i], "", NULL, "rho P / (pi r^2) / E_limit",
                         "%.6g W x %.6g 1/m2 / %.6g W/m2 (%g nm, %s)", power_w, per_w, term->limit.irradiance_w_m2,
@@ -120,11 +121,12 @@ static double close_in(struct search *search, double near_m, double far_m) {
 static const double steps_rad[] = {1.5e-3, 5e-3, 100e-3};
 enum { STEPS = 3, PLACES_MAX = STEPS * BW_EMISSIONS_MAX };
 
-static double farthest_step_m(const struct bw_spot *spot, size_t count, double below_m) {
-    double farthest_m = 0.;
-    for (size_t i = 0; i < count; i++)
+static double farthest_step_m(const struct search *search, double below_m) {
+    double farthest_m = 0., magnification = bw_hazard_magnification(search->hazard); /* an aid shows the angle so wide */
+    for (size_t i = 0; i < search->hazard->output->count; i++)
         for (size_t j = 0; j < STEPS; j++) {
-            double place_m = spot->diameter_m[i] / 2. / tan(steps_rad[j] / 2.) * (1. + 1e-9);
+            double half_m = search->spot->diameter_m[i] / 2.;
+            double place_m = half_m / tan(steps_rad[j] / magnification / 2.) * (1. + 1e-9);
             if (place_m < below_m)
                 farthest_m = fmax(farthest_m, place_m);
         }
@@ -136,7 +138,7 @@ static double farthest_step_m(const struct bw_spot *spot, size_t count, double b
 static double inward(struct search *search, double far_m, double nearest_m) {
     static const double stride = 0.94;
     while (search->status == BW_OK && far_m > nearest_m) {
-        double step_m = farthest_step_m(search->spot, search->hazard->output->count, far_m);
+        double step_m = farthest_step_m(search, far_m);
         double near_m = fmax(fmax(stride * far_m, step_m), nearest_m);
         if (!(ratio_at(search, near_m) <= 1.))
             return close_in(search, near_m, far_m);
@@ -147,7 +149,7 @@ static double inward(struct search *search, double far_m, double nearest_m) {
 
 static double solve(struct search *search) {
     size_t count = search->hazard->output->count;
-    double smallest_m = HUGE_VAL, last_step_m = farthest_step_m(search->spot, count, HUGE_VAL);
+    double smallest_m = HUGE_VAL, last_step_m = farthest_step_m(search, HUGE_VAL);
     for (size_t i = 0; i < count; i++)
         smallest_m = fmin(smallest_m, search->spot->diameter_m[i]);
     double far_m = fmax(1e-3, 2. * last_step_m), near_m = last_step_m;

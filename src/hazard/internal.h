@@ -58,9 +58,29 @@ void bw_hazard_train_working(const struct train_case *train, const struct tally 
 
 /* ---- prepare.c --------------------------------------------------------------------------------- */
 
+/* Limits of one emission for a source of this subtense. */
+enum bw_status bw_hazard_emission_limits(const struct bw_hazard *hazard, size_t emission, double subtense_rad,
+                                         struct bw_train_limit_set *limits, struct bw_working *working,
+                                         struct bw_error *error);
 /* Fills terms and sums from table, output and viewing, each emission with its own subtense. */
 enum bw_status bw_hazard_fill(struct bw_hazard *hazard, const double subtense_rad[BW_EMISSIONS_MAX],
                               struct bw_working *working, struct bw_error *error);
+
+/* ---- corners.c --------------------------------------------------------------------------------- */
+
+/* Limits of one emission of an output; of its tolerances the worst corner. */
+enum bw_status bw_hazard_corner_limits(const struct bw_hazard *hazard, size_t emission,
+                                       const struct bw_viewing_case *viewing, struct bw_train_limit_set *limits,
+                                       struct bw_working *working, struct bw_error *error);
+
+/* ---- before_eye.c ------------------------------------------------------------------------------ */
+
+/* How often the source looks as wide as to the naked eye. */
+double bw_hazard_magnification(const struct bw_hazard *hazard);
+enum bw_status bw_hazard_check_before_eye(const struct bw_output *output, struct bw_error *error);
+/* Puts a limit at the eye before goggles and aid, where the beam is known. */
+void bw_hazard_before_eye(const struct bw_hazard *hazard, size_t emission, struct bw_train_limit *limit,
+                          struct bw_working *working);
 
 /* ---- ratio.c ----------------------------------------------------------------------------------- */
 

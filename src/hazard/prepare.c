@@ -46,17 +46,26 @@ static const char *name_emission(const struct bw_emission *emission, char text[N
     return text;
 }
 
+/* For a source that looks so wide to the naked eye, before what is in front of the eye. */
+enum bw_status bw_hazard_emission_limits(const struct bw_hazard *hazard, size_t emission, double subtense_rad,
+                                         struct bw_train_limit_set *limits, struct bw_working *working,
+                                         struct bw_error *error) {
+    struct bw_viewing_case viewing = hazard->viewing;
+    viewing.subtense_rad = fmin(subtense_rad * bw_hazard_magnification(hazard), bw_pi / 2.);
+    enum bw_status status = bw_hazard_corner_limits(hazard, emission, &viewing, limits, working, error);
+    for (size_t i = 0; status == BW_OK && i < limits->count; i++)
+        bw_hazard_before_eye(hazard, emission, &limits->limits[i], working);
+    return status;
+}
+
 static enum bw_status fill_emission(struct bw_hazard *hazard, size_t emission, double subtense_rad,
                                     struct bw_working *working, struct bw_error *error) {
-    struct bw_viewing_case viewing = hazard->viewing;
     struct bw_train_limit_set set;
     struct bw_error reason = {.status = BW_OK};
     char name[NAMED_SIZE] = "";
-    viewing.subtense_rad = subtense_rad;
     if (working != NULL)
         bw_working_heading(working, "%s", name_emission(&hazard->output->emissions[emission], name));
-    enum bw_status status =
-        bw_hazard_train_limits(hazard->table, &hazard->output->emissions[emission], &viewing, &set, working, &reason);
+    enum bw_status status = bw_hazard_emission_limits(hazard, emission, subtense_rad, &set, working, &reason);
     if (status != BW_OK)
         return bw_error_set(error, status, "%s: %s", name_emission(&hazard->output->emissions[emission], name),
                             reason.text);
@@ -115,5 +124,7 @@ enum bw_status bw_hazard_prepare(const struct bw_table *table, const struct bw_o
             return status;
         subtense_rad[i] = viewing->subtense_rad;
     }
+    if (bw_hazard_check_before_eye(output, error) != BW_OK)
+        return BW_ARGUMENT;
     return bw_hazard_fill(hazard, subtense_rad, working, error);
 }

@@ -100,6 +100,7 @@ void html_distances(struct bw_text *out, const struct bw_result *result) {
         bw_text_add(out, "</h3>\n");
         needs(out, result, distance);
         limits(out, result, distance);
+        html_handpiece_more(out, result, distance);
     }
     html_paragraph(out,
                    "Limits by the three rules are radiant exposures per pulse in J/m\xC2\xB2 (continuous: over the "

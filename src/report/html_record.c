@@ -23,6 +23,15 @@ static void step(struct bw_text *out, const struct bw_step *step) {
     bw_text_free(&line);
 }
 
+void html_steps(struct bw_text *out, const struct bw_working *working) {
+    for (size_t i = 0; i < working->count; i++) {
+        if (working->steps[i].heading)
+            labelled(out, "h3", "", working->steps[i].formula, "");
+        else
+            step(out, &working->steps[i]);
+    }
+}
+
 void html_working(struct bw_text *out, const struct bw_result *result) {
     bool any = false;
     for (size_t i = 0; i < result->distance_count; i++)
@@ -40,12 +49,14 @@ void html_working(struct bw_text *out, const struct bw_result *result) {
         bw_text_add(out, " ");
         report_xml(out, report_handpiece(result, distance->laser, distance->handpiece)->name);
         bw_text_add(out, "</summary>\n");
-        for (size_t j = 0; j < distance->working.count; j++) {
-            if (distance->working.steps[j].heading)
-                labelled(out, "h3", "", distance->working.steps[j].formula, "");
-            else
-                step(out, &distance->working.steps[j]);
-        }
+        html_steps(out, &distance->working);
+        bw_text_add(out, "</details>\n");
+    }
+    for (size_t i = 0; i < result->incident_count; i++) {
+        bw_text_add(out, "<details><summary>incident ");
+        report_xml(out, result->the_case->incidents[result->incidents[i].incident].name);
+        bw_text_add(out, "</summary>\n");
+        html_steps(out, &result->incidents[i].working);
         bw_text_add(out, "</details>\n");
     }
 }

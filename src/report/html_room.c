@@ -146,6 +146,7 @@ void html_rooms(struct bw_text *out, const struct bw_result *result) {
         bw_report_plan_svg(out, result, i, false);
         bw_text_add(out, "</figure>\n");
         people(out, result, found);
+        html_person_times(out, result, found);
         openings(out, result, found);
         materials(out, room);
         bw_text_add(out, "</section>\n");

@@ -28,7 +28,9 @@ void html_assumptions(struct bw_text *out, const struct bw_result *result) {
     bw_text_add(out, "<ul>\n");
     for (size_t i = 0; i < result->distance_count; i++)
         times(out, result, &result->distances[i]);
-    html_item(out, "The values of the case file are taken as they are. Enter the highest output that was measured.");
+    html_item(out, "The values of the case file are taken as they are, or at the worst corner of the tolerances it gives: the "
+                   "highest power, the narrowest beam, and of pulse duration and rate whichever end is strictest. Without "
+                   "tolerances, enter the highest output that was measured.");
     html_item(out, "Diameters are kept as d63, where the irradiance has fallen to 1/e of its peak: d86 (1/e\xC2\xB2) = "
                    "1.414 d63, FWHM = 0.833 d63; a top hat is as wide as its edge.");
     html_item(out, "A direct view, or a mirror image, is a point source: the strictest case. The exposure is the mean "
@@ -38,6 +40,13 @@ void html_assumptions(struct bw_text *out, const struct bw_result *result) {
               "a room, from the materials given. The spot is an extended source.");
     html_item(out, "Emissions that act on the same tissue in the same way are added. The optical densities share the "
                    "allowance equally among the emissions that need any.");
+    html_item(out, "Optical aids: the eye gets what the aid gathers within the smaller of its objective and magnification "
+                   "times the limiting aperture, times the transmittance; sources look magnified (common practice). Only from "
+                   "302.5 to 4000 nm (from memory); beyond, glass is taken to pass nothing. Where no transmittance is given, "
+                   "all passes. Nothing is less than for the naked eye, which may look past the aid.");
+    html_item(out, "Times to a limit: the longest exposure of which, and of all shorter ones, the limit is kept; rounded down. "
+                   "\"Never\" is 30 000 s, as far as the tables go. Goggles count with their optical density, or with nothing "
+                   "where they have no rating.");
     html_item(out,
               "Pulses: each limit is the lowest of three rules: the single pulse, the average over the exposure, and "
               "the train rule of the rule set.");

@@ -26,12 +26,18 @@ const char *report_ratio(char out[REPORT_QUANTITY_SIZE], double ratio);         
 const char *report_density(char out[REPORT_QUANTITY_SIZE], double od);       /* needed: up, one decimal */
 const char *report_density_given(char out[REPORT_QUANTITY_SIZE], double od); /* down; "none" */
 const char *report_plain(char out[REPORT_QUANTITY_SIZE], double value); /* an input, or what is no limit: nearest */
+const char *report_time(char out[REPORT_QUANTITY_SIZE], const struct bw_permitted_time *time); /* down; "none", "never" */
 const char *report_area(char out[REPORT_QUANTITY_SIZE], double area_m2, bool us); /* up */
 const char *report_known(enum bw_known known);                                    /* "read", "memory" */
 const char *report_known_words(enum bw_known known);                              /* "read", "from memory" */
 /* Why this exposure time: "customary glance (clause, from memory)" or "given in the case file". */
 void report_time_reason(struct bw_text *out, const struct bw_distance_result *distance,
                         const struct bw_exposure_time *time, const char *what);
+/* "power of deep" or, of all that share it, "beam diameter". */
+void report_input_words(struct bw_text *out, const struct bw_result *result, const struct bw_distance_result *distance,
+                        const struct bw_sensitivity *sensitivity);
+/* "0.50 %" or "none"; either sign, to the nearest. */
+const char *report_per_cent(char out[REPORT_QUANTITY_SIZE], double value);
 /* Emissions of a handpiece and what it is called. */
 const struct bw_laser *report_laser(const struct bw_result *result, size_t laser);
 const struct bw_handpiece *report_handpiece(const struct bw_result *result, size_t laser, size_t handpiece);
@@ -67,6 +73,11 @@ void json_point(struct json *json, const char *key, struct bw_point point);
 void report_distance_members(struct json *json, const struct bw_result *result);
 void report_eyewear_members(struct json *json, const struct bw_result *result);
 void report_room_members(struct json *json, const struct bw_result *result, bool timing);
+void report_incident_members(struct json *json, const struct bw_result *result);
+void report_time_member(struct json *json, const char *key, const char *unbounded_key,
+                        const struct bw_permitted_time *time);
+/* What an object of beams[] has beside distances: tolerances, aids, times, sensitivity. */
+void report_more_members(struct json *json, const struct bw_result *result, const struct bw_distance_result *distance);
 
 /* ---- text.c: 80 columns ------------------------------------------------------------------------- */
 
@@ -97,6 +108,9 @@ void text_distance_table(struct bw_text *out, const struct bw_result *result);
 void text_goggles_matrix(struct bw_text *out, const struct bw_result *result);
 void text_rooms(struct bw_text *out, const struct bw_result *result, bool timing);
 void text_findings(struct bw_text *out, const struct bw_result *result, enum bw_severity from, enum bw_severity to);
+void text_handpiece_more(struct bw_text *out, const struct bw_result *result, const struct bw_distance_result *distance);
+void text_person_times(struct bw_text *out, const struct bw_result *result, const struct bw_room_result *found);
+void text_incidents(struct bw_text *out, const struct bw_result *result);
 void text_all_working(struct bw_text *out, const struct bw_result *result);
 
 #endif

@@ -43,29 +43,6 @@ static void distances(struct json *json, const struct bw_distance_result *distan
         json_bool(json, "diffuse_unbounded", true);
 }
 
-static void permitted_time(struct json *json, const char *key, const char *unbounded_key,
-                           const struct bw_permitted_time *time) {
-    if (time->unbounded)
-        json_null(json, key);
-    else
-        json_number(json, key, time->exposure_s);
-    if (time->unbounded)
-        json_bool(json, unbounded_key, true);
-}
-
-static void permitted(struct json *json, const struct bw_distance_result *distance) {
-    if (!distance->has_permitted)
-        return;
-    json_object(json, "permitted");
-    json_number(json, "distance_m", distance->at_m);
-    json_number(json, "ratio", distance->ratio_at_m);
-    permitted_time(json, "eye_s", "eye_unbounded", &distance->permitted_eye);
-    permitted_time(json, "skin_s", "skin_unbounded", &distance->permitted_skin);
-    if (distance->permitted_eye.unbounded || distance->permitted_skin.unbounded)
-        json_bool(json, "unbounded", true);
-    json_end(json);
-}
-
 static void beam(struct json *json, const struct bw_result *result, const struct bw_distance_result *distance) {
     const struct bw_output *output = &report_handpiece(result, distance->laser, distance->handpiece)->output;
     json_object(json, NULL);
@@ -85,7 +62,7 @@ static void beam(struct json *json, const struct bw_result *result, const struct
     json_number(json, "skin_exposure_s", distance->skin_time.exposure_s);
     json_number(json, "diffuse_exposure_s", distance->diffuse_time.exposure_s);
     json_bool(json, "aversion_response", distance->glance.aversion_response);
-    permitted(json, distance);
+    report_more_members(json, result, distance);
     json_array(json, "emissions");
     for (size_t i = 0; i < output->count; i++)
         emission(json, &output->emissions[i], &distance->emissions[i]);
@@ -106,5 +83,7 @@ void bw_report_distance_json(struct bw_text *out, const struct bw_result *result
     json_object(&json, NULL);
     json_string(&json, "schema", "beamward.distance/1");
     report_distance_members(&json, result);
+    if (result->incident_count > 0)
+        report_incident_members(&json, result);
     json_end(&json);
 }

@@ -37,5 +37,6 @@ void bw_report_result_json(struct bw_text *out, const struct bw_result *result,
     json_object(&json, "room");
     report_room_members(&json, result, false);
     json_end(&json);
+    report_incident_members(&json, result);
     json_end(&json);
 }

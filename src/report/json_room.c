@@ -21,6 +21,14 @@ static void person(struct json *json, const struct bw_result *result, const stru
     json_string(json, "path", bw_path_name(found->place.path));
     json_string(json, "via", found->place.via[0] ? found->place.via : NULL);
     json_number(json, "path_length_m", found->place.length_m);
+    json_string(json, "aid", person->has_aid ? result->the_case->aids[person->aid].name : NULL);
+    json_bool(json, "through_aid", found->through_aid);
+    if (found->has_times) {
+        report_time_member(json, "time_to_limit_s", "time_to_limit_unbounded", &found->eye);
+        report_time_member(json, "time_to_limit_worn_s", "time_to_limit_worn_unbounded", &found->worn);
+        report_time_member(json, "skin_time_to_limit_s", "skin_time_to_limit_unbounded", &found->skin);
+        json_number(json, "skin_ratio", found->skin_ratio);
+    }
     json_end(json);
 }
 

@@ -61,6 +61,34 @@ const char *report_plain(char out[REPORT_QUANTITY_SIZE], double value) {
     return out;
 }
 
+const char *report_time(char out[REPORT_QUANTITY_SIZE], const struct bw_permitted_time *time) {
+    char number[BW_NUMBER_SIZE];
+    if (time->unbounded)
+        snprintf(out, REPORT_QUANTITY_SIZE, "never");
+    else if (time->exposure_s <= 0.)
+        snprintf(out, REPORT_QUANTITY_SIZE, "none");
+    else
+        snprintf(out, REPORT_QUANTITY_SIZE, "%s s", bw_format(number, time->exposure_s, 3, BW_DOWN));
+    return out;
+}
+
+const char *report_per_cent(char out[REPORT_QUANTITY_SIZE], double value) {
+    char number[BW_NUMBER_SIZE];
+    if (isfinite(value))
+        snprintf(out, REPORT_QUANTITY_SIZE, "%s %%", bw_format_fixed(number, value, 2, BW_NEAREST));
+    else
+        snprintf(out, REPORT_QUANTITY_SIZE, "none");
+    return out;
+}
+
+void report_input_words(struct bw_text *out, const struct bw_result *result, const struct bw_distance_result *distance,
+                        const struct bw_sensitivity *sensitivity) {
+    const struct bw_output *output = &report_handpiece(result, distance->laser, distance->handpiece)->output;
+    bw_text_add(out, "%s", sensitivity->quantity);
+    if (sensitivity->emission < output->count)
+        bw_text_add(out, " of %s", output->emissions[sensitivity->emission].name);
+}
+
 const char *report_area(char out[REPORT_QUANTITY_SIZE], double area_m2, bool us) {
     char number[BW_NUMBER_SIZE], feet[BW_NUMBER_SIZE];
     bw_format(number, area_m2, LENGTH_DIGITS, BW_UP);

@@ -56,6 +56,7 @@ void bw_report_html(struct bw_text *out, const struct bw_result *result, const s
     html_distances(out, result);
     html_eyewear(out, result);
     html_rooms(out, result);
+    html_incidents(out, result);
     html_assumptions(out, result);
     html_cautions(out);
     html_inputs_converted(out, result);

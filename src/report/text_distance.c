@@ -15,24 +15,6 @@ static void line(struct bw_text *out, const char *head, const struct bw_reach *r
     bw_text_free(&reason);
 }
 
-static void permitted_line(struct bw_text *out, const char *head, const struct bw_permitted_time *time) {
-    char seconds[BW_NUMBER_SIZE];
-    if (time->unbounded)
-        text_wrap(out, head, "as long as the table goes (30 000 s)");
-    else
-        text_wrapf(out, head, "%s s", bw_format(seconds, time->exposure_s, 3, BW_DOWN));
-}
-
-static void permitted(struct bw_text *out, const struct bw_distance_result *distance) {
-    char at[REPORT_QUANTITY_SIZE], ratio[REPORT_QUANTITY_SIZE];
-    if (!distance->has_permitted)
-        return;
-    text_wrapf(out, "  at ", "%s m the ratio is %s; longest exposure on the axis that keeps the limit:",
-               report_plain(at, distance->at_m), report_ratio(ratio, distance->ratio_at_m));
-    permitted_line(out, "    eye                ", &distance->permitted_eye);
-    permitted_line(out, "    skin               ", &distance->permitted_skin);
-}
-
 static void emissions(struct bw_text *out, const struct bw_result *result, const struct bw_distance_result *distance) {
     const struct bw_output *output = &report_handpiece(result, distance->laser, distance->handpiece)->output;
     struct text_table table;
@@ -76,7 +58,7 @@ static void handpiece(struct bw_text *out, const struct bw_result *result, const
                bw_effect_name(governing->limit.effect), bw_train_rule_name(governing->rule),
                governing->limit.source.row, governing->limit.source.clause,
                report_known_words(governing->limit.source.known));
-    permitted(out, distance);
+    text_handpiece_more(out, result, distance);
     bw_text_add(out, "\n");
     emissions(out, result, distance);
 }
@@ -91,6 +73,7 @@ void bw_report_distance_text(struct bw_text *out, const struct bw_result *result
               "MPE in J/m2 is per pulse (continuous: over the exposure), in W/m2 the mean. OD is what each emission "
               "needs at the exit, all of them together keeping the limit. Limits are rounded down, "
               "distances and OD up.");
+    text_incidents(out, result);
     text_findings(out, result, BW_DANGER, BW_NOTE);
     text_all_working(out, result);
 }

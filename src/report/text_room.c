@@ -72,6 +72,7 @@ static void room(struct bw_text *out, const struct bw_result *result, const stru
     if (timing)
         text_wrapf(out, "  time of the map      ", "%.3f s", found->solution.map_seconds);
     persons(out, result, found);
+    text_person_times(out, result, found);
     openings(out, result, found);
 }
 

@@ -65,5 +65,6 @@ void bw_report_summary_text(struct bw_text *out, const struct bw_result *result)
     text_distance_table(out, result);
     text_goggles_matrix(out, result);
     text_rooms(out, result, false);
+    text_incidents(out, result);
     text_findings(out, result, BW_CAUTION, BW_NOTE);
 }

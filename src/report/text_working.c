@@ -35,4 +35,13 @@ void text_all_working(struct bw_text *out, const struct bw_result *result) {
         text_heading(out, title);
         bw_report_working_text(out, &distance->working);
     }
+    for (size_t i = 0; i < result->incident_count; i++) {
+        char title[BW_NAME_SIZE + 24];
+        if (result->incidents[i].working.count == 0)
+            continue;
+        snprintf(title, sizeof title, "Working: incident %s",
+                 result->the_case->incidents[result->incidents[i].incident].name);
+        text_heading(out, title);
+        bw_report_working_text(out, &result->incidents[i].working);
+    }
 }

@@ -94,6 +94,13 @@ static double pick(const struct bw_ratio *ratio, size_t only) {
  * falls as 1/r^2, and no limit grows faster than the square of the subtense. */
 static const double steps_rad[] = {1.5e-3, 5e-3, 100e-3};
 enum { STEPS = 3 };
+
+/* The angle at which the naked eye would see what an aid shows as wide as the step. */
+static double step_rad(const struct spot_curve *spot, size_t step) {
+    const struct bw_aid *aid = spot->hazard->output->aid;
+    return steps_rad[step] / (aid ? aid->magnification : 1.);
+}
+
 static const double just_beyond = 1 + 1e-9;
 
 /* All spots from the smallest up: each law at the end where it is strictest. */
@@ -105,7 +112,7 @@ static enum bw_status diffuse_at(const struct spot_curve *spot, double distance_
     *ratio = pick(&at, spot->emission);
     for (size_t k = 0; status == BW_OK && k < STEPS; k++) {
         struct bw_spot other = spot->spot;
-        double step_m = 2 * distance_m * tan(steps_rad[k] / 2) * just_beyond;
+        double step_m = 2 * distance_m * tan(step_rad(spot, k) / 2) * just_beyond;
         bool larger = false;
         for (size_t i = 0; i < output->count; i++)
             if (!output->emissions[i].continuous && step_m > spot->spot.diameter_m[i]) {
@@ -151,7 +158,7 @@ static enum bw_status find_steps(struct spot_curve *spot, struct bw_error *error
             if (spot->hazard->output->emissions[i].continuous)
                 continue;
             struct spot_step *step = &spot->steps[spot->step_count++];
-            step->distance_m = spot->spot.diameter_m[i] / 2 / tan(steps_rad[k] / 2) * just_beyond;
+            step->distance_m = spot->spot.diameter_m[i] / 2 / tan(step_rad(spot, k) / 2) * just_beyond;
             status = diffuse_at(spot, step->distance_m, &step->ratio, error);
         }
     return status;

@@ -303,13 +303,13 @@ static void test_permitted(void **state) {
     (void)state;
     struct clinic clinic =
         clinic_assess_with(CLINIC_CASE NEAR_INFRARED("") ROOM_USE, NULL,
-                           (struct bw_assess_options){.parts = BW_PART_DISTANCE, .has_at = true, .at_m = 0.5});
+                           (struct bw_assess_options){.parts = BW_PART_DISTANCE, .at_count = 1, .at_m = {0.5}});
     require_ok(&clinic);
     const struct bw_distance_result *distance = &clinic.result->distances[0];
-    assert_true(distance->has_permitted);
-    expect("ratio", distance->ratio_at_m, bw_hazard_ratio(distance->direct, 0.5), 0);
-    assert_false(distance->permitted_eye.unbounded);
-    struct bw_viewing_case viewing = {.target = BW_EYE, .exposure_s = distance->permitted_eye.exposure_s};
+    assert_int_equal(distance->place_count, 1);
+    expect("ratio", distance->places[0].eye_ratio, bw_hazard_ratio(distance->direct, 0.5), 0);
+    assert_false(distance->places[0].eye.unbounded);
+    struct bw_viewing_case viewing = {.target = BW_EYE, .exposure_s = distance->places[0].eye.exposure_s};
     struct bw_hazard *hazard = calloc(1, sizeof *hazard);
     assert_non_null(hazard);
     struct bw_error error = {0};
