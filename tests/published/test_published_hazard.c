@@ -41,11 +41,12 @@ static struct bw_emission emission_of(double wavelength_nm, double power_w, doub
 /* One continuous emission against a given irradiance, peak irradiance without aperture. */
 static void given_limit(struct bw_hazard *hazard, struct bw_output *output, double power_w, struct bw_beam beam,
                         double limit_w_m2) {
-    output->count = 1;
+    *output = (struct bw_output){.count = 1};
     output->emissions[0] = emission_of(1064., power_w, NONE, NONE, NONE);
     output->beams[0] = beam;
     hazard->table = NULL;
     hazard->output = output;
+    hazard->shaped = false;
     hazard->term_count = 1;
     hazard->terms[0] = (struct bw_term){.emission = 0};
     hazard->terms[0].limit.irradiance_w_m2 = limit_w_m2;

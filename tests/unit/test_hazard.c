@@ -145,7 +145,7 @@ static void test_collimated_with_spreading(void **state) {
 
 static void random_output(struct bw_output *output, uint64_t *random) {
     static const double wavelengths_nm[] = {532., 650., 810., 980., 1064.};
-    output->count = 0;
+    *output = (struct bw_output){.count = 0};
     size_t count = 2 + (size_t)(3. * uniform(random));
     for (size_t i = 0; i < count; i++) {
         struct bw_beam beam = bw_beam_from_lens(.02 + uniform(random), 5e-3 + 20e-3 * uniform(random),
