@@ -143,32 +143,39 @@ static void offer(struct front *front, const struct group *group, double slack) 
 
 /* ---- windows ------------------------------------------------------------------------------------ */
 
-struct window_box {
-    double x_low_m, x_high_m, y_low_m, y_high_m;
+/* Columns (or rows) of a head: the places of its emitters along one side, ascending, and who is there. */
+struct lines {
+    size_t count;
+    double at_m[BW_EMITTERS_MAX];
+    unsigned members[BW_EMITTERS_MAX];
 };
 
-static unsigned inside(const struct bw_cluster *cluster, const struct window_box *box) {
-    unsigned members = 0;
+static void sort_into(const struct bw_cluster *cluster, bool along_x, struct lines *lines) {
+    lines->count = 0;
     for (size_t i = 0; i < cluster->count; i++) {
-        struct bw_point at = cluster->at[i];
-        if (at.x_m >= box->x_low_m && at.x_m <= box->x_high_m && at.y_m >= box->y_low_m && at.y_m <= box->y_high_m)
-            members |= 1u << i;
+        double value_m = along_x ? cluster->at[i].x_m : cluster->at[i].y_m;
+        size_t at = 0;
+        while (at < lines->count && lines->at_m[at] < value_m)
+            at++;
+        if (!(at < lines->count && lines->at_m[at] <= value_m)) {
+            for (size_t j = lines->count++; j > at; j--) {
+                lines->at_m[j] = lines->at_m[j - 1];
+                lines->members[j] = lines->members[j - 1];
+            }
+            lines->at_m[at] = value_m;
+            lines->members[at] = 0;
+        }
+        lines->members[at] |= 1u << i;
     }
-    return members;
 }
 
-/* Whether each side of the window touches a member. */
-static bool is_tight(const struct bw_cluster *cluster, const struct window_box *box, unsigned members) {
-    bool left = false, right = false, bottom = false, top = false;
-    for (size_t i = 0; i < cluster->count; i++) {
-        if (!(members >> i & 1u))
-            continue;
-        left = left || cluster->at[i].x_m <= box->x_low_m;
-        right = right || cluster->at[i].x_m >= box->x_high_m;
-        bottom = bottom || cluster->at[i].y_m <= box->y_low_m;
-        top = top || cluster->at[i].y_m >= box->y_high_m;
-    }
-    return left && right && bottom && top;
+/* Those between two columns and two rows, if each of the four holds one of them; else none. */
+static unsigned tight(const struct lines *columns, const struct lines *rows, unsigned between_columns,
+                      unsigned between_rows, const size_t box[4]) {
+    unsigned members = between_columns & between_rows;
+    bool touches = members & columns->members[box[0]] && members & columns->members[box[1]] &&
+                   members & rows->members[box[2]] && members & rows->members[box[3]];
+    return touches ? members : 0;
 }
 
 static size_t count_bits(unsigned members) {
@@ -178,40 +185,39 @@ static size_t count_bits(unsigned members) {
     return count;
 }
 
-/* To the nanometre, so that equal windows of a grid are equal. */
+/* Down to the nanometre, so that equal windows of a grid are equal. */
 static double side_m(double low_m, double high_m, double source_m) {
-    return round((high_m - low_m + source_m) * 1e9) * 1e-9;
+    return floor((high_m - low_m + source_m) * 1e9 + 1e-3) * 1e-9;
 }
 
 static void offer_window(const struct bw_beam *beam, const struct sight *sight, const struct brightness *bright,
-                         const struct window_box *box, struct front *front) {
-    unsigned members = inside(&beam->cluster, box);
+                         unsigned members, double width_x_m, double width_y_m, struct front *front) {
     struct group group;
-    if (members == 0 || !is_tight(&beam->cluster, box, members))
-        return;
     group.emitters = count_bits(members);
     group.per_w = brightest(bright, members);
-    set_angles(beam, sight, side_m(box->x_low_m, box->x_high_m, beam->source_m),
-               side_m(box->y_low_m, box->y_high_m, beam->source_m), &group);
+    set_angles(beam, sight, width_x_m, width_y_m, &group);
     offer(front, &group, sight->slack);
 }
 
-/* Ascending, each value once. */
-static size_t edges_of(const struct bw_cluster *cluster, bool along_x, double edges_m[BW_EMITTERS_MAX]) {
-    size_t count = 0;
-    for (size_t i = 0; i < cluster->count; i++) {
-        double value_m = along_x ? cluster->at[i].x_m : cluster->at[i].y_m;
-        size_t at = 0;
-        while (at < count && edges_m[at] < value_m)
-            at++;
-        if (at < count && edges_m[at] <= value_m)
-            continue;
-        for (size_t j = count; j > at; j--)
-            edges_m[j] = edges_m[j - 1];
-        edges_m[at] = value_m;
-        count++;
+/* All windows between two columns. */
+static void offer_rows(const struct bw_beam *beam, const struct sight *sight, const struct brightness *bright,
+                       const struct lines *columns, const struct lines *rows, size_t from, size_t to,
+                       struct front *front) {
+    unsigned between_columns = 0;
+    for (size_t i = from; i <= to; i++)
+        between_columns |= columns->members[i];
+    for (size_t k = 0; k < rows->count; k++) {
+        unsigned between_rows = 0;
+        for (size_t l = k; l < rows->count; l++) {
+            const size_t box[4] = {from, to, k, l};
+            between_rows |= rows->members[l];
+            unsigned members = tight(columns, rows, between_columns, between_rows, box);
+            if (members != 0)
+                offer_window(beam, sight, bright, members,
+                             side_m(columns->at_m[from], columns->at_m[to], beam->source_m),
+                             side_m(rows->at_m[k], rows->at_m[l], beam->source_m), front);
+        }
     }
-    return count;
 }
 
 static void one_group(const struct bw_beam *beam, const struct sight *sight, double aperture_m, struct front *front) {
@@ -223,21 +229,18 @@ static void one_group(const struct bw_beam *beam, const struct sight *sight, dou
 
 void bw_hazard_front(const struct bw_beam *beam, const struct sight *sight, double aperture_m, struct front *front) {
     struct brightness bright;
-    double x_m[BW_EMITTERS_MAX], y_m[BW_EMITTERS_MAX];
+    struct lines columns, rows;
     if (beam->cluster.count <= 1) {
         one_group(beam, sight, aperture_m, front);
         return;
     }
     front->count = 0;
     fill_brightness(beam, sight->near_m, sight->far_m, aperture_m, &bright);
-    size_t columns = edges_of(&beam->cluster, true, x_m), rows = edges_of(&beam->cluster, false, y_m);
-    for (size_t i = 0; i < columns; i++)
-        for (size_t j = i; j < columns; j++)
-            for (size_t k = 0; k < rows; k++)
-                for (size_t l = k; l < rows; l++) {
-                    struct window_box box = {x_m[i], x_m[j], y_m[k], y_m[l]};
-                    offer_window(beam, sight, &bright, &box, front);
-                }
+    sort_into(&beam->cluster, true, &columns);
+    sort_into(&beam->cluster, false, &rows);
+    for (size_t i = 0; i < columns.count; i++)
+        for (size_t j = i; j < columns.count; j++)
+            offer_rows(beam, sight, &bright, &columns, &rows, i, j, front);
 }
 
 /* From here on the angle of the whole head is alpha_min or less. */

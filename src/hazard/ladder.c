@@ -62,6 +62,14 @@ static void place_edges(struct bw_ladder *ladder, double from_m, double settled_
     ladder->edge_m[ladder->steps] = settled_m;
 }
 
+/* How often a step is halved: heads of many emitters cost more, and get coarser bounds. */
+static int halvings(const struct bw_output *output) {
+    for (size_t i = 0; i < output->count; i++)
+        if (output->beams[i].cluster.count > 4)
+            return 1;
+    return 3;
+}
+
 /* Fills the ladder.
  * Given:    hazard   prepared
  * Returned: hazard   its ladder; none where nothing is shaped or all has settled at the stand-off
@@ -82,7 +90,7 @@ void bw_hazard_prepare_envelope(struct bw_hazard *hazard) {
     struct bw_ladder built = *ladder;
     place_edges(&built, from_m, settled_m);
     for (size_t i = built.steps; i-- > 0;) {
-        built.bound[i] = bound_step(hazard, built.edge_m[i], built.edge_m[i + 1], 3);
+        built.bound[i] = bound_step(hazard, built.edge_m[i], built.edge_m[i + 1], halvings(hazard->output));
         beyond = beyond >= built.bound[i] || isnan(beyond) ? beyond : built.bound[i];
         built.envelope[i] = beyond;
     }
