@@ -76,8 +76,7 @@ enum { BW_LADDER_MAX = 96 };
 struct bw_ladder {
     size_t steps;
     double edge_m[BW_LADDER_MAX + 1];
-    double bound[BW_LADDER_MAX];    /* of the ratio between two edges */
-    double envelope[BW_LADDER_MAX]; /* of the ratio from the lower edge on */
+    double envelope[BW_LADDER_MAX]; /* bound of the ratio from the lower edge on */
     double worst[BW_TERMS_MAX];     /* of each term anywhere */
 };
 

@@ -122,8 +122,7 @@ double bw_hazard_shaped_term(const struct bw_hazard *hazard, size_t term, double
 
 /* ---- ladder.c ------------------------------------------------------------------------------------ */
 
-/* Before all has settled: bound of the ratio on the axis at a distance; exact without a ladder. */
-double bw_hazard_on_axis_bound(const struct bw_hazard *hazard, double distance_m);
+/* Before all has settled, outside the stand-off. */
 double bw_hazard_ladder_envelope(const struct bw_hazard *hazard, double distance_m);
 
 #endif

@@ -18,12 +18,6 @@ static size_t step_of(const struct bw_ladder *ladder, double distance_m) {
     return low;
 }
 
-double bw_hazard_on_axis_bound(const struct bw_hazard *hazard, double distance_m) {
-    const struct bw_ladder *ladder = &hazard->ladder;
-    bool held = ladder->steps > 0 && distance_m >= ladder->edge_m[0] && distance_m < ladder->edge_m[ladder->steps];
-    return held ? ladder->bound[step_of(ladder, distance_m)] : bw_hazard_ratio(hazard, distance_m);
-}
-
 double bw_hazard_ladder_envelope(const struct bw_hazard *hazard, double distance_m) {
     return hazard->ladder.envelope[step_of(&hazard->ladder, distance_m)];
 }
@@ -90,8 +84,8 @@ void bw_hazard_prepare_envelope(struct bw_hazard *hazard) {
     struct bw_ladder built = *ladder;
     place_edges(&built, from_m, settled_m);
     for (size_t i = built.steps; i-- > 0;) {
-        built.bound[i] = bound_step(hazard, built.edge_m[i], built.edge_m[i + 1], halvings(hazard->output));
-        beyond = beyond >= built.bound[i] || isnan(beyond) ? beyond : built.bound[i];
+        double bound = bound_step(hazard, built.edge_m[i], built.edge_m[i + 1], halvings(hazard->output));
+        beyond = beyond >= bound || isnan(beyond) ? beyond : bound;
         built.envelope[i] = beyond;
     }
     for (size_t i = 0; i < hazard->term_count; i++)

@@ -107,7 +107,8 @@ static double nearest_offset_m(const struct bw_hazard *hazard, size_t term, doub
     return offset_m >= outermost_m ? offset_m - outermost_m : offset_m >= 0. ? 0. : offset_m;
 }
 
-/* What is on the axis, or its bound, times the largest share that any emission has beside it. */
+/* The envelope on the axis times the largest share that any emission has beside it. Along a line from the exit that
+ * share falls, so it holds for places farther off in the same direction, too. */
 static double shaped_off_axis(const struct bw_hazard *hazard, double distance_m, double offset_m) {
     double largest = 0.;
     for (size_t i = 0; i < hazard->term_count; i++) {
@@ -117,7 +118,7 @@ static double shaped_off_axis(const struct bw_hazard *hazard, double distance_m,
         if (isnan(share))
             return share;
     }
-    return largest * bw_hazard_on_axis_bound(hazard, distance_m);
+    return largest * bw_hazard_ratio_envelope(hazard, distance_m);
 }
 
 /* Given: hazard, distance_m along the axis, offset_m from it.
