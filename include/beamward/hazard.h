@@ -121,7 +121,7 @@ void bw_hazard_worst_terms(const struct bw_hazard *hazard, double term_ratios[BW
 /* What of an emission the eye sees at a distance: the group of emitters that is worst against its limit. */
 struct bw_seen {
     double ratio;
-    double subtense_rad;         /* of the group, as its limit was taken; 0 = point */
+    double subtense_rad;         /* of the group, as its limit was taken; up to 1.5 mrad the limit is that of a point */
     size_t emitters;             /* in the group */
     struct bw_train_limit limit; /* for that subtense */
 };

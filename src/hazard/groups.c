@@ -243,15 +243,32 @@ void bw_hazard_front(const struct bw_beam *beam, const struct sight *sight, doub
             offer_rows(beam, sight, &bright, &columns, &rows, i, j, front);
 }
 
-/* From here on the angle of the whole head is alpha_min or less. */
-double bw_hazard_point_from_m(const struct bw_beam *beam) {
+struct extent {
+    double x_m, y_m;
+};
+
+static struct extent extent_of(const struct bw_beam *beam) {
     const struct bw_cluster *cluster = &beam->cluster;
-    double x_m = 0., y_m = 0.;
+    struct extent extent = {0., 0.};
     for (size_t i = 0; i < cluster->count && cluster->count > 1; i++)
         for (size_t j = 0; j < i; j++) {
-            x_m = fmax(x_m, fabs(cluster->at[i].x_m - cluster->at[j].x_m));
-            y_m = fmax(y_m, fabs(cluster->at[i].y_m - cluster->at[j].y_m));
+            extent.x_m = fmax(extent.x_m, fabs(cluster->at[i].x_m - cluster->at[j].x_m));
+            extent.y_m = fmax(extent.y_m, fabs(cluster->at[i].y_m - cluster->at[j].y_m));
         }
-    double width_m = fmax(x_m, y_m) + beam->source_m;
+    return (struct extent){extent.x_m + beam->source_m, extent.y_m + beam->source_m};
+}
+
+double bw_hazard_whole_rad(const struct bw_beam *beam, double distance_m, double clamp_rad) {
+    struct extent extent = extent_of(beam);
+    double away_m = view_m(beam, distance_m), x_rad = angle_rad(extent.x_m, away_m);
+    double y_rad = angle_rad(extent.y_m, away_m);
+    /* below alpha_min on both sides: as it is, not as it counts */
+    return fmax(x_rad, y_rad) <= point_rad ? fmax(x_rad, y_rad) : window_rad(x_rad, y_rad, clamp_rad);
+}
+
+/* From here on the angle of the whole head is alpha_min or less. */
+double bw_hazard_point_from_m(const struct bw_beam *beam) {
+    struct extent extent = extent_of(beam);
+    double width_m = fmax(extent.x_m, extent.y_m);
     return fmax(0., width_m / 2. / tan(point_rad / 2.) * (1. + 1e-9) - beam->source_behind_m);
 }

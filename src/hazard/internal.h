@@ -110,6 +110,8 @@ struct front {
 void bw_hazard_front(const struct bw_beam *beam, const struct sight *sight, double aperture_m, struct front *front);
 /* All emitters together, as bright as they are anywhere across the head. */
 double bw_hazard_all_per_w(const struct bw_beam *beam, double near_m, double far_m, double aperture_m);
+/* The angle of the whole head at a distance; a long one's sides count up to clamp_rad. */
+double bw_hazard_whole_rad(const struct bw_beam *beam, double distance_m, double clamp_rad);
 /* Where all of a beam's emitters together are a point [m]. */
 double bw_hazard_point_from_m(const struct bw_beam *beam);
 

@@ -200,12 +200,19 @@ double bw_hazard_ratio_envelope(const struct bw_hazard *hazard, double distance_
 }
 
 /* Given: hazard.  Returned: term_ratios, upper bound of each term anywhere outside the stand-off; what is not shaped is
- * exact: a term is at its largest where its beam is narrowest. */
+ * exact: a term is at its largest where its beam is narrowest. Of a shaped hazard without a ladder one is made. */
 void bw_hazard_worst_terms(const struct bw_hazard *hazard, double term_ratios[BW_TERMS_MAX]) {
     double from_m = hazard->output->stand_off_m, last_m = bw_hazard_settled_m(hazard, BW_EMISSIONS_MAX);
-    if (hazard->shaped && hazard->ladder.steps > 0)
-        for (size_t i = 0; i < hazard->term_count; i++)
-            term_ratios[i] = hazard->ladder.worst[i];
-    else
+    struct bw_hazard copy;
+    if (!hazard->shaped) {
         bw_hazard_bounds(hazard, from_m, last_m, BW_EMISSIONS_MAX, term_ratios);
+        return;
+    }
+    if (hazard->ladder.steps == 0) {
+        copy = *hazard;
+        bw_hazard_prepare_envelope(&copy);
+        hazard = &copy;
+    }
+    for (size_t i = 0; i < hazard->term_count; i++)
+        term_ratios[i] = hazard->ladder.worst[i];
 }

@@ -179,8 +179,9 @@ enum bw_status bw_hazard_seen(const struct bw_hazard *hazard, size_t term, doubl
     const struct bw_beam *beam = &hazard->output->beams[of->emission];
     if (!hazard->shaped || distance_m >= hazard->settled_m[of->emission]) {
         double ratio = bw_hazard_plain_term(hazard, term, distance_m, distance_m);
-        *seen = (struct bw_seen){ratio, hazard->viewing.subtense_rad, beam->cluster.count > 1 ? beam->cluster.count : 1,
-                                 of->limit};
+        double given_rad = hazard->viewing.subtense_rad;
+        double subtense_rad = hazard->shaped ? bw_hazard_whole_rad(beam, distance_m, longest_clamp_rad) : given_rad;
+        *seen = (struct bw_seen){ratio, subtense_rad, beam->cluster.count > 1 ? beam->cluster.count : 1, of->limit};
         return BW_OK;
     }
     struct bw_error cause = {.status = BW_OK};

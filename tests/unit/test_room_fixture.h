@@ -76,8 +76,8 @@ static inline void trident(struct handpiece *handpiece) {
 /* A lens that focuses at 0.4 m, and a wide top hat beside it. */
 static inline void lens(struct handpiece *handpiece) {
     trident(handpiece);
-    handpiece->output.beams[0] = (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, 0.002, 0.05, 0.4, 0.02};
-    handpiece->output.beams[1] = (struct bw_beam){BW_TOP_HAT, BW_LINEAR, 0.01, 0.3, 0, 0.01};
+    handpiece->output.beams[0] = (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 0.002, 0.05, 0.4, 0.02);
+    handpiece->output.beams[1] = (struct bw_beam)ROUND(BW_TOP_HAT, BW_LINEAR, 0.01, 0.3, 0, 0.01);
     prepare(handpiece, 100);
 }
 
