@@ -230,12 +230,12 @@ static double clamp(double x, double low, double high) {
     return fmin(fmax(x, low), high);
 }
 
-/* Brute force over all subsets: each set's power on the axis over the limit for its bounding box. Emitters whose beams
- * lie over each other, so that all of the set is seen at once. */
-static double by_subsets(const struct bw_hazard *hazard, double distance_m) {
+/* Brute force over all subsets of the first emitters: each set's power on the axis over the limit for its bounding box.
+ * Emitters whose beams lie over each other, so that all of the set is seen at once. */
+static double by_subsets_of(const struct bw_hazard *hazard, double distance_m, size_t first) {
     const struct bw_beam *beam = &hazard->output->beams[0];
     double largest = 0., g = bw_beam_irradiance_per_w(beam, distance_m, 7e-3);
-    for (unsigned set = 1; set < 1u << beam->cluster.count; set++) {
+    for (unsigned set = 1; set < 1u << first; set++) {
         double low[2] = {HUGE_VAL, HUGE_VAL}, high[2] = {-HUGE_VAL, -HUGE_VAL}, share = 0.;
         for (size_t i = 0; i < beam->cluster.count; i++) {
             if (!(set >> i & 1u))
@@ -257,6 +257,10 @@ static double by_subsets(const struct bw_hazard *hazard, double distance_m) {
         largest = fmax(largest, hazard->output->emissions[0].average_power_w * share * g / limit);
     }
     return largest;
+}
+
+static double by_subsets(const struct bw_hazard *hazard, double distance_m) {
+    return by_subsets_of(hazard, distance_m, hazard->output->beams[0].cluster.count);
 }
 
 static void random_cluster(struct bw_beam *beam, uint64_t *random) {
@@ -419,6 +423,74 @@ static void test_random_clusters(void **state) {
     }
 }
 
+/* Sixteen emitters here and there, pulsed: more windows than are kept apart. Those put together are stricter. */
+static void test_cluster_crowd(void **state) {
+    (void)state;
+    uint64_t random = 99;
+    struct bw_output output = {.count = 0};
+    struct bw_hazard hazard;
+    struct bw_beam beam = source_beam(5., 1e-3, 0., 0.);
+    double at_mm[16][2];
+    for (size_t i = 0; i < 16; i++) {
+        at_mm[i][0] = 40. * uniform(&random);
+        at_mm[i][1] = 40. * uniform(&random);
+    }
+    place(&beam, 16, (const double(*)[2])at_mm);
+    add(&output, 905., 1e4, 2e-3, 50., beam);
+    prepare(&hazard, &output, BW_EYE, 10.);
+    for (double r = .1; r < 3.; r *= 2.5) {
+        double want = by_subsets_of(&hazard, r, 10), got = bw_hazard_ratio(&hazard, r);
+        assert_true(got >= want * (1. - 3e-4));
+    }
+}
+
+/* ---- the working --------------------------------------------------------------------------------------- */
+
+static const struct bw_step *step_of(const struct bw_working *working, const char *symbol, const char *part) {
+    for (size_t i = 0; i < working->count; i++) {
+        const struct bw_step *step = &working->steps[i];
+        if (!step->heading && strcmp(step->symbol, symbol) == 0 && strstr(step->formula, part) != NULL)
+            return step;
+    }
+    fail_msg("no step %s with %s", symbol, part);
+    return NULL;
+}
+
+/* The steps multiply to the ratio at the answer. */
+static void test_working(void **state) {
+    (void)state;
+    static const double at_mm[3][2] = {{0., 0.}, {9., 0.}, {0., 7.}};
+    for (int i = 0; i < 5; i++) {
+        struct bw_output output = {.count = 0};
+        struct bw_hazard hazard;
+        struct bw_working working = {0};
+        struct bw_reach reach;
+        struct bw_beam beam = source_beam(4e-3, .2, i == 1 ? 1e-3 : 0., 0.);
+        beam.profile = i == 3 ? BW_TOP_HAT : BW_GAUSSIAN;
+        beam.elliptical = i >= 2;
+        beam.diameter_y_m = beam.exit_diameter_y_m = 8e-3;
+        beam.divergence_y_rad = .4;
+        if (i == 4)
+            place(&beam, 3, at_mm);
+        add(&output, 808., 1., NONE, NONE, beam);
+        prepare(&hazard, &output, BW_EYE, 10.);
+        assert_int_equal(bw_hazard_reach(&hazard, ALL, &reach, &working, NULL), BW_OK);
+        const struct bw_step *per_w = step_of(&working, "E/P",
+                                              i == 4   ? "seen together"
+                                              : i == 3 ? "common area"
+                                              : i == 2 ? "elliptical"
+                                                       : "exp");
+        struct bw_seen seen;
+        assert_int_equal(bw_hazard_seen(&hazard, 0, reach.distance_m, &seen, NULL), BW_OK);
+        near(step_of(&working, "ratio", "E_limit")->value, per_w->value / seen.limit.irradiance_w_m2, 1e-12, "ratio");
+        near(step_of(&working, "sum", "largest")->value, 1., 1e-9, "sum");
+        near(step_of(&working, "r", "farthest")->value, reach.distance_m, 0., "distance");
+        if (i == 1 || i == 4)
+            near(step_of(&working, "alpha", "atan")->value, seen.subtense_rad, 0., "alpha");
+        bw_working_free(&working);
+    }
+}
+
 /* ---- elliptical beams --------------------------------------------------------------------------------- */
 
 /* An ellipse reaches farther than the circle of its larger axes and less far than that of its smaller ones. */
@@ -556,6 +628,8 @@ int main(void) {
         cmocka_unit_test(test_cluster_apart),
         cmocka_unit_test(test_cluster_anywhere),
         cmocka_unit_test(test_random_clusters),
+        cmocka_unit_test(test_cluster_crowd),
+        cmocka_unit_test(test_working),
         cmocka_unit_test(test_ellipse_reach),
         cmocka_unit_test(test_weak_lens),
         cmocka_unit_test(test_stand_off),
