@@ -17,6 +17,8 @@ struct bw_emission_result {
     double ratio_at_exit;        /* alone; at the waist in front of the exit where that is worse */
     struct bw_reach nohd;        /* alone */
     double optical_density;      /* needed at the exit, sharing the allowance */
+    double subtense_rad;         /* of what the eye sees at its NOHD, or at the exit if there is none; 0 = point */
+    size_t emitters;             /* seen together there */
 };
 
 /* The same with every tolerance left out. */
@@ -60,7 +62,10 @@ struct bw_distance_result { /* one handpiece */
     struct bw_reach nohd, skin, diffuse;
     double ratio_at_exit;       /* eye, worst at the exit or beyond (a focused beam is worst at its waist) */
     double skin_ratio_at_exit;
-    double worst_m;             /* where the governing emission is worst: 0 = the exit, else the waist */
+    double worst_m;             /* where the governing emission is worst: the exit (0, or the stand-off), else the waist,
+                                   or where the source has become a point */
+    double subtense_rad;        /* of the governing emission's source at the NOHD, or at the exit if there is none */
+    double nearest_m;           /* as near as an eye can come: the stand-off */
     struct bw_spot diffuse_spot; /* what the diffuse distance assumes: reflectance 1, the smallest spot */
     size_t governing_emission;
     struct bw_train_limit governing;

@@ -59,14 +59,28 @@ enum bw_profile { BW_GAUSSIAN, BW_TOP_HAT };
 enum bw_spread { BW_HYPERBOLIC, BW_LINEAR };
 enum bw_diameter_definition { BW_D63, BW_D86, BW_FWHM, BW_D_TOP_HAT };
 
-/* A round beam. Diameters d63 (1/e of the peak irradiance; for a top hat its edge). */
+/* Several like emitters in one head: the eye sees one, some or all of them. */
+enum { BW_EMITTERS_MAX = 16 };
+struct bw_cluster {
+    size_t count;                       /* 0 and 1: one emitter, in the middle of the head */
+    struct bw_point at[BW_EMITTERS_MAX];/* across the head, from its axis */
+    double share[BW_EMITTERS_MAX];      /* of the emission's power; they sum to 1 */
+};
+
+/* A beam, round or elliptical. Diameters d63 (1/e of the peak irradiance; for a top hat its edge). Zeroed members
+ * from `elliptical` on: round, from one emitter, a point source. */
 struct bw_beam {
     enum bw_profile profile;
     enum bw_spread spread;
-    double diameter_m;     /* at the waist, 1e-9 to 10 */
-    double divergence_rad; /* full angle, d63, 0 (collimated) to pi */
-    double waist_m;        /* distance of the waist in front of the exit; 0 = at the exit */
-    double exit_diameter_m;/* at the exit (equals diameter_m when waist_m is 0) */
+    double diameter_m;     /* at the waist, 1e-9 to 10; x axis of an elliptical beam */
+    double divergence_rad; /* full angle, d63, 0 (collimated) to pi; x axis */
+    double waist_m;        /* distance of the waist in front of the exit; 0 = at the exit; of both axes */
+    double exit_diameter_m;/* at the exit (equals diameter_m when waist_m is 0); x axis */
+    bool elliptical;
+    double diameter_y_m, divergence_y_rad, exit_diameter_y_m; /* y axis, only if elliptical */
+    double source_m;        /* diameter of the apparent source; 0 = a point, the strict case */
+    double source_behind_m; /* how far it lies behind the exit */
+    struct bw_cluster cluster; /* of emitters, each with this beam, all axes parallel */
 };
 
 /* d63 of a Gaussian from another definition: d86 = d63 sqrt 2, fwhm = d63 sqrt(ln 2); a top hat's is its own.
@@ -76,6 +90,10 @@ double bw_diameter_from_d63(double diameter_m, enum bw_diameter_definition defin
 
 /* Fibre end: numerical aperture at the 5 % points, d63 half-angle = NA / sqrt(ln 20). */
 struct bw_beam bw_beam_from_fibre(double numerical_aperture, double core_m);
+/* Single-mode fibre end: the mode field's 1/e^2 diameter and the diffraction of a Gaussian of that width. */
+struct bw_beam bw_beam_from_single_mode_fibre(double mode_field_m, double wavelength_nm);
+/* Apparent source of a multimode fibre end: the circle that holds 63 % of an evenly lit core. */
+double bw_fibre_source_m(double core_m);
 /* Lens: waist at the focal length, divergence beam/f behind it, waist diameter f x incoming divergence.
  * beam_m and divergence_rad are d63 at the lens. */
 struct bw_beam bw_beam_from_lens(double focal_length_m, double beam_m, double divergence_rad, enum bw_profile profile);
@@ -83,17 +101,32 @@ struct bw_beam bw_beam_from_lens(double focal_length_m, double beam_m, double di
 /* The beam with the diameter and the divergence that were given so many times as large. */
 struct bw_beam bw_beam_varied(const struct bw_beam *beam, double diameter, double divergence);
 
-/* d63 at a distance from the exit: hyperbolic d^2 = a^2 + (phi r)^2, linear d = a + phi |r|, r from the waist. */
+/* d63 at a distance from the exit: hyperbolic d^2 = a^2 + (phi r)^2, linear d = a + phi |r|, r from the waist.
+ * Of an elliptical beam the smaller axis; widest: the larger. */
 double bw_beam_diameter_m(const struct bw_beam *beam, double distance_m);
-/* Share of the power that goes through a centred round aperture:
- * Gaussian 1 - exp(-(D/d)^2); top hat min(1, (D/d)^2). */
+double bw_beam_widest_m(const struct bw_beam *beam, double distance_m);
+/* The smallest at this distance or farther. */
+double bw_beam_narrowest_m(const struct bw_beam *beam, double distance_m);
+/* Farthest from the head's axis that the beams of all emitters leave it: half the wider exit, beyond the outermost. */
+double bw_beam_exit_radius_m(const struct bw_beam *beam);
+/* Farthest emitter from the head's axis. */
+double bw_beam_outermost_m(const struct bw_beam *beam);
+/* Share of the power of one emitter that goes through a centred round aperture:
+ * Gaussian 1 - exp(-(D/d)^2); top hat min(1, (D/d)^2); elliptical by quadrature and in closed form. */
 double bw_beam_fraction(const struct bw_beam *beam, double distance_m, double aperture_m);
-/* Mean irradiance over the aperture at the beam's centre, per watt [1/m2]. aperture 0 = peak irradiance. */
+/* Mean irradiance over the aperture at the beam's centre, per watt [1/m2]. aperture 0 = peak irradiance. Of a
+ * cluster: as if all power left one emitter, which no place exceeds. */
 double bw_beam_irradiance_per_w(const struct bw_beam *beam, double distance_m, double aperture_m);
 /* Upper bound of the mean irradiance over an aperture whose centre is off the axis by offset_m, per watt;
  * equals bw_beam_irradiance_per_w at offset 0 and never rises with the offset. */
 double bw_beam_irradiance_off_axis_per_w(const struct bw_beam *beam, double distance_m, double aperture_m,
                                          double offset_m);
+/* The mean itself for round beams, an upper bound for elliptical ones. */
+double bw_beam_irradiance_beside_per_w(const struct bw_beam *beam, double distance_m, double aperture_m,
+                                       double offset_m);
+/* Upper bound of the latter anywhere between two distances; exact where they are equal. */
+double bw_beam_irradiance_between_per_w(const struct bw_beam *beam, double near_m, double far_m, double aperture_m,
+                                        double offset_m);
 
 #ifdef __cplusplus
 }

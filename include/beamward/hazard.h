@@ -80,6 +80,8 @@ struct bw_output {
     const struct bw_aid *aid;        /* the eye looks through it */
     const double *passes;            /* share of each emission that goggles let through to the eye, 0 to 1 */
     const struct bw_tolerance *tolerances; /* of each emission: limits are then those of the worst corner of duration and rate */
+    double stand_off_m; /* a spacer keeps eye, skin and surface at least this far from the exit; distances count from the
+                           exit all the same */
 };
 
 /* One emission against one effect: ratio = average power x irradiance per watt / limit. */
@@ -88,8 +90,18 @@ struct bw_term {
     struct bw_train_limit limit;
 };
 
+/* Bounds of the ratio by steps of distance, for what is shaped; see bw_hazard_prepare_envelope. */
+enum { BW_LADDER_MAX = 96 };
+struct bw_ladder {
+    size_t steps;
+    double edge_m[BW_LADDER_MAX + 1];
+    double envelope[BW_LADDER_MAX]; /* bound of the ratio from the lower edge on */
+    double worst[BW_TERMS_MAX];     /* of each term anywhere */
+};
+
 /* An output prepared against a rule set for one way of viewing. Point source: the terms hold at every
- * distance. Diffuse: the terms depend on the subtense and are evaluated anew at each distance. */
+ * distance. Diffuse, and beams with an apparent source or several emitters (shaped): limits depend on the subtense and are
+ * evaluated anew at each distance; the terms here are those of a point. */
 struct bw_hazard {
     const struct bw_table *table;
     const struct bw_output *output;
@@ -97,10 +109,15 @@ struct bw_hazard {
     size_t term_count;
     struct bw_term terms[BW_TERMS_MAX];
     bool adds[BW_TERMS_MAX][BW_TERMS_MAX]; /* which terms sum: same tissue and effect */
+    bool shaped; /* a beam has an apparent source or several emitters: its limits change with the distance */
+    double settled_m[BW_EMISSIONS_MAX]; /* from here on an emission is a point source from one place */
+    struct bw_ladder ladder;
 };
 enum bw_status bw_hazard_prepare(const struct bw_table *table, const struct bw_output *output,
                                  const struct bw_viewing_case *viewing, struct bw_hazard *hazard,
                                  struct bw_working *working, struct bw_error *error);
+/* Fills the ladder of a shaped hazard (else nothing): without it the envelope and places off the axis are costly. */
+void bw_hazard_prepare_envelope(struct bw_hazard *hazard);
 
 struct bw_ratio {
     double total;                   /* the largest sum over terms that add */
@@ -115,8 +132,22 @@ void bw_hazard_ratio_detail(const struct bw_hazard *hazard, double distance_m, s
 double bw_hazard_ratio_off_axis(const struct bw_hazard *hazard, double distance_m, double offset_m);
 /* How the ratio on the axis comes about. */
 void bw_hazard_ratio_working(const struct bw_hazard *hazard, double distance_m, struct bw_working *working);
-/* Envelope: the largest ratio at this distance or farther (focused beams); at most 1e-4 above it, never below. */
+/* Envelope: the largest ratio at this distance (with a stand-off: outside it) or farther; at most 1e-4 above it, never
+ * below. From a ladder: somewhat more above it. */
 double bw_hazard_ratio_envelope(const struct bw_hazard *hazard, double distance_m);
+
+/* Each term at its worst, outside the stand-off: an upper bound, exact for what is not shaped. */
+void bw_hazard_worst_terms(const struct bw_hazard *hazard, double term_ratios[BW_TERMS_MAX]);
+
+/* What of an emission the eye sees at a distance: the group of emitters that is worst against its limit. */
+struct bw_seen {
+    double ratio;
+    double subtense_rad;         /* of the group, as its limit was taken; up to 1.5 mrad the limit is that of a point */
+    size_t emitters;             /* in the group */
+    struct bw_train_limit limit; /* for that subtense */
+};
+enum bw_status bw_hazard_seen(const struct bw_hazard *hazard, size_t term, double distance_m, struct bw_seen *seen,
+                              struct bw_error *error);
 
 /* A diffuse reflection: the spot of each emission (d63) as an extended source of its own subtense,
  * E = rho P / (pi r^2), never more than rho times the irradiance of the spot. */

@@ -146,6 +146,9 @@ enum { BW_EDGES_MAX = 32 };
 size_t bw_limits_time_edges(const struct bw_table *table, enum bw_target target, const struct bw_exposure *exposure,
                             double *edges_s, size_t capacity);
 
+/* alpha_max at a duration [rad]: CE grows no further with one side of a source; INFINITY if the rule set names none. */
+double bw_limits_largest_subtense(const struct bw_table *table, double time_s);
+
 /* ---- what a rule set says of trains, sums and customary times ------------------------------- */
 
 /* Ti (Tmin): pulses closer than this count as one [s]. Returns: false if the rule set has none here. */

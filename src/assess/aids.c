@@ -19,6 +19,7 @@ static enum bw_status one(const struct assess_job *job, struct bw_distance_resul
     if (status == BW_OK)
         status = bw_hazard_reach(hazard, BW_EMISSIONS_MAX, &result->nohd, working, error);
     if (status == BW_OK) {
+        bw_hazard_prepare_envelope(hazard);
         double ratio = bw_hazard_ratio_envelope(hazard, 0.);
         result->ratio_at_exit = ratio >= distance->ratio_at_exit ? ratio : distance->ratio_at_exit;
         result->naked_decides = !(result->nohd.distance_m >= distance->nohd.distance_m);

@@ -54,87 +54,105 @@ enum bw_status assess_prepare(const struct assess_job *job, const struct bw_dist
     return bw_hazard_prepare(job->table, &distance->output, &viewing, *hazard, working, error);
 }
 
-/* Where each emission is narrowest: a place of the beam as near as an eye or a sheet of paper can come. */
-static double narrowest_m(const struct bw_beam *beam) {
-    return fmax(beam->waist_m, 0.);
-}
-
+/* As narrow as each emission gets where a sheet of paper can come. */
 static struct bw_spot smallest_spot(const struct bw_output *output) {
     struct bw_spot spot = {.reflectance = 1.};
     for (size_t i = 0; i < output->count; i++)
-        spot.diameter_m[i] = bw_beam_diameter_m(&output->beams[i], narrowest_m(&output->beams[i]));
+        spot.diameter_m[i] = bw_beam_narrowest_m(&output->beams[i], output->stand_off_m);
     return spot;
 }
 
-/* Each term at its worst, at the exit or beyond. */
-void assess_worst_terms(const struct bw_hazard *hazard, double worst[BW_TERMS_MAX]) {
-    double here[BW_TERMS_MAX];
-    bw_hazard_term_ratios(hazard, 0., worst);
-    for (size_t i = 0; i < hazard->output->count; i++) {
-        double waist_m = narrowest_m(&hazard->output->beams[i]);
-        if (waist_m <= 0.)
-            continue;
-        bw_hazard_term_ratios(hazard, waist_m, here);
-        for (size_t t = 0; t < hazard->term_count; t++)
-            worst[t] = larger(worst[t], here[t]);
-    }
-}
-
-/* The limit of the emission's own worst term. */
+/* The limit of the emission's own worst term, as at the place where all is worst. */
 static void worst_of_emission(const struct bw_hazard *hazard, const double terms[BW_TERMS_MAX], size_t emission,
-                              struct bw_train_limit *limit) {
+                              double at_m, struct bw_train_limit *limit) {
     double worst = -1.;
+    struct bw_seen seen;
     for (size_t t = 0; t < hazard->term_count; t++) {
         if (hazard->terms[t].emission != emission || terms[t] <= worst)
             continue;
         worst = terms[t];
-        *limit = hazard->terms[t].limit;
+        *limit = bw_hazard_seen(hazard, t, at_m, &seen, NULL) == BW_OK ? seen.limit : hazard->terms[t].limit;
     }
 }
 
-/* Ratio of one emission alone where it is worst: it has but one waist, so there or, without one, at the exit. */
-static double alone(const struct bw_hazard *hazard, size_t emission) {
-    struct bw_ratio ratio;
-    bw_hazard_ratio_detail(hazard, narrowest_m(&hazard->output->beams[emission]), &ratio);
-    return ratio.emission[emission];
+/* Ratio of one emission alone where it is worst. */
+static double alone(const struct bw_hazard *hazard, const double worst[BW_TERMS_MAX], size_t emission) {
+    double largest = 0.;
+    for (size_t i = 0; i < hazard->term_count; i++) {
+        double sum = 0.;
+        if (hazard->terms[i].emission != emission)
+            continue;
+        for (size_t j = 0; j < hazard->term_count; j++)
+            sum += hazard->terms[j].emission == emission && hazard->adds[i][j] ? worst[j] : 0.;
+        largest = larger(largest, sum);
+    }
+    return largest;
 }
 
-/* The term that governs where the hazard is worst: at the exit, or at the waist of one of the emissions. */
+struct worst_place {
+    double at_m, total;
+    size_t term;
+};
+
+static void try_place(const struct bw_hazard *hazard, double at_m, struct worst_place *worst) {
+    struct bw_ratio ratio;
+    bw_hazard_ratio_detail(hazard, at_m, &ratio);
+    if (ratio.total <= worst->total)
+        return;
+    *worst = (struct worst_place){at_m, ratio.total, ratio.governing};
+}
+
+/* The term that governs where the hazard is worst: at the exit, or at the waist of one of the emissions; of a shaped
+ * hazard, at the step of its ladder that is worst. */
 void assess_find_governing(const struct bw_hazard *hazard, size_t *emission, struct bw_train_limit *limit,
                            double *at_m) {
-    struct bw_ratio ratio;
-    bw_hazard_ratio_detail(hazard, 0., &ratio);
-    *at_m = 0.;
-    size_t governing = ratio.governing;
-    double worst = ratio.total;
-    for (size_t i = 0; i < hazard->output->count; i++) {
-        double waist_m = narrowest_m(&hazard->output->beams[i]);
-        bw_hazard_ratio_detail(hazard, waist_m, &ratio);
-        if (ratio.total <= worst)
+    struct worst_place worst = {0., -1., 0};
+    struct bw_seen seen;
+    try_place(hazard, hazard->output->stand_off_m, &worst);
+    for (size_t i = 0; i < hazard->output->count; i++)
+        if (hazard->output->beams[i].waist_m > hazard->output->stand_off_m)
+            try_place(hazard, hazard->output->beams[i].waist_m, &worst);
+    for (size_t i = 0; hazard->shaped && i <= hazard->ladder.steps && hazard->ladder.steps > 0; i++)
+        try_place(hazard, hazard->ladder.edge_m[i], &worst);
+    *at_m = worst.at_m;
+    *emission = hazard->terms[worst.term].emission;
+    *limit = bw_hazard_seen(hazard, worst.term, worst.at_m, &seen, NULL) == BW_OK ? seen.limit
+                                                                                  : hazard->terms[worst.term].limit;
+}
+
+/* What the eye sees at the end of the hazard, or at the exit where there is none. */
+static void look_back(const struct bw_hazard *hazard, const struct bw_reach *reach, size_t only, double *subtense_rad,
+                      size_t *emitters) {
+    struct bw_seen seen;
+    double at_m = fmax(reach->distance_m, hazard->output->stand_off_m), largest = -1.;
+    *subtense_rad = 0.;
+    *emitters = 1;
+    for (size_t t = 0; t < hazard->term_count; t++) {
+        bool counts = only == BW_EMISSIONS_MAX || hazard->terms[t].emission == only;
+        if (!counts || bw_hazard_seen(hazard, t, at_m, &seen, NULL) != BW_OK || seen.ratio <= largest)
             continue;
-        worst = ratio.total;
-        governing = ratio.governing;
-        *at_m = waist_m;
+        largest = seen.ratio;
+        *subtense_rad = seen.subtense_rad;
+        *emitters = seen.emitters;
     }
-    *emission = hazard->terms[governing].emission;
-    *limit = hazard->terms[governing].limit;
 }
 
 static enum bw_status emissions(struct bw_distance_result *distance, struct bw_error *error) {
     const struct bw_hazard *direct = distance->direct;
     double eye[BW_TERMS_MAX] = {0}, skin[BW_TERMS_MAX] = {0}, od[BW_EMISSIONS_MAX] = {0};
-    assess_worst_terms(direct, eye);
-    assess_worst_terms(distance->skin_view, skin);
+    bw_hazard_worst_terms(direct, eye);
+    bw_hazard_worst_terms(distance->skin_view, skin);
     bw_hazard_optical_density(direct, eye, od);
     for (size_t i = 0; i < direct->output->count; i++) {
         struct bw_emission_result *emission = &distance->emissions[i];
-        worst_of_emission(direct, eye, i, &emission->limit);
-        emission->ratio_at_exit = alone(direct, i);
-        worst_of_emission(distance->skin_view, skin, i, &emission->skin_limit);
+        worst_of_emission(direct, eye, i, distance->worst_m, &emission->limit);
+        emission->ratio_at_exit = alone(direct, eye, i);
+        worst_of_emission(distance->skin_view, skin, i, distance->worst_m, &emission->skin_limit);
         emission->optical_density = od[i];
         enum bw_status status = bw_hazard_reach(direct, i, &emission->nohd, NULL, error);
         if (status != BW_OK)
             return status;
+        look_back(direct, &emission->nohd, i, &emission->subtense_rad, &emission->emitters);
     }
     return BW_OK;
 }
@@ -148,8 +166,12 @@ static enum bw_status eye_direct(const struct assess_job *job, struct bw_distanc
         status = bw_hazard_reach(distance->direct, BW_EMISSIONS_MAX, &distance->nohd, working, error);
     if (status != BW_OK)
         return status;
+    bw_hazard_prepare_envelope(distance->direct);
     distance->ratio_at_exit = bw_hazard_ratio_envelope(distance->direct, 0.);
     assess_find_governing(distance->direct, &distance->governing_emission, &distance->governing, &distance->worst_m);
+    size_t emitters;
+    look_back(distance->direct, &distance->nohd, BW_EMISSIONS_MAX, &distance->subtense_rad, &emitters);
+    distance->nearest_m = distance->direct->output->stand_off_m;
     return BW_OK;
 }
 
@@ -199,7 +221,8 @@ enum bw_status assess_figures(const struct assess_job *job, struct bw_distance_r
  * Given:    job, laser, handpiece  indices into the case
  * Returned: distance
  * Returns:  BW_OK; BW_OUT_OF_RANGE with the emission named; BW_NO_MEMORY
- * Notes:    Direct viewing is taken as a point source, the strictest case; the diffuse spot is the smallest that
+ * Notes:    Direct viewing is taken as a point source, the strictest case, unless the case gives an apparent source or
+ *           several emitters; the diffuse spot is the smallest that
  *           the beam has anywhere, on a surface that returns all. */
 enum bw_status assess_distance(const struct assess_job *job, size_t laser, size_t handpiece,
                                struct bw_distance_result *distance) {

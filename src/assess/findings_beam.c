@@ -68,6 +68,20 @@ static void definition(const struct assess_job *job, const char *subject, const 
                        "safe side. Ask the maker and enter diameter_definition.");
 }
 
+static void shape(const struct assess_job *job, const char *subject, const struct bw_distance_result *distance) {
+    char number[BW_NUMBER_SIZE];
+    if (distance->direct->shaped)
+        assess_finding(job, BW_NOTE, subject,
+                       "The limits of direct viewing rest on the size of the apparent source or the places of the "
+                       "emitters that the case gives. Keep the measurement or the maker's statement: a point source, "
+                       "which is taken where nothing is known, has the stricter limit.");
+    if (distance->nearest_m > 0.)
+        assess_finding(job, BW_NOTE, subject,
+                       "Ratios and densities at the exit hold %s mm in front of it, where the spacer ends: it must "
+                       "always be fitted. Distances count from the exit.",
+                       bw_format(number, 1e3 * distance->nearest_m, 6, BW_NEAREST));
+}
+
 static void meter(const struct assess_job *job) {
     struct bw_text text = {0};
     for (size_t i = 0; i < job->the_case->laser_count; i++) {
@@ -98,6 +112,7 @@ void assess_beam_findings(const struct assess_job *job) {
         diffuse(job, subject, distance);
         exposure(job, subject, distance);
         definition(job, subject, distance);
+        shape(job, subject, distance);
     }
     meter(job);
 }

@@ -24,10 +24,13 @@ static void incident(const struct assess_job *job, const struct bw_incident_resu
         add_received(&text, job, "skin", result->skin_ratio, &result->skin_place, given->exposure_s);
     if (eye || skin)
         bw_text_add(&text, "Stop, keep the setting as it is, have %s seen by a doctor, and keep this record.",
-                    eye && skin ? "eyes and skin" : eye ? "the eyes" : "the skin");
+                    eye && skin ? "eyes and skin"
+                    : eye       ? "the eyes"
+                                : "the skin");
     else
-        bw_text_add(&text, "As described, no limit was exceeded: the eye got at most %s, the skin %s times the limit for "
-                           "%.6g s. If in doubt about time, place or goggles, take the worse one.",
+        bw_text_add(&text,
+                    "As described, no limit was exceeded: the eye got at most %s, the skin %s times the limit for "
+                    "%.6g s. If in doubt about time, place or goggles, take the worse one.",
                     bw_format(eye_times, result->eye_ratio, 2, BW_UP),
                     bw_format(skin_times, result->skin_ratio, 2, BW_UP), given->exposure_s);
     assess_finding_text(job, eye || skin ? BW_DANGER : BW_NOTE, subject, &text);
@@ -40,12 +43,12 @@ static void aids(const struct assess_job *job, const struct bw_distance_result *
         if (aid->naked_decides || !(aid->nohd.distance_m > distance->nohd.distance_m))
             continue;
         assess_handpiece_words(job, distance, subject);
-        assess_finding(job, BW_CAUTION, subject,
-                       "Through %s the hazard of the direct beam reaches %s instead of %s. The map of a room is for the "
-                       "naked eye.",
-                       job->the_case->aids[aid->aid].name,
-                       bw_length_words(reach, aid->nohd.distance_m, job->the_case->us_units),
-                       bw_length_words(naked, distance->nohd.distance_m, job->the_case->us_units));
+        assess_finding(
+            job, BW_CAUTION, subject,
+            "Through %s the hazard of the direct beam reaches %s instead of %s. The map of a room is for the "
+            "naked eye.",
+            job->the_case->aids[aid->aid].name, bw_length_words(reach, aid->nohd.distance_m, job->the_case->us_units),
+            bw_length_words(naked, distance->nohd.distance_m, job->the_case->us_units));
     }
 }
 

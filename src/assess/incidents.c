@@ -7,8 +7,7 @@
 
 static bool wanted(const struct assess_job *job, const struct bw_incident *incident,
                    const struct bw_distance_result *distance) {
-    if (incident->has_handpiece &&
-        !(distance->laser == incident->laser && distance->handpiece == incident->handpiece))
+    if (incident->has_handpiece && !(distance->laser == incident->laser && distance->handpiece == incident->handpiece))
         return false;
     return !incident->in_room || assess_used_in(job->the_case, incident->room, distance->laser, distance->handpiece);
 }
@@ -22,8 +21,8 @@ struct reception {
 
 static struct assess_view view_of(const struct assess_job *job, const struct reception *reception) {
     const struct bw_incident *incident = reception->incident;
-    struct assess_view view = {.job = job, .target = reception->target, .at = incident->at,
-                               .distance_m = incident->distance_m};
+    struct assess_view view = {
+        .job = job, .target = reception->target, .at = incident->at, .distance_m = incident->distance_m};
     if (incident->in_room)
         view.room = &job->the_case->rooms[incident->room];
     if (reception->goggles && incident->has_eyewear)
@@ -86,7 +85,9 @@ static void write_working(const struct assess_view *view, const struct reception
     const struct assess_light *light = &view->lights[view->room ? view->place.source : 0];
     const struct bw_distance_result *distance = light->distance;
     bw_working_heading(working, "%s%s%s, exposure %g s, from %s %s", reception->target == BW_EYE ? "Eye" : "Skin",
-                       view->goggles ? " behind " : view->aid ? " through " : "",
+                       view->goggles ? " behind "
+                       : view->aid   ? " through "
+                                     : "",
                        view->goggles ? view->goggles->name
                        : view->aid   ? view->aid->name
                                      : "",

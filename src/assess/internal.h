@@ -25,8 +25,6 @@ bool assess_used_in(const struct bw_case *the_case, size_t room, size_t laser, s
 /* distance.c: one handpiece. The result is freed by bw_result_free whatever is returned. */
 enum bw_status assess_distance(const struct assess_job *job, size_t laser, size_t handpiece,
                                struct bw_distance_result *distance);
-/* Each term at its worst, at the exit or at a waist beyond it. */
-void assess_worst_terms(const struct bw_hazard *hazard, double worst[BW_TERMS_MAX]);
 enum bw_status assess_prepare(const struct assess_job *job, const struct bw_distance_result *distance,
                               struct bw_viewing_case viewing, struct bw_hazard **hazard, struct bw_working *working,
                               struct bw_error *error);

@@ -7,7 +7,7 @@ void assess_pairs(const struct assess_job *job) {
         for (size_t j = 0; j < result->distance_count; j++) {
             const struct bw_distance_result *distance = &result->distances[j];
             double od[BW_EMISSIONS_MAX] = {0}, terms[BW_TERMS_MAX] = {0};
-            assess_worst_terms(distance->direct, terms);
+            bw_hazard_worst_terms(distance->direct, terms);
             for (size_t k = 0; k < distance->direct->output->count; k++)
                 od[k] = distance->emissions[k].optical_density;
             struct bw_pair_result *pair = &result->pairs[result->pair_count++];

@@ -11,10 +11,8 @@ static const struct bw_person *person_of(const struct assess_job *job, const str
 
 static struct assess_view view_of(const struct assess_job *job, const struct bw_room_result *room, size_t index,
                                   enum bw_target target) {
-    return (struct assess_view){.job = job,
-                                .target = target,
-                                .room = &job->the_case->rooms[room->room],
-                                .at = person_of(job, room, index)->at};
+    return (struct assess_view){
+        .job = job, .target = target, .room = &job->the_case->rooms[room->room], .at = person_of(job, room, index)->at};
 }
 
 static enum bw_status open_all(struct assess_view *view, const struct bw_room_result *room, struct bw_error *error) {

@@ -62,7 +62,7 @@ static enum bw_status answer(const struct assess_job *job, const struct bw_dista
     if (status != BW_OK)
         return status;
     double terms[BW_TERMS_MAX] = {0}, od[BW_EMISSIONS_MAX] = {0};
-    assess_worst_terms(&hazard, terms);
+    bw_hazard_worst_terms(&hazard, terms);
     bw_hazard_optical_density(&hazard, terms, od);
     answers->nohd_m = reach.unbounded || !(reach.distance_m > 0.) ? nan("") : reach.distance_m;
     answers->density = 0.;

@@ -14,9 +14,10 @@ static double spot_area_m2(const struct bw_distance_result *distance, double at_
     double largest_m2 = 0.;
     for (size_t i = 0; i < distance->output.count; i++) {
         const struct bw_beam *beam = &distance->output.beams[i];
-        double width_m = bw_beam_diameter_m(beam, at_m);
+        double width_m = bw_beam_widest_m(beam, at_m);
         if (beam->profile == BW_GAUSSIAN)
             width_m = bw_diameter_from_d63(width_m, BW_D86);
+        width_m += 2. * bw_beam_outermost_m(beam);
         largest_m2 = fmax(largest_m2, bw_pi / 4. * width_m * width_m);
     }
     return fmin(largest_m2, large_m2);
@@ -42,8 +43,7 @@ static struct bw_viewing_case viewing_of(const struct bw_distance_result *distan
 }
 
 static double ratio_at(struct skin_case *skin, double at_m) {
-    struct bw_viewing_case viewing =
-        viewing_of(skin->distance, assess_skin_area_m2(skin->job, skin->distance, at_m));
+    struct bw_viewing_case viewing = viewing_of(skin->distance, assess_skin_area_m2(skin->job, skin->distance, at_m));
     struct bw_hazard hazard;
     if (skin->status == BW_OK)
         skin->status =
@@ -133,6 +133,7 @@ enum bw_status assess_skin(const struct assess_job *job, struct bw_distance_resu
     if (status != BW_OK)
         return status;
     double at_m;
+    bw_hazard_prepare_envelope(distance->skin_view);
     distance->skin_ratio_at_exit = bw_hazard_ratio_envelope(distance->skin_view, 0.);
     assess_find_governing(distance->skin_view, &distance->skin_governing_emission, &distance->skin_governing, &at_m);
     return BW_OK;

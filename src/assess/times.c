@@ -8,8 +8,8 @@ static enum bw_status one_view(const struct assess_job *job, const struct bw_dis
                                const struct bw_place_times *place, enum bw_target target,
                                const struct bw_goggles *goggles, double *ratio, struct bw_permitted_time *time,
                                struct bw_error *error) {
-    struct assess_view view = {.job = job, .target = target, .goggles = goggles, .at_exit = place->at_exit,
-                               .distance_m = place->at_m};
+    struct assess_view view = {
+        .job = job, .target = target, .goggles = goggles, .at_exit = place->at_exit, .distance_m = place->at_m};
     enum bw_status status = assess_view_open(&view, &distance, 1, error);
     if (status == BW_OK && ratio)
         status = assess_view_customary(&view, ratio, error);
@@ -46,9 +46,9 @@ static void write_working(const struct assess_job *job, const struct bw_distance
     if (bw_hazard_prepare(job->table, &distance->output, &viewing, &hazard, working, NULL) != BW_OK)
         return;
     bw_hazard_ratio_working(&hazard, place->at_m, working);
-    bw_working_step(working, "t", time->exposure_s, "s", NULL,
-                    time->unbounded ? "no limit is reached within 30 000 s" : "longest exposure with a ratio of 1 or below",
-                    NULL);
+    bw_working_step(
+        working, "t", time->exposure_s, "s", NULL,
+        time->unbounded ? "no limit is reached within 30 000 s" : "longest exposure with a ratio of 1 or below", NULL);
 }
 
 /* Given:    job; distance  with its figures

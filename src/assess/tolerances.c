@@ -16,13 +16,14 @@ static enum bw_status worst_emission(const struct assess_job *job, struct bw_dis
         status = bw_emission_varied(&tolerance->given, 1. + tolerance->power, 1., 1., emission, error);
         for (size_t i = 0; i < BW_NAME_SIZE; i++)
             emission->name[i] = given.name[i];
-        bw_working_step(working, "P", emission->average_power_w, "W", NULL, "P (1 + tolerance)", "%.6g W x (1 + %g), %s",
-                        given.average_power_w, tolerance->power, given.name);
+        bw_working_step(working, "P", emission->average_power_w, "W", NULL, "P (1 + tolerance)",
+                        "%.6g W x (1 + %g), %s", given.average_power_w, tolerance->power, given.name);
     }
     double diameter = handpiece->diameter_tolerance[index], divergence = handpiece->divergence_tolerance[index];
     distance->output.beams[index] = bw_beam_varied(&handpiece->output.beams[index], 1. - diameter, 1. - divergence);
     if (diameter > 0. || divergence > 0.) {
-        bw_working_step(working, "d factor", 1. - diameter, "", NULL, "1 - tolerance of the diameter", "%s", given.name);
+        bw_working_step(working, "d factor", 1. - diameter, "", NULL, "1 - tolerance of the diameter", "%s",
+                        given.name);
         bw_working_step(working, "phi factor", 1. - divergence, "", NULL, "1 - tolerance of the divergence", "%s",
                         given.name);
     }

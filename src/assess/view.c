@@ -56,8 +56,9 @@ static enum bw_status prepare_light(struct assess_view *view, size_t index, doub
     struct bw_viewing_case viewing = {.target = view->target, .exposure_s = direct_s};
     if (view->target == BW_SKIN)
         viewing.area_m2 = assess_skin_area_m2(view->job, light->distance, at_m);
-    enum bw_status status =
-        bw_hazard_prepare(view->job->table, &light->output, &viewing, &light->direct, NULL, error);
+    enum bw_status status = bw_hazard_prepare(view->job->table, &light->output, &viewing, &light->direct, NULL, error);
+    if (status == BW_OK && view->room)
+        bw_hazard_prepare_envelope(&light->direct);
     viewing.exposure_s = diffuse_s;
     if (status == BW_OK && view->room)
         status = bw_hazard_prepare(view->job->table, &light->output, &viewing, &light->diffuse, NULL, error);
@@ -69,7 +70,7 @@ static double on_axis(const struct assess_view *view) {
     double terms[BW_TERMS_MAX] = {0};
     if (!view->at_exit)
         return bw_hazard_ratio(hazard, view->distance_m);
-    assess_worst_terms(hazard, terms);
+    bw_hazard_worst_terms(hazard, terms);
     return bw_hazard_total(hazard, terms);
 }
 
@@ -77,7 +78,8 @@ static double on_axis(const struct assess_view *view) {
 static enum bw_status find_ratio(struct assess_view *view, double *ratio, struct bw_error *error) {
     if (!view->room) {
         *ratio = on_axis(view);
-        view->place = (struct bw_place){.ratio = *ratio, .path = BW_PATH_DIRECT, .length_m = view->distance_m, .share = 1.};
+        view->place =
+            (struct bw_place){.ratio = *ratio, .path = BW_PATH_DIRECT, .length_m = view->distance_m, .share = 1.};
         return BW_OK;
     }
     enum bw_status status = bw_room_at(view->room, view->sources, view->count, view->at, &view->place, error);
@@ -121,8 +123,8 @@ enum bw_status assess_view_time(struct assess_view *view, struct bw_permitted_ti
         return bw_error_set(error, BW_NO_MEMORY, "out of memory");
     for (size_t i = 0; i < view->count; i++)
         outputs[i] = &view->lights[i].output;
-    enum bw_status status = bw_hazard_time_to_limit(view->job->table, outputs, view->count, &viewing,
-                                                    assess_view_ratio, view, time, error);
+    enum bw_status status =
+        bw_hazard_time_to_limit(view->job->table, outputs, view->count, &viewing, assess_view_ratio, view, time, error);
     free(outputs);
     return status;
 }

@@ -44,9 +44,42 @@ struct bw_beam bw_beam_from_fibre(double numerical_aperture, double core_m) {
     };
 }
 
+/* Beam from the end of a single-mode fibre.
+ * Given:    mode_field_m    1/e^2 diameter of the mode field [m]
+ *           wavelength_nm
+ * Returns:  Gaussian beam: d63 = field / sqrt 2, full d63 angle 2 sqrt 2 lambda / (pi field) (Notes)
+ * Notes:    1) Diffraction of a Gaussian: 1/e^2 radius w(r) = lambda r / (pi w0), w0 = field / 2; as d63 the diameter
+ *              is 2 sqrt 2 lambda r / (pi field).
+ *           2) Nothing of this width spreads less. Where the fibre carries more modes than one (an aiming beam of
+ * shorter wavelength), the true spot is larger: this one errs to the small, safe side. Source:   IEC 60825-2, hazard
+ * distance of single-mode fibres (from memory); the Gaussian beam is textbook optics. */
+struct bw_beam bw_beam_from_single_mode_fibre(double mode_field_m, double wavelength_nm) {
+    double d63_m = mode_field_m / sqrt(2.);
+    return (struct bw_beam){
+        .profile = BW_GAUSSIAN,
+        .spread = BW_HYPERBOLIC,
+        .diameter_m = d63_m,
+        .divergence_rad = 2. * sqrt(2.) * wavelength_nm * 1e-9 / (bw_pi * mode_field_m),
+        .waist_m = 0.,
+        .exit_diameter_m = d63_m,
+    };
+}
+
+/* Apparent source of a multimode fibre end.
+ * Given:    core_m
+ * Returns:  core x sqrt(1 - 1/e): the circle that holds 63 % of an evenly lit core (Note)
+ * Notes:    A core that is brighter in its middle (graded index) is held by a smaller circle; who knows that gives the
+ *           source's diameter instead.  Source: the 63 % convention for apparent sources, common practice. */
+double bw_fibre_source_m(double core_m) {
+    return core_m * sqrt(-expm1(-1.));
+}
+
 /* Beam behind a focusing lens.
  * Given:    focal_length_m, beam_m (d63 at the lens), divergence_rad (d63, full, of the incoming beam), profile
- * Returns:  beam with its waist in the focus: diameter f x divergence, full angle beam / f beyond it */
+ * Returns:  beam with its waist in the focus: diameter f x divergence, full angle beam / f beyond it
+ * Notes:    1) Geometric optics. f x divergence is exact for the spot in the focal plane of an ideal lens, whatever
+ * made the divergence; aberrations only widen it. 2) An elliptical beam passes the lens axis by axis: call it for each.
+ */
 struct bw_beam bw_beam_from_lens(double focal_length_m, double beam_m, double divergence_rad, enum bw_profile profile) {
     return (struct bw_beam){
         .profile = profile,

@@ -71,5 +71,8 @@ struct bw_beam bw_beam_varied(const struct bw_beam *beam, double diameter, doubl
     varied.diameter_m *= lens ? divergence : diameter;
     varied.divergence_rad *= lens ? diameter : divergence;
     varied.exit_diameter_m *= diameter;
+    varied.diameter_y_m *= lens ? divergence : diameter;
+    varied.divergence_y_rad *= lens ? diameter : divergence;
+    varied.exit_diameter_y_m *= diameter;
     return varied;
 }

@@ -4,14 +4,23 @@
 #include <stdio.h>
 #include <string.h>
 
+static const struct range stand_offs_m = {0., 10.};
 static const struct range exposures_s = {1e-13, 3e4}; /* what the published tables cover */
 static const struct range skins_m2 = {1e-6, 2.};      /* nobody has more */
+
+/* The beam of an emission that is not there is read all the same, for its faults. */
+static const double any_wavelength_nm = 1000.;
+
+static double wavelength_of(const struct bw_laser *laser, const struct section *emission) {
+    bool there = emission && emission->index < laser->emission_count;
+    return there ? laser->emissions[emission->index].wavelength_nm : any_wavelength_nm;
+}
 
 static void read_emission_beam(struct reading *reading, const struct section *of, struct section *section,
                                const struct bw_laser *laser, struct bw_handpiece *handpiece) {
     const struct section *emission = sections_refer(reading, section, SECTION_EMISSION, laser->name, section->names[2]);
     struct bw_beam beam = {0};
-    enum presence presence = read_beam(reading, section, of, &beam);
+    enum presence presence = read_beam(reading, section, of, wavelength_of(laser, emission), &beam);
     handpiece->definition_assumed = handpiece->definition_assumed || beam_assumes_definition(section, of);
     if (presence == ABSENT && section->key_count == 0)
         fault_section(reading, section,
@@ -58,6 +67,7 @@ static void share_beam(struct reading *reading, const struct section *section, c
     for (size_t i = 0; i < handpiece->output.count; i++)
         if (!handpiece->emission_beam_given[i]) {
             handpiece->output.beams[i] = *beam;
+            beam_for_wavelength(section, handpiece->output.emissions[i].wavelength_nm, &handpiece->output.beams[i]);
             handpiece->diameter_tolerance[i] = diameter;
             handpiece->divergence_tolerance[i] = divergence;
         }
@@ -73,10 +83,12 @@ static void read_handpiece(struct reading *reading, const struct section *sectio
     handpiece->has_exposure = value_number(reading, section, "exposure", exposures_s, &handpiece->exposure_s) == GIVEN;
     handpiece->has_exposed_skin =
         value_number(reading, section, "exposed_skin", skins_m2, &handpiece->exposed_skin_m2) == GIVEN;
+    if (value_number(reading, section, "stand_off", stand_offs_m, &output->stand_off_m) != GIVEN)
+        output->stand_off_m = 0.;
     output->count = laser->emission_count < BW_EMISSIONS_MAX ? laser->emission_count : BW_EMISSIONS_MAX;
     memcpy(output->emissions, laser->emissions, output->count * sizeof *output->emissions);
     read_emission_beams(reading, section, laser, handpiece);
-    enum presence presence = read_beam(reading, section, NULL, &beam);
+    enum presence presence = read_beam(reading, section, NULL, any_wavelength_nm, &beam);
     handpiece->definition_assumed = handpiece->definition_assumed || beam_assumes_definition(section, NULL);
     if (presence == ABSENT && !all_have_beams(handpiece) && !section->lost_key && !reading->lost[SECTION_BEAM])
         fault_section(reading, section,
@@ -108,7 +120,7 @@ static void check_owners(struct reading *reading) {
     for (size_t at = 0; (section = sections_next(reading, &at, SECTION_HANDPIECE, NULL, NULL));)
         if (!section->made) {
             sections_refer(reading, section, SECTION_LASER, section->names[0], NULL);
-            read_beam(reading, section, NULL, &beam);
+            read_beam(reading, section, NULL, any_wavelength_nm, &beam);
         }
     for (size_t at = 0; (section = sections_next(reading, &at, SECTION_BEAM, NULL, NULL));)
         if (!section->made && sections_refer(reading, section, SECTION_LASER, section->names[0], NULL))

@@ -43,7 +43,7 @@ static enum presence find_room(struct reading *reading, const struct section *se
 }
 
 /* Both laser and handpiece, or neither. */
-static void read_source(struct reading *reading, const struct section *section, struct bw_incident *incident) {
+static void read_light(struct reading *reading, const struct section *section, struct bw_incident *incident) {
     enum presence laser = find_laser(reading, section, &incident->laser), handpiece = ABSENT;
     bool named = value_given(section, "handpiece");
     if (laser == GIVEN)
@@ -93,7 +93,7 @@ static void read_incident(struct reading *reading, const struct section *section
     incident->line = section->head->line;
     value_text(reading, section, "title", incident->title, sizeof incident->title);
     incident->in_room = value_given(section, "room");
-    read_source(reading, section, incident);
+    read_light(reading, section, incident);
     if (incident->in_room)
         read_place(reading, section, incident);
     else if (value_number(reading, section, "distance", distances_m, &incident->distance_m) == ABSENT)

@@ -179,7 +179,12 @@ void read_beam_tolerance(struct reading *reading, const struct section *section,
 /* Geometry of a handpiece or beam. A beam takes the definition of diameters from its handpiece (may be NULL), unless it
  * has one of its own. */
 enum presence read_beam(struct reading *reading, const struct section *section, const struct section *handpiece,
-                        struct bw_beam *beam);
+                        double wavelength_nm, struct bw_beam *beam);
+/* The same beam for another wavelength: of a single-mode fibre the divergence follows it. */
+void beam_for_wavelength(const struct section *section, double wavelength_nm, struct bw_beam *beam);
+/* Apparent source and emitters. */
+enum presence read_source(struct reading *reading, const struct section *section,
+                          enum bw_diameter_definition definition, bool whole, struct bw_beam *beam);
 /* True if the beam has a diameter and nothing says how it is defined. */
 bool beam_assumes_definition(const struct section *section, const struct section *handpiece);
 /* Whether everything is where it can be. */

@@ -15,6 +15,7 @@ static const struct unit_word length_units[] = {
 static const struct unit_word place_units[] = {
     {"m", "m", 1.}, {"cm", "cm", 1e-2}, {"mm", "mm", 1e-3}, {"in", "in", 0.0254}, {"ft", "ft", 0.3048},
 };
+static const struct unit_word small_units[] = {{"um", "um", 1e-6}, {"mm", "mm", 1e-3}};
 static const struct unit_word angle_units[] = {
     {"mrad", "mrad", 1e-3},
     {"deg", "deg", 3.14159265358979323846 / 180.},
@@ -31,6 +32,7 @@ static const struct unit_word second_units[] = {{"s", "s", 1.}};
 static const struct unit_word area_units[] = {{"cm2", "cm2", 1e-4}, {"m2", "m2", 1.}};
 static const struct unit_word percent_units[] = {{"pct", "%", 1e-2}};
 
+static const struct unit_family small = {small_units, COUNT(small_units)};
 static const struct unit_family length = {length_units, COUNT(length_units)};
 static const struct unit_family place = {place_units, COUNT(place_units)};
 static const struct unit_family angle = {angle_units, COUNT(angle_units)};
@@ -53,6 +55,13 @@ static const struct unit_family percent = {percent_units, COUNT(percent_units)};
         {"diameter_definition", NULL, "diameter_definition = d86"},                                                    \
         {"divergence_definition", NULL, "divergence_definition = full"}, {"spread", NULL, "spread = hyperbolic"},      \
         {"fibre_na", NULL, "fibre_na = 0.22"}, {"fibre_core", &length, "fibre_core_mm = 0.4"},                         \
+        {"beam_diameter_y", &length, "beam_diameter_y_mm = 10"}, {"divergence_y", &angle, "divergence_y_mrad = 80"},   \
+        {"fibre_mode", NULL, "fibre_mode = single"}, {"fibre_mode_field", &small, "fibre_mode_field_um = 6"},          \
+        {"apparent_source", &length, "apparent_source_mm = 1"},                                                        \
+        {"apparent_source_behind", &length, "apparent_source_behind_mm = 20"},                                         \
+        {"apparent_source_kind", NULL, "apparent_source_kind = fibre-end"},                                            \
+        {"emitter_at", &length, "emitter_at_mm = -4 0, 4 0"},                                                          \
+        {"emitter_power_share", NULL, "emitter_power_share = 0.5, 0.5"},                                               \
         {"lens_focal_length", &length, "lens_focal_length_mm = 50"},                                                   \
         {"diameter_tolerance", &percent, "diameter_tolerance_pct = 10"}, {                                             \
         "divergence_tolerance", &percent, "divergence_tolerance_pct = 10"                                              \
@@ -79,7 +88,10 @@ static const struct key_word emission_keys[] = {
     {"pulse_duration_tolerance", &percent, "pulse_duration_tolerance_pct = 10"},
     {"repetition_rate_tolerance", &percent, "repetition_rate_tolerance_pct = 5"},
 };
-static const struct key_word handpiece_keys[] = {TITLE_KEY, BEAM_KEYS, {"exposure", &seconds, "exposure_s = 10"},
+static const struct key_word handpiece_keys[] = {TITLE_KEY,
+                                                 BEAM_KEYS,
+                                                 {"stand_off", &length, "stand_off_mm = 40"},
+                                                 {"exposure", &seconds, "exposure_s = 10"},
                                                  {"exposed_skin", &area, "exposed_skin_cm2 = 50"}};
 static const struct key_word beam_keys[] = {BEAM_KEYS};
 static const struct key_word room_keys[] = {
@@ -220,13 +232,8 @@ static const struct {
     {"burst_", "bursts are not in this version; describe the train as if it ran without gaps, the stricter side"},
     {"pulses", "measured and counted trains are not in this version; describe a regular train at least as strong"},
     {"pulse_count", "counted pulses are not in this version; describe a regular train at least as strong"},
-    {"emitter_", "clusters of emitters are not in this version; describe one emitter with the power of all, the "
-                 "stricter side"},
-    {"beam_diameter_x_", "elliptical beams are not in this version; write the smaller diameter as beam_diameter_mm"},
-    {"beam_diameter_y_", "elliptical beams are not in this version; write the smaller diameter as beam_diameter_mm"},
-    {"divergence_x_", "elliptical beams are not in this version; write the smaller divergence as divergence_mrad"},
-    {"divergence_y_", "elliptical beams are not in this version; write the smaller divergence as divergence_mrad"},
-    {"stand_off", "a stand-off is not in this version; the exit of the handpiece is where distances begin"},
+    {"beam_diameter_x_", "is not known; beam_diameter_mm is the x axis, beam_diameter_y_mm the other"},
+    {"divergence_x_", "is not known; divergence_mrad is the x axis, divergence_y_mrad the other"},
 };
 
 static const char *why_not_built(const char *key) {

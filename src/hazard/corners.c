@@ -91,7 +91,8 @@ static void write_working(const struct corner_case *c, const struct worst worst[
 enum bw_status bw_hazard_corner_limits(const struct bw_hazard *hazard, size_t emission,
                                        const struct bw_viewing_case *viewing, struct bw_train_limit_set *limits,
                                        struct bw_working *working, struct bw_error *error) {
-    const struct bw_tolerance *tolerance = hazard->output->tolerances != NULL ? &hazard->output->tolerances[emission] : NULL;
+    const struct bw_tolerance *tolerance =
+        hazard->output->tolerances != NULL ? &hazard->output->tolerances[emission] : NULL;
     if (tolerance == NULL || !(tolerance->duration > 0. || tolerance->rate > 0.))
         return bw_hazard_train_limits(hazard->table, &hazard->output->emissions[emission], viewing, limits, working,
                                       error);

@@ -5,14 +5,17 @@
 
 /* Given:    output; beam_path_m  length of the beam's way to the surface [m]; reflectance  0 to 1
  * Returned: spot  d63 of each emission on the surface
- * Returns:  BW_OK; BW_ARGUMENT */
+ * Returns:  BW_OK; BW_ARGUMENT
+ * Notes:    An ellipse counts as a disc of its smaller axis, a cluster as one emitter with all the power: the smaller
+ *           source has the stricter limit. */
 enum bw_status bw_hazard_spot(const struct bw_output *output, double beam_path_m, double reflectance,
                               struct bw_spot *spot) {
     spot->reflectance = nan("");
     if (!(beam_path_m >= 0.) || !(reflectance >= 0. && reflectance <= 1.) || output->count > BW_EMISSIONS_MAX)
         return BW_ARGUMENT;
+    double path_m = fmax(beam_path_m, output->stand_off_m); /* the spacer keeps surfaces off, too */
     for (size_t i = 0; i < BW_EMISSIONS_MAX; i++)
-        spot->diameter_m[i] = i < output->count ? bw_beam_diameter_m(&output->beams[i], beam_path_m) : 0.;
+        spot->diameter_m[i] = i < output->count ? bw_beam_diameter_m(&output->beams[i], path_m) : 0.;
     spot->reflectance = reflectance;
     return BW_OK;
 }
@@ -122,7 +125,8 @@ static const double steps_rad[] = {1.5e-3, 5e-3, 100e-3};
 enum { STEPS = 3, PLACES_MAX = STEPS * BW_EMISSIONS_MAX };
 
 static double farthest_step_m(const struct search *search, double below_m) {
-    double farthest_m = 0., magnification = bw_hazard_magnification(search->hazard); /* an aid shows the angle so wide */
+    double farthest_m = 0.,
+           magnification = bw_hazard_magnification(search->hazard); /* an aid shows the angle so wide */
     for (size_t i = 0; i < search->hazard->output->count; i++)
         for (size_t j = 0; j < STEPS; j++) {
             double half_m = search->spot->diameter_m[i] / 2.;

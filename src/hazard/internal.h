@@ -58,7 +58,10 @@ void bw_hazard_train_working(const struct train_case *train, const struct tally 
 
 /* ---- prepare.c --------------------------------------------------------------------------------- */
 
-/* Limits of one emission for a source of this subtense. */
+/* Limits of one emission for a source that looks so wide to the naked eye; and to the eye behind its aid. */
+enum bw_status bw_hazard_limits_at_eye(const struct bw_hazard *hazard, size_t emission, double subtense_rad,
+                                       struct bw_train_limit_set *limits, struct bw_working *working,
+                                       struct bw_error *error);
 enum bw_status bw_hazard_emission_limits(const struct bw_hazard *hazard, size_t emission, double subtense_rad,
                                          struct bw_train_limit_set *limits, struct bw_working *working,
                                          struct bw_error *error);
@@ -84,12 +87,64 @@ void bw_hazard_before_eye(const struct bw_hazard *hazard, size_t emission, struc
 
 /* ---- ratio.c ----------------------------------------------------------------------------------- */
 
+/* ratio = P g / E_limit, of a term as it stands, anywhere between two distances at its largest */
+double bw_hazard_plain_term(const struct bw_hazard *hazard, size_t term, double near_m, double far_m);
 /* Largest sum over terms that add, of one emission alone or (BW_EMISSIONS_MAX) of all. NAN if any term is. */
 double bw_hazard_largest_sum(const struct bw_hazard *hazard, const double ratios[BW_TERMS_MAX], size_t only);
 void bw_hazard_combine(const struct bw_hazard *hazard, const double ratios[BW_TERMS_MAX], struct bw_ratio *ratio);
-/* Each term's largest ratio between two distances. */
-void bw_hazard_bounds(const struct bw_hazard *hazard, double near_m, double far_m, double ratios[BW_TERMS_MAX]);
-/* Distance of the last waist: beyond it every term falls. */
-double bw_hazard_last_waist_m(const struct bw_hazard *hazard, size_t only);
+/* Each term's largest ratio between two distances; of one emission alone the others are 0. */
+void bw_hazard_bounds(const struct bw_hazard *hazard, double near_m, double far_m, size_t only,
+                      double ratios[BW_TERMS_MAX]);
+/* From this distance on every term falls: beyond the last waist, and where all are points. */
+double bw_hazard_settled_m(const struct bw_hazard *hazard, size_t only);
+
+/* ---- groups.c: which emitters the eye sees together ---------------------------------------------- */
+
+/* The smallest subtense that any rule set tells from a point [rad]: alpha_min is 1.5 mrad in all of them. */
+static const double point_rad = 1.5e-3;
+/* What the eye looks at is never seen from nearer: it cannot focus there. */
+static const double nearest_view_m = 0.1;
+
+/* How windows turn into angles between two distances. */
+struct sight {
+    double near_m, far_m; /* from the exit */
+    double magnification; /* angles are those at the eye, behind its aid */
+    double clamp_low_rad,
+        clamp_rad; /* alpha_max that a side of a window counts up to: for the shortest time, for the longest */
+    double slack;  /* how much brighter another group has to be before it stands for one that is no smaller: 1 where the
+                      limit never falls as the source grows */
+};
+/* Emitters seen together. Of an oblong window which angle counts depends on the time, so it is known from low to high.
+ */
+struct group {
+    size_t emitters;
+    double low_rad[2], high_rad[2]; /* at near_m, at far_m */
+    double per_w;                   /* mean irradiance per watt of the emission, at its largest between the two */
+};
+enum { FRONT_MAX = 64 };
+struct front {
+    size_t count;
+    struct group groups[FRONT_MAX];
+};
+/* Groups of emitters that can be the worst: no other is as bright and as small. */
+void bw_hazard_front(const struct bw_beam *beam, const struct sight *sight, double aperture_m, struct front *front);
+/* All emitters together, as bright as they are anywhere across the head. */
+double bw_hazard_all_per_w(const struct bw_beam *beam, double near_m, double far_m, double aperture_m);
+/* The angle of the whole head at a distance; a long one's sides count up to clamp_rad. */
+double bw_hazard_whole_rad(const struct bw_beam *beam, double distance_m, double magnification, double clamp_rad);
+/* Where all of a beam's emitters together are a point [m]. */
+double bw_hazard_point_from_m(const struct bw_beam *beam, double magnification);
+
+/* ---- shaped.c ------------------------------------------------------------------------------------ */
+
+/* One term of a shaped hazard between two distances, at its largest. seen may be NULL.
+ * Returns: NAN if a limit cannot be had. */
+double bw_hazard_shaped_term(const struct bw_hazard *hazard, size_t term, double near_m, double far_m,
+                             struct bw_seen *seen, struct bw_error *error);
+
+/* ---- ladder.c ------------------------------------------------------------------------------------ */
+
+/* Before all has settled, outside the stand-off. */
+double bw_hazard_ladder_envelope(const struct bw_hazard *hazard, double distance_m);
 
 #endif

@@ -54,12 +54,11 @@ static void answer_one(const struct many *many, size_t place, double *nohd_m, do
                                                .continuous = true,
                                                .average_power_w = beams->powers_w[place],
                                                .peak_power_w = beams->powers_w[place]};
-    output.beams[0] = (struct bw_beam){BW_GAUSSIAN,
-                                       BW_HYPERBOLIC,
-                                       beams->diameters_m[place],
-                                       beams->divergences_rad[place],
-                                       0.,
-                                       beams->diameters_m[place]};
+    output.beams[0] = (struct bw_beam){.profile = BW_GAUSSIAN,
+                                       .spread = BW_HYPERBOLIC,
+                                       .diameter_m = beams->diameters_m[place],
+                                       .divergence_rad = beams->divergences_rad[place],
+                                       .exit_diameter_m = beams->diameters_m[place]};
     *nohd_m = *density = (double)NAN;
     if (bw_hazard_prepare(many->table, &output, &viewing, &hazard, NULL, NULL) != BW_OK ||
         bw_hazard_reach(&hazard, BW_EMISSIONS_MAX, &reach, NULL, NULL) != BW_OK)

@@ -62,8 +62,7 @@ static double close_in(struct search *search, struct bracket bracket) {
             break;
         double wide = bracket.unsafe_s / bracket.safe_s;
         try_time(search, &bracket,
-                 wide > 2. ? bracket.safe_s * sqrt(wide)
-                           : bracket.safe_s + (bracket.unsafe_s - bracket.safe_s) / 2.);
+                 wide > 2. ? bracket.safe_s * sqrt(wide) : bracket.safe_s + (bracket.unsafe_s - bracket.safe_s) / 2.);
         if (!(bracket.safe_s > safe_s || bracket.unsafe_s < unsafe_s))
             break; /* neighbouring numbers */
     }
@@ -142,8 +141,7 @@ static enum bw_status ratio_on_axis(double exposure_s, void *context, double *ra
     struct on_axis *at = context;
     struct bw_hazard hazard;
     at->viewing.exposure_s = exposure_s;
-    enum bw_status status =
-        bw_hazard_prepare(at->table, at->output, &at->viewing, &hazard, at->working, error);
+    enum bw_status status = bw_hazard_prepare(at->table, at->output, &at->viewing, &hazard, at->working, error);
     if (status == BW_OK)
         *ratio = bw_hazard_ratio(&hazard, at->distance_m);
     return status;
@@ -163,8 +161,7 @@ enum bw_status bw_hazard_permitted_time(const struct bw_table *table, const stru
     *time = (struct bw_permitted_time){nan(""), false};
     if (!(distance_m >= 0.))
         return bw_error_set(error, BW_ARGUMENT, "distance is %g m; it must be 0 or more", distance_m);
-    enum bw_status status =
-        bw_hazard_time_to_limit(table, &output, 1, viewing, ratio_on_axis, &at, time, error);
+    enum bw_status status = bw_hazard_time_to_limit(table, &output, 1, viewing, ratio_on_axis, &at, time, error);
     if (status != BW_OK || working == NULL)
         return status;
     double used_s = time->unbounded ? longest_s : fmax(time->exposure_s, shortest_s), ratio = nan("");

@@ -23,6 +23,6 @@ void bw_hazard_ratio_working(const struct bw_hazard *hazard, double distance_m, 
                         per_w, term->limit.irradiance_w_m2, emission->wavelength_nm,
                         bw_effect_name(term->limit.limit.effect));
     }
-    bw_working_step(working, "sum", bw_hazard_ratio(hazard, distance_m), "", NULL,
-                    "largest sum of the ratios that add", NULL);
+    bw_working_step(working, "sum", bw_hazard_ratio(hazard, distance_m), "", NULL, "largest sum of the ratios that add",
+                    NULL);
 }

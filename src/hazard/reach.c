@@ -11,13 +11,13 @@ struct search {
 
 static double ratio_at(const struct search *search, double distance_m) {
     double ratios[BW_TERMS_MAX];
-    bw_hazard_term_ratios(search->hazard, distance_m, ratios);
+    bw_hazard_bounds(search->hazard, distance_m, distance_m, search->only, ratios);
     return bw_hazard_largest_sum(search->hazard, ratios, search->only);
 }
 
 static double bound_between(const struct search *search, double near_m, double far_m) {
     double ratios[BW_TERMS_MAX];
-    bw_hazard_bounds(search->hazard, near_m, far_m, ratios);
+    bw_hazard_bounds(search->hazard, near_m, far_m, search->only, ratios);
     return bw_hazard_largest_sum(search->hazard, ratios, search->only);
 }
 
@@ -35,10 +35,10 @@ static double close_in(const struct search *search, double near_m, double far_m)
     }
 }
 
-/* Beyond the last waist the ratio only falls: doubles the distance until it is 1 or below.
+/* Where all has settled the ratio only falls: doubles the distance until it is 1 or below.
  * Returns: the crossing; infinite if it lies beyond every number */
-static double beyond_waist(const struct search *search, double waist_m) {
-    double near_m = waist_m, far_m = fmax(2. * waist_m, 1e-3);
+static double beyond_settled(const struct search *search, double settled_m) {
+    double near_m = settled_m, far_m = fmax(2. * settled_m, 1e-3);
     while (!(ratio_at(search, far_m) <= 1.)) {
         near_m = far_m;
         far_m *= 2.;
@@ -64,45 +64,71 @@ static bool last_above(struct search *search, double near_m, double far_m, int d
     return last_above(search, near_m, middle_m, depth - 1, distance_m);
 }
 
-enum { HALVINGS = 50, STRETCHES = 1000000 };
+enum { HALVINGS = 50, STRETCHES = 1000000, SHAPED_STRETCHES = 4000 };
 
 static struct bw_reach solve(struct search *search) {
-    double waist_m = bw_hazard_last_waist_m(search->hazard, search->only), distance_m = 0.;
-    double at_infinity = ratio_at(search, HUGE_VAL), at_waist = ratio_at(search, waist_m);
+    double from_m = search->hazard->output->stand_off_m, distance_m = 0.;
+    double settled_m = bw_hazard_settled_m(search->hazard, search->only);
+    double at_infinity = ratio_at(search, HUGE_VAL), at_settled = ratio_at(search, settled_m);
     /* What spreads is nothing at infinity; what is collimated stays. Down to exactly 1 from above never ends either. */
-    if (!(at_infinity < 1.) && !(at_waist <= 1.))
+    if (!(at_infinity < 1.) && !(at_settled <= 1.))
         return (struct bw_reach){HUGE_VAL, true};
-    if (!(at_waist <= 1.)) {
-        distance_m = beyond_waist(search, waist_m);
+    if (!(at_settled <= 1.)) {
+        distance_m = beyond_settled(search, settled_m);
         return (struct bw_reach){distance_m, !(distance_m < HUGE_VAL)};
     }
-    if (waist_m > 0.)
-        last_above(search, 0., waist_m, HALVINGS, &distance_m);
+    if (settled_m > from_m)
+        last_above(search, from_m, settled_m, HALVINGS, &distance_m);
     return (struct bw_reach){distance_m, false};
+}
+
+static void write_round(const struct bw_beam *beam, double distance_m, double aperture_m, double per_w,
+                        struct bw_working *working) {
+    bw_working_step(working, "d", bw_beam_diameter_m(beam, distance_m), "m", NULL,
+                    beam->spread == BW_LINEAR ? "a + phi |r - r0|" : "sqrt(a^2 + (phi (r - r0))^2)",
+                    "a = %.6g m, phi = %.6g rad, r = %.6g m, r0 = %.6g m", beam->diameter_m, beam->divergence_rad,
+                    distance_m, beam->waist_m);
+    bw_working_step(working, "E/P", per_w, "1/m2", NULL,
+                    beam->profile == BW_TOP_HAT ? "4 / (pi max(D, d)^2)" : "(1 - exp(-(D/d)^2)) / (pi D^2/4)",
+                    "D = %.6g m", aperture_m);
+}
+
+static void write_elliptical(const struct bw_beam *beam, double distance_m, double aperture_m, double per_w,
+                             struct bw_working *working) {
+    bw_working_step(working, "E/P", per_w, "1/m2", NULL,
+                    beam->profile == BW_TOP_HAT ? "common area of ellipse and aperture / their areas' product"
+                                                : "mean over the aperture of the elliptical Gaussian",
+                    "axes %.6g m and %.6g m, D = %.6g m", bw_beam_diameter_m(beam, distance_m),
+                    bw_beam_widest_m(beam, distance_m), aperture_m);
+}
+
+static void write_term(const struct bw_hazard *hazard, size_t index, double distance_m, struct bw_working *working) {
+    const struct bw_term *term = &hazard->terms[index];
+    const struct bw_emission *emission = &hazard->output->emissions[term->emission];
+    const struct bw_beam *beam = &hazard->output->beams[term->emission];
+    double per_w = bw_beam_irradiance_per_w(beam, distance_m, term->limit.aperture_m);
+    struct bw_seen seen;
+    if (bw_hazard_seen(hazard, index, distance_m, &seen, NULL) != BW_OK)
+        return; /* the ratio was had, so this is */
+    (beam->elliptical ? write_elliptical : write_round)(beam, distance_m, term->limit.aperture_m, per_w, working);
+    if (beam->cluster.count > 1) {
+        per_w = seen.ratio * seen.limit.irradiance_w_m2 / emission->average_power_w;
+        bw_working_step(working, "E/P", per_w, "1/m2", NULL, "of the emitters that are seen together",
+                        "%zu of %zu emitters", seen.emitters, beam->cluster.count);
+    }
+    if (hazard->shaped)
+        bw_working_step(working, "alpha", seen.subtense_rad, "rad", NULL, "2 atan(source / 2 r), sides averaged", NULL);
+    bw_working_step(working, "ratio", seen.ratio, "", NULL, "P (E/P) / E_limit",
+                    "%.6g W x %.6g 1/m2 / %.6g W/m2 (%g nm, %s)", emission->average_power_w, per_w,
+                    seen.limit.irradiance_w_m2, emission->wavelength_nm, bw_effect_name(term->limit.limit.effect));
 }
 
 static void write_working(const struct search *search, const struct bw_reach *reach, struct bw_working *working) {
     const struct bw_hazard *hazard = search->hazard;
     bw_working_heading(working, "Hazard distance");
-    for (size_t i = 0; i < hazard->term_count; i++) {
-        const struct bw_term *term = &hazard->terms[i];
-        const struct bw_emission *emission = &hazard->output->emissions[term->emission];
-        const struct bw_beam *beam = &hazard->output->beams[term->emission];
-        if (search->only != BW_EMISSIONS_MAX && search->only != term->emission)
-            continue;
-        double per_w = bw_beam_irradiance_per_w(beam, reach->distance_m, term->limit.aperture_m);
-        bw_working_step(working, "d", bw_beam_diameter_m(beam, reach->distance_m), "m", NULL,
-                        beam->spread == BW_LINEAR ? "a + phi |r - r0|" : "sqrt(a^2 + (phi (r - r0))^2)",
-                        "a = %.6g m, phi = %.6g rad, r = %.6g m, r0 = %.6g m", beam->diameter_m, beam->divergence_rad,
-                        reach->distance_m, beam->waist_m);
-        bw_working_step(working, "E/P", per_w, "1/m2", NULL,
-                        beam->profile == BW_TOP_HAT ? "4 / (pi max(D, d)^2)" : "(1 - exp(-(D/d)^2)) / (pi D^2/4)",
-                        "D = %.6g m", term->limit.aperture_m);
-        bw_working_step(working, "ratio", emission->average_power_w * per_w / term->limit.irradiance_w_m2, "", NULL,
-                        "P (E/P) / E_limit", "%.6g W x %.6g 1/m2 / %.6g W/m2 (%g nm, %s)", emission->average_power_w,
-                        per_w, term->limit.irradiance_w_m2, emission->wavelength_nm,
-                        bw_effect_name(term->limit.limit.effect));
-    }
+    for (size_t i = 0; i < hazard->term_count; i++)
+        if (search->only == BW_EMISSIONS_MAX || search->only == hazard->terms[i].emission)
+            write_term(hazard, i, reach->distance_m, working);
     bw_working_step(working, "sum", ratio_at(search, reach->distance_m), "", NULL, "largest sum of the ratios that add",
                     NULL);
     bw_working_step(working, "r", reach->distance_m, "m", NULL,
@@ -114,12 +140,15 @@ static void write_working(const struct search *search, const struct bw_reach *re
  * Returned: reach    the farthest place with a ratio above 1, 0 if there is none (Notes)
  *           working  may be NULL
  * Returns:  BW_OK; BW_ARGUMENT if nothing was prepared or a ratio is not a number
- * Notes:    1) Beyond the last waist the ratio falls; whether it ever falls to 1 is decided at infinity.
- *           2) Before it the ratio of several beams may rise and fall; stretches are discarded only by a bound.
+ * Notes:    1) Beyond the last waist, and where all sources are points, the ratio falls; whether it ever falls to 1 is
+ *              decided at infinity.
+ *           2) Before that the ratio may rise and fall; stretches are discarded only by a bound. Where the search
+ *              becomes too long, its last stretch counts whole: farther, never nearer.
+ *           3) Nobody is inside the stand-off: 0 if nothing outside it is above 1.
  * Tests:    test_hazard.c, closed forms */
 enum bw_status bw_hazard_reach(const struct bw_hazard *hazard, size_t only, struct bw_reach *reach,
                                struct bw_working *working, struct bw_error *error) {
-    struct search search = {hazard, only, STRETCHES};
+    struct search search = {hazard, only, hazard->shaped ? SHAPED_STRETCHES : STRETCHES};
     *reach = (struct bw_reach){nan(""), false};
     if (!(only == BW_EMISSIONS_MAX || only < hazard->output->count) || hazard->term_count == 0)
         return bw_error_set(error, BW_ARGUMENT, "no such emission, or the hazard was not prepared");

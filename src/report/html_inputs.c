@@ -32,6 +32,26 @@ static void emissions(struct bw_text *out, const struct bw_result *result) {
     html_table_end(out);
 }
 
+/* Profile and spread, and what is not a round beam from one point. */
+static void add_shape(struct bw_text *out, const struct bw_beam *beam, double stand_off_m) {
+    char words[REPORT_QUANTITY_SIZE];
+    bw_text_add(out, "%s, %s", beam->profile == BW_TOP_HAT ? "top hat" : "Gaussian",
+                beam->spread == BW_LINEAR ? "linear" : "hyperbolic");
+    if (beam->elliptical) {
+        bw_text_add(out, "; y axis: exit %s mm", report_plain(words, 1e3 * beam->exit_diameter_y_m));
+        bw_text_add(out, ", waist %s mm", report_plain(words, 1e3 * beam->diameter_y_m));
+        bw_text_add(out, ", %s mrad", report_plain(words, 1e3 * beam->divergence_y_rad));
+    }
+    if (beam->source_m > 0.) {
+        bw_text_add(out, "; apparent source %s mm", report_plain(words, 1e3 * beam->source_m));
+        bw_text_add(out, ", %s m behind the exit", report_plain(words, beam->source_behind_m));
+    }
+    if (beam->cluster.count > 1)
+        bw_text_add(out, "; %zu emitters", beam->cluster.count);
+    if (stand_off_m > 0.)
+        bw_text_add(out, "; stand-off %s m", report_plain(words, stand_off_m));
+}
+
 static void beam(struct bw_text *out, const struct bw_laser *laser, const struct bw_handpiece *piece, size_t index) {
     const struct bw_beam *beam = &piece->output.beams[index];
     char words[REPORT_QUANTITY_SIZE];
@@ -43,8 +63,11 @@ static void beam(struct bw_text *out, const struct bw_laser *laser, const struct
     html_cell(out, "n", "%s", report_plain(words, 1e3 * beam->diameter_m));
     html_cell(out, "n", "%s", report_plain(words, beam->waist_m));
     html_cell(out, "n", "%s", report_plain(words, 1e3 * beam->divergence_rad));
-    html_cell(out, NULL, "%s, %s", beam->profile == BW_TOP_HAT ? "top hat" : "Gaussian",
-              beam->spread == BW_LINEAR ? "linear" : "hyperbolic");
+    struct bw_text shape = {0};
+    add_shape(&shape, beam, piece->output.stand_off_m);
+    html_cell(out, NULL, "%s", shape.data ? shape.data : "");
+    out->failed = out->failed || shape.failed;
+    bw_text_free(&shape);
     html_row_end(out);
 }
 

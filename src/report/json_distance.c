@@ -26,6 +26,8 @@ static void emission(struct json *json, const struct bw_emission *emission, cons
     json_string(json, "clause", result->limit.limit.source.clause);
     json_string(json, "known", report_known(result->limit.limit.source.known));
     json_number(json, "aperture_mm", 1e3 * result->limit.limit.aperture_m);
+    json_number(json, "subtense_mrad", 1e3 * result->subtense_rad);
+    json_number(json, "emitters_seen", (double)result->emitters);
     json_end(json);
 }
 
@@ -57,6 +59,8 @@ static void beam(struct json *json, const struct bw_result *result, const struct
     json_string(json, "rule", bw_train_rule_name(distance->governing.rule));
     json_end(json);
     json_number(json, "worst_m", distance->worst_m);
+    json_number(json, "stand_off_m", distance->nearest_m);
+    json_number(json, "subtense_mrad", 1e3 * distance->subtense_rad);
     json_number(json, "skin_ratio_at_exit", distance->skin_ratio_at_exit);
     json_bool(json, "exposure_given", distance->exposure_given);
     json_number(json, "skin_exposure_s", distance->skin_time.exposure_s);

@@ -37,6 +37,33 @@ static void emissions(struct bw_text *out, const struct bw_result *result, const
     table_print(&table, out, 2);
 }
 
+enum { PLACE_SIZE = 80 };
+
+static void worst_place(char out[PLACE_SIZE], const struct bw_output *output,
+                        const struct bw_distance_result *distance) {
+    char metres[REPORT_QUANTITY_SIZE];
+    const char *what = "";
+    for (size_t i = 0; i < output->count; i++)
+        if (distance->worst_m > distance->nearest_m && output->beams[i].waist_m >= distance->worst_m &&
+            output->beams[i].waist_m <= distance->worst_m)
+            what = ", its waist";
+    if (distance->worst_m <= distance->nearest_m)
+        what = ", the end of its stand-off";
+    if (distance->worst_m > 0.)
+        snprintf(out, PLACE_SIZE, "%s m from the exit%s", report_plain(metres, distance->worst_m), what);
+    else
+        snprintf(out, PLACE_SIZE, "the exit");
+}
+
+/* Only where there is more to see than a point. */
+static void source_line(struct bw_text *out, const struct bw_distance_result *distance) {
+    char number[BW_NUMBER_SIZE];
+    if (distance->direct->shaped)
+        text_wrapf(out, "  source seen          ", "%s mrad wide at %s; up to 1.5 mrad it counts as a point",
+                   bw_format(number, 1e3 * distance->subtense_rad, 3, BW_DOWN),
+                   distance->nohd.distance_m > 0. ? "the NOHD" : "the exit");
+}
+
 static void handpiece(struct bw_text *out, const struct bw_result *result, const struct bw_distance_result *distance) {
     const struct bw_laser *laser = report_laser(result, distance->laser);
     const struct bw_handpiece *piece = report_handpiece(result, distance->laser, distance->handpiece);
@@ -48,9 +75,8 @@ static void handpiece(struct bw_text *out, const struct bw_result *result, const
     line(out, "  skin                 ", &distance->skin, "skin", result, distance, &distance->skin_time);
     line(out, "  diffuse reflection   ", &distance->diffuse, "diffuse viewing", result, distance,
          &distance->diffuse_time);
-    char place[80] = "the exit";
-    if (distance->worst_m > 0.)
-        snprintf(place, sizeof place, "%s m from the exit, its waist", report_plain(wavelength, distance->worst_m));
+    char place[PLACE_SIZE];
+    worst_place(place, &piece->output, distance);
     text_wrapf(out, "  at its worst         ", "%s times the eye limit, at %s",
                report_ratio(ratio, distance->ratio_at_exit), place);
     text_wrapf(out, "  governed by          ", "%s nm, %s, rule: %s; row %s, %s (%s)",
@@ -58,6 +84,7 @@ static void handpiece(struct bw_text *out, const struct bw_result *result, const
                bw_effect_name(governing->limit.effect), bw_train_rule_name(governing->rule),
                governing->limit.source.row, governing->limit.source.clause,
                report_known_words(governing->limit.source.known));
+    source_line(out, distance);
     text_handpiece_more(out, result, distance);
     bw_text_add(out, "\n");
     emissions(out, result, distance);

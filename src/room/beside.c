@@ -25,10 +25,10 @@ static size_t angle_bin(double angle_rad) {
 }
 
 double bw_room_exit_radius_m(const struct bw_output *output) {
-    double diameter_m = 0;
+    double radius_m = 0;
     for (size_t i = 0; i < output->count; i++)
-        diameter_m = fmax(diameter_m, output->beams[i].exit_diameter_m);
-    return diameter_m / 2;
+        radius_m = fmax(radius_m, bw_beam_exit_radius_m(&output->beams[i]));
+    return radius_m;
 }
 
 static double last_waist_m(const struct bw_hazard *hazard) {
@@ -65,6 +65,8 @@ static double bin_bound(const struct bw_hazard *hazard, const struct curve *leng
     double near_m = fmax(0, low_m * cos(high_rad)), far_m = high_m * cos(low_rad);
     double ratio =
         fmax(bw_hazard_ratio_off_axis(hazard, near_m, offset_m), bw_hazard_ratio_off_axis(hazard, far_m, offset_m));
+    if (hazard->shaped) /* the axis is an envelope there; within a bin no beam falls by a tenth */
+        return fmin(ratio * 1.1, axis[i]);
     double fall = bw_hazard_ratio(hazard, near_m) / bw_hazard_ratio(hazard, far_m);
     return fmin(ratio * fmax(fall, 1.01), axis[i]);
 }
@@ -110,8 +112,8 @@ double bw_room_beside_power(const struct bw_output *output, double length_m, dou
     for (size_t i = 0; i < output->count; i++)
         for (int k = 0; k < 2; k++) {
             double at_m = k == 0 ? length_m : 1e3 * (length_m + output->beams[i].waist_m);
-            double offset_m = fmax(0, at_m * sin(angle_rad) - output->beams[i].exit_diameter_m / 2);
-            double diameter_m = bw_beam_diameter_m(&output->beams[i], at_m * cos(angle_rad));
+            double offset_m = fmax(0, at_m * sin(angle_rad) - bw_beam_exit_radius_m(&output->beams[i]));
+            double diameter_m = bw_beam_widest_m(&output->beams[i], at_m * cos(angle_rad));
             double wide = diameter_m > 0 ? 2 * offset_m / diameter_m : HUGE_VAL;
             double share = output->beams[i].profile == BW_TOP_HAT ? (wide > 1 ? 0 : 1) : erfc(wide) / 2;
             largest = fmax(largest, share);

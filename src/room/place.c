@@ -109,7 +109,7 @@ enum bw_status bw_room_at(const struct bw_room *room, const struct bw_room_sourc
 
 struct terms {
     const struct bw_hazard *hazard;
-    struct bw_hazard *one; /* with a single term */
+    struct bw_hazard *one; /* each term by itself */
     struct target target;
     struct precision precision;
     double *ratios;
@@ -151,6 +151,19 @@ static enum bw_status take_diffuse(struct scene *scene, const struct image *imag
     return status;
 }
 
+/* Hazards of one term each. Returns: NULL when memory is short. */
+static struct bw_hazard *single_terms(const struct bw_hazard *hazard) {
+    struct bw_hazard *one = malloc((hazard->term_count + 1) * sizeof *one);
+    for (size_t i = 0; one != NULL && i < hazard->term_count; i++) {
+        one[i] = *hazard;
+        one[i].term_count = 1;
+        one[i].terms[0] = hazard->terms[i];
+        one[i].adds[0][0] = true;
+        bw_hazard_prepare_envelope(&one[i]);
+    }
+    return one;
+}
+
 static enum bw_status take_terms(struct scene *scene, const struct image *image, const struct light *light,
                                  void *context) {
     struct terms *terms = context;
@@ -158,11 +171,7 @@ static enum bw_status take_terms(struct scene *scene, const struct image *image,
         return take_diffuse(scene, image, light, terms);
     for (size_t i = 0; i < terms->hazard->term_count; i++) {
         struct light alone = *light;
-        *terms->one = *terms->hazard;
-        terms->one->term_count = 1;
-        terms->one->terms[0] = terms->hazard->terms[i];
-        terms->one->adds[0][0] = true;
-        alone.hazard = terms->one;
+        alone.hazard = &terms->one[i];
         alone.curve = NULL;
         alone.exact = true;
         take_one(scene, image, &alone, terms, &terms->ratios[i]);
@@ -195,7 +204,7 @@ enum bw_status bw_room_terms_at(const struct bw_room *room, const struct bw_room
         return status;
     double ratios[BW_TERMS_MAX] = {0};
     struct scene scene;
-    struct terms terms = {source->direct, malloc(sizeof *terms.one), point_target(at), bw_room_point_precision(),
+    struct terms terms = {source->direct, single_terms(source->direct), point_target(at), bw_room_point_precision(),
                           ratios};
     struct receiver receiver = {wants_terms, take_terms, &terms};
     status = bw_room_scene_init(&scene, room, source, 1, false, error);

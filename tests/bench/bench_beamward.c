@@ -118,7 +118,8 @@ static void set_output(struct bw_output *output, size_t count, int pulsed) {
             input.repetition_rate_hz = 1e4;
         }
         bw_emission_resolve(&input, &output->emissions[i], NULL);
-        output->beams[i] = (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, 3e-3, 0.1 + 0.01 * (double)i, 0, 3e-3};
+        output->beams[i] = (struct bw_beam){.profile = BW_GAUSSIAN, .spread = BW_HYPERBOLIC, .diameter_m = 3e-3,
+                                            .divergence_rad = 0.1 + 0.01 * (double)i, .exit_diameter_m = 3e-3};
     }
 }
 

@@ -12,6 +12,8 @@
 
 #include <beamward/hazard.h>
 
+#include "round_beam.h"
+
 #define COUNT(array) (sizeof(array) / sizeof *(array))
 #define NONE         ((double)NAN)
 
@@ -39,11 +41,12 @@ static struct bw_emission emission_of(double wavelength_nm, double power_w, doub
 /* One continuous emission against a given irradiance, peak irradiance without aperture. */
 static void given_limit(struct bw_hazard *hazard, struct bw_output *output, double power_w, struct bw_beam beam,
                         double limit_w_m2) {
-    output->count = 1;
+    *output = (struct bw_output){.count = 1};
     output->emissions[0] = emission_of(1064., power_w, NONE, NONE, NONE);
     output->beams[0] = beam;
     hazard->table = NULL;
     hazard->output = output;
+    hazard->shaped = false;
     hazard->term_count = 1;
     hazard->terms[0] = (struct bw_term){.emission = 0};
     hazard->terms[0].limit.irradiance_w_m2 = limit_w_m2;
@@ -72,7 +75,7 @@ static struct distance_case {
 
 static void test_distance(void **state) {
     const struct distance_case *c = *state;
-    struct bw_beam beam = {BW_GAUSSIAN, BW_LINEAR, c->exit_m, c->divergence_rad, 0., c->exit_m};
+    struct bw_beam beam = ROUND(BW_GAUSSIAN, BW_LINEAR, c->exit_m, c->divergence_rad, 0., c->exit_m);
     if (c->focal_m > 0.)
         beam = bw_beam_from_lens(c->focal_m, c->at_lens_m, c->divergence_rad, BW_GAUSSIAN);
     struct bw_hazard hazard;
@@ -103,7 +106,7 @@ static void test_diffuse(void **state) {
     struct bw_viewing_case viewing = {BW_EYE, 100., 0., 0.};
     struct bw_ratio ratio;
     output.emissions[0] = emission_of(c->wavelength_nm, c->power_w, NONE, NONE, NONE);
-    output.beams[0] = (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, 1e-6, 0., 0., 1e-6};
+    output.beams[0] = (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 1e-6, 0., 0., 1e-6);
     assert_int_equal(bw_hazard_prepare(bw_tables_find("eu-2006-25"), &output, &viewing, &hazard, NULL, NULL), BW_OK);
     assert_int_equal(bw_hazard_diffuse_ratio(&hazard, &spot, c->printed_m, &ratio, NULL), BW_OK);
     double irradiance_w_m2 = ratio.total * hazard.terms[ratio.governing].limit.irradiance_w_m2;
@@ -132,7 +135,7 @@ static void test_density(void **state) {
     struct bw_viewing_case viewing = {BW_EYE, c->exposure_s, 0., 0.};
     double ratios[BW_TERMS_MAX], od[BW_EMISSIONS_MAX];
     output.emissions[0] = emission_of(c->wavelength_nm, c->power_w, c->energy_j, c->duration_s, c->rate_hz);
-    output.beams[0] = (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, 1e-3, 1e-3, 0., 1e-3};
+    output.beams[0] = (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 1e-3, 1e-3, 0., 1e-3);
     assert_int_equal(bw_hazard_prepare(bw_tables_find("eu-2006-25"), &output, &viewing, &hazard, NULL, NULL), BW_OK);
     bw_hazard_term_ratios(&hazard, 0., ratios);
     bw_hazard_optical_density(&hazard, ratios, od);

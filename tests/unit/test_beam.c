@@ -13,6 +13,8 @@
 
 #include <beamward/beam.h>
 
+#include "round_beam.h"
+
 #define COUNT(array) (sizeof(array) / sizeof *(array))
 #define NONE         ((double)NAN)
 
@@ -283,7 +285,7 @@ static void test_definition(void **state) {
     const struct definition_case *c = *state;
     near(bw_diameter_from_d63(3e-3, c->definition), 3e-3 * c->in_d63, 1e-15, "from d63");
     near(bw_diameter_to_d63(bw_diameter_from_d63(3e-3, c->definition), c->definition), 3e-3, 1e-15, "round trip");
-    struct bw_beam beam = {BW_GAUSSIAN, BW_HYPERBOLIC, 3e-3, 0., 0., 3e-3};
+    struct bw_beam beam = ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 3e-3, 0., 0., 3e-3);
     near(bw_beam_fraction(&beam, 0., bw_diameter_from_d63(3e-3, c->definition)), c->share, 1e-14, "share inside");
 }
 
@@ -317,14 +319,14 @@ static struct width_case {
     struct bw_beam beam;
     double distance_m, want_m;
 } widths[] = {
-    {"width: hyperbolic 3-4-5", {BW_GAUSSIAN, BW_HYPERBOLIC, 3e-3, 4e-3, 0., 3e-3}, 1., 5e-3},
-    {"width: linear 3+4", {BW_GAUSSIAN, BW_LINEAR, 3e-3, 4e-3, 0., 3e-3}, 1., 7e-3},
-    {"width: collimated", {BW_GAUSSIAN, BW_HYPERBOLIC, 3e-3, 0., 0., 3e-3}, 1e300, 3e-3},
-    {"width: collimated for ever", {BW_TOP_HAT, BW_LINEAR, 3e-3, 0., 0., 3e-3}, HUGE_VAL, 3e-3},
-    {"width: far enough to overflow a square", {BW_GAUSSIAN, BW_HYPERBOLIC, 3e-3, 1e-3, 0., 3e-3}, 1e200, 1e197},
-    {"width: for ever", {BW_GAUSSIAN, BW_HYPERBOLIC, 3e-3, 1e-3, 0., 3e-3}, HUGE_VAL, HUGE_VAL},
-    {"width: linear, before the waist", {BW_GAUSSIAN, BW_LINEAR, 1e-3, 1e-2, 1., 20e-3}, .5, 6e-3},
-    {"width: never wider than the exit", {BW_GAUSSIAN, BW_LINEAR, 1e-3, 1e-2, 1., 10e-3}, 0., 10e-3},
+    {"width: hyperbolic 3-4-5", ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 3e-3, 4e-3, 0., 3e-3), 1., 5e-3},
+    {"width: linear 3+4", ROUND(BW_GAUSSIAN, BW_LINEAR, 3e-3, 4e-3, 0., 3e-3), 1., 7e-3},
+    {"width: collimated", ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 3e-3, 0., 0., 3e-3), 1e300, 3e-3},
+    {"width: collimated for ever", ROUND(BW_TOP_HAT, BW_LINEAR, 3e-3, 0., 0., 3e-3), HUGE_VAL, 3e-3},
+    {"width: far enough to overflow a square", ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 3e-3, 1e-3, 0., 3e-3), 1e200, 1e197},
+    {"width: for ever", ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 3e-3, 1e-3, 0., 3e-3), HUGE_VAL, HUGE_VAL},
+    {"width: linear, before the waist", ROUND(BW_GAUSSIAN, BW_LINEAR, 1e-3, 1e-2, 1., 20e-3), .5, 6e-3},
+    {"width: never wider than the exit", ROUND(BW_GAUSSIAN, BW_LINEAR, 1e-3, 1e-2, 1., 10e-3), 0., 10e-3},
 };
 
 static void test_width(void **state) {
@@ -377,7 +379,7 @@ static struct aperture_case {
 
 static void test_aperture(void **state) {
     const struct aperture_case *c = *state;
-    struct bw_beam beam = {BW_GAUSSIAN, BW_HYPERBOLIC, c->width_m, 0., 0., c->width_m};
+    struct bw_beam beam = ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, c->width_m, 0., 0., c->width_m);
     double share = quadrature(c->width_m, c->aperture_m, 0.), area_m2 = bw_pi * c->aperture_m * c->aperture_m / 4.;
     near(bw_beam_fraction(&beam, 0., c->aperture_m), share, 1e-10, "share against quadrature");
     near(bw_beam_irradiance_per_w(&beam, 0., c->aperture_m), share / area_m2, 1e-10, "mean against quadrature");
@@ -396,7 +398,7 @@ static void test_aperture(void **state) {
 
 static void test_top_hat(void **state) {
     (void)state;
-    struct bw_beam beam = {BW_TOP_HAT, BW_LINEAR, 10e-3, 0., 0., 10e-3};
+    struct bw_beam beam = ROUND(BW_TOP_HAT, BW_LINEAR, 10e-3, 0., 0., 10e-3);
     double full = 4. / (bw_pi * 1e-4);
     near(bw_beam_irradiance_per_w(&beam, 0., 0.), full, 1e-14, "peak");
     near(bw_beam_irradiance_per_w(&beam, 0., 7e-3), full, 1e-14, "aperture inside");
@@ -411,7 +413,7 @@ static void test_top_hat(void **state) {
  * (D/d)^2 / 2. */
 static void test_profiles_agree(void **state) {
     (void)state;
-    struct bw_beam gaussian = {BW_GAUSSIAN, BW_HYPERBOLIC, 5e-3, 2e-3, 0., 5e-3}, top_hat = gaussian;
+    struct bw_beam gaussian = ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 5e-3, 2e-3, 0., 5e-3), top_hat = gaussian;
     top_hat.profile = BW_TOP_HAT;
     for (double r = 10.; r < 1e7; r *= 3.) {
         double x = pow(7e-3 / bw_beam_diameter_m(&gaussian, r), 2.);
@@ -424,7 +426,7 @@ static void test_falls_with_distance(void **state) {
     (void)state;
     for (int profile = BW_GAUSSIAN; profile <= BW_TOP_HAT; profile++)
         for (int spread = BW_HYPERBOLIC; spread <= BW_LINEAR; spread++) {
-            struct bw_beam beam = {(enum bw_profile)profile, (enum bw_spread)spread, 1e-3, .1, .05, 6e-3};
+            struct bw_beam beam = ROUND((enum bw_profile)profile, (enum bw_spread)spread, 1e-3, .1, .05, 6e-3);
             double last = HUGE_VAL;
             for (double r = .05; r < 1e6; r *= 1.05) {
                 double e = bw_beam_irradiance_per_w(&beam, r, 7e-3);
@@ -437,7 +439,7 @@ static void test_falls_with_distance(void **state) {
 
 static void test_geometry_bad_arguments(void **state) {
     (void)state;
-    struct bw_beam beam = {BW_GAUSSIAN, BW_HYPERBOLIC, 1e-3, 1e-3, 0., 1e-3};
+    struct bw_beam beam = ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 1e-3, 1e-3, 0., 1e-3);
     static const double bad[] = {NONE, -1.};
     for (size_t i = 0; i < COUNT(bad); i++) {
         assert_true(isnan(bw_beam_diameter_m(&beam, bad[i])));
@@ -447,7 +449,7 @@ static void test_geometry_bad_arguments(void **state) {
         assert_true(isnan(bw_beam_irradiance_off_axis_per_w(&beam, 1., 7e-3, bad[i])));
     }
     near(bw_beam_irradiance_per_w(&beam, HUGE_VAL, 7e-3), 0., 0., "nothing arrives at infinity");
-    struct bw_beam point = {BW_GAUSSIAN, BW_HYPERBOLIC, 0., 1e-3, 0., 0.};
+    struct bw_beam point = ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 0., 1e-3, 0., 0.);
     near(bw_beam_irradiance_per_w(&point, 0., 7e-3), 4. / (bw_pi * 49e-6), 1e-14, "a focus without width");
     assert_true(isinf(bw_beam_irradiance_per_w(&point, 0., 0.)));
     struct bw_beam unknown = beam;

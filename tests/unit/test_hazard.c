@@ -11,6 +11,8 @@
 
 #include <beamward/hazard.h>
 
+#include "round_beam.h"
+
 #define COUNT(array) (sizeof(array) / sizeof *(array))
 #define NONE         ((double)NAN)
 #define ALL          ((size_t)BW_EMISSIONS_MAX)
@@ -87,7 +89,7 @@ static void test_form(void **state) {
     struct bw_output output = {.count = 0};
     struct bw_hazard hazard;
     add_beam(&output, c->wavelength_nm, c->power_w,
-             (struct bw_beam){c->profile, c->spread, c->exit_m, c->divergence_rad, 0., c->exit_m});
+             (struct bw_beam)ROUND(c->profile, c->spread, c->exit_m, c->divergence_rad, 0., c->exit_m));
     prepare(&hazard, &output, c->target, c->exposure_s);
     struct bw_ratio detail;
     bw_hazard_ratio_detail(&hazard, 0., &detail);
@@ -117,7 +119,7 @@ static void test_end(void **state) {
     struct bw_output output = {.count = 0};
     struct bw_hazard hazard;
     add_beam(&output, 633., c->power_w,
-             (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, 2e-3, c->divergence_rad, 0., 2e-3});
+             (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 2e-3, c->divergence_rad, 0., 2e-3));
     prepare(&hazard, &output, BW_EYE, .25);
     double got_m = reach_of(&hazard, ALL);
     assert_true(isinf(c->want_m) ? isinf(got_m) : !(got_m > 0.));
@@ -128,8 +130,8 @@ static void test_collimated_with_spreading(void **state) {
     (void)state;
     struct bw_output output = {.count = 0};
     struct bw_hazard hazard;
-    add_beam(&output, 633., 9e-4, (struct bw_beam){BW_TOP_HAT, BW_HYPERBOLIC, 2e-3, 0., 0., 2e-3});
-    add_beam(&output, 810., 1., (struct bw_beam){BW_TOP_HAT, BW_HYPERBOLIC, 2e-3, .1, 0., 2e-3});
+    add_beam(&output, 633., 9e-4, (struct bw_beam)ROUND(BW_TOP_HAT, BW_HYPERBOLIC, 2e-3, 0., 0., 2e-3));
+    add_beam(&output, 810., 1., (struct bw_beam)ROUND(BW_TOP_HAT, BW_HYPERBOLIC, 2e-3, .1, 0., 2e-3));
     prepare(&hazard, &output, BW_EYE, .25);
     double steady = bw_hazard_ratio(&hazard, HUGE_VAL);
     near(steady, 9e-4 / (bw_pi * 49e-6 / 4.) / (18. * pow(.25, -.25)), 1e-12, "what stays");
@@ -143,7 +145,7 @@ static void test_collimated_with_spreading(void **state) {
 
 static void random_output(struct bw_output *output, uint64_t *random) {
     static const double wavelengths_nm[] = {532., 650., 810., 980., 1064.};
-    output->count = 0;
+    *output = (struct bw_output){.count = 0};
     size_t count = 2 + (size_t)(3. * uniform(random));
     for (size_t i = 0; i < count; i++) {
         struct bw_beam beam = bw_beam_from_lens(.02 + uniform(random), 5e-3 + 20e-3 * uniform(random),
@@ -259,7 +261,7 @@ static struct sum_case {
 
 static void test_sum(void **state) {
     const struct sum_case *c = *state;
-    struct bw_beam beam = {BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, 10e-3, 0., 10e-3};
+    struct bw_beam beam = ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, 10e-3, 0., 10e-3);
     struct bw_output both = {.count = 0}, first = {.count = 0}, second = {.count = 0};
     struct bw_hazard hazard;
     add_beam(&both, c->first_nm, .1, beam);
@@ -286,7 +288,7 @@ static void test_sum(void **state) {
  * too, and there adds to 1550 nm. */
 static void test_tissues(void **state) {
     (void)state;
-    struct bw_beam beam = {BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, 10e-3, 0., 10e-3};
+    struct bw_beam beam = ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, 10e-3, 0., 10e-3);
     struct bw_output output = {.count = 0};
     struct bw_hazard hazard;
     add_beam(&output, 450., 1e-3, beam);
@@ -325,7 +327,7 @@ static struct share_case {
 
 static void test_share(void **state) {
     const struct share_case *c = *state;
-    struct bw_beam beam = {BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, 10e-3, 0., 10e-3};
+    struct bw_beam beam = ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, 10e-3, 0., 10e-3);
     struct bw_output output = {.count = 0};
     struct bw_hazard hazard;
     for (int i = 0; i < 3; i++)
@@ -369,7 +371,7 @@ static void test_density_bad_ratio(void **state) {
     struct bw_output output = {.count = 0};
     struct bw_hazard hazard;
     double ratios[BW_TERMS_MAX] = {NONE}, od[BW_EMISSIONS_MAX];
-    add_beam(&output, 810., 1., (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, 10e-3, 0., 10e-3});
+    add_beam(&output, 810., 1., (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, 10e-3, 0., 10e-3));
     prepare(&hazard, &output, BW_EYE, 10.);
     bw_hazard_optical_density(&hazard, ratios, od);
     assert_true(isnan(od[0]));
@@ -405,7 +407,7 @@ static void test_diffuse(void **state) {
     struct bw_reach reach;
     struct bw_ratio ratio;
     add_beam(&output, c->wavelength_nm, c->power_w,
-             (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, c->spot_m, 0., 0., c->spot_m});
+             (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, c->spot_m, 0., 0., c->spot_m));
     prepare(&hazard, &output, BW_EYE, c->exposure_s);
     assert_int_equal(bw_hazard_spot(&output, 1., c->reflectance, &spot), BW_OK);
     near(spot.diameter_m[0], c->spot_m, 0., "spot");
@@ -430,7 +432,7 @@ static void test_diffuse_step(void **state) {
     struct bw_spot spot;
     struct bw_reach reach;
     struct bw_ratio ratio;
-    add_train(&output, 650., 1100. / .6, .2, 3., (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, .1, 0., 0., .1});
+    add_train(&output, 650., 1100. / .6, .2, 3., (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, .1, 0., 0., .1));
     prepare(&hazard, &output, BW_EYE, 100.);
     assert_int_equal(bw_hazard_spot(&output, 0., 1., &spot), BW_OK);
     assert_int_equal(bw_hazard_diffuse_ratio(&hazard, &spot, .1 / 2. / tan(.0501), &ratio, NULL), BW_OK);
@@ -452,7 +454,7 @@ static void test_diffuse_scan(void **state) {
         struct bw_ratio ratio;
         for (int j = 0; j < 1 + i % 2; j++) {
             double d = pow(10., -4. + 3. * uniform(&random));
-            struct bw_beam beam = {BW_GAUSSIAN, BW_HYPERBOLIC, d, 0., 0., d};
+            struct bw_beam beam = ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, d, 0., 0., d);
             if (uniform(&random) < .7)
                 add_train(&output, 700. + 400. * uniform(&random), pow(10., 2. + 5. * uniform(&random)),
                           pow(10., -8. + 4. * uniform(&random)), 10. + 5e3 * uniform(&random), beam);
@@ -481,7 +483,7 @@ static void test_diffuse_at_contact(void **state) {
     struct bw_hazard hazard;
     struct bw_spot spot;
     struct bw_ratio contact, near_by;
-    add_beam(&output, 10600., 1., (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, 20e-3, 0., 0., 20e-3});
+    add_beam(&output, 10600., 1., (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 20e-3, 0., 0., 20e-3));
     prepare(&hazard, &output, BW_SKIN, 100.);
     assert_int_equal(bw_hazard_spot(&output, 0., .5, &spot), BW_OK);
     assert_int_equal(bw_hazard_diffuse_ratio(&hazard, &spot, 0., &contact, NULL), BW_OK);
@@ -524,7 +526,7 @@ static void test_time(void **state) {
     struct bw_viewing_case viewing = {c->target, NONE, 0., 0.};
     struct bw_error error = {.status = BW_OK};
     add_beam(&output, c->wavelength_nm, c->irradiance_w_m2 * bw_pi / 400., /* a top hat of 10 cm */
-             (struct bw_beam){BW_TOP_HAT, BW_HYPERBOLIC, .1, 0., 0., .1});
+             (struct bw_beam)ROUND(BW_TOP_HAT, BW_HYPERBOLIC, .1, 0., 0., .1));
     if (bw_hazard_permitted_time(bw_tables_find("icnirp-2013"), &output, &viewing, 5., &time, NULL, &error) != BW_OK)
         fail_msg("%s", error.text);
     assert_true(time.unbounded == (isinf(c->want_s) != 0));
@@ -543,7 +545,7 @@ static void test_time_scan(void **state) {
         struct bw_output output = {.count = 0};
         struct bw_permitted_time time;
         struct bw_hazard hazard;
-        struct bw_beam beam = {BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, .1, 0., 10e-3};
+        struct bw_beam beam = ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, .1, 0., 10e-3);
         struct bw_viewing_case viewing = {BW_EYE, 1., i % 2 ? 0. : .05 * uniform(&random), 0.};
         add_beam(&output, 500. + 800. * uniform(&random), pow(10., -2. + 3. * uniform(&random)), beam);
         add_train(&output, 905., pow(10., 1. + uniform(&random)), 150e-9, pow(10., 4. * uniform(&random)), beam);
@@ -583,7 +585,7 @@ static void test_bad_input(void **state) {
     assert_int_equal(bw_hazard_prepare(table, &output, &viewing, &hazard, NULL, NULL), BW_ARGUMENT);
     assert_true(isnan(bw_hazard_ratio(&hazard, 1.)));
     assert_int_equal(bw_hazard_reach(&hazard, ALL, &reach, NULL, NULL), BW_ARGUMENT);
-    add_beam(&output, 810., 1., (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, 10e-3, 0., 10e-3});
+    add_beam(&output, 810., 1., (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, 10e-3, 0., 10e-3));
     add_beam(&output, 1550., 1., output.beams[0]);
     strcpy(output.emissions[1].name, "deep");
     assert_int_equal(bw_hazard_prepare(table, &output, &viewing, &hazard, NULL, &error), BW_OUT_OF_RANGE);
@@ -623,7 +625,7 @@ static void test_working(void **state) {
     struct bw_spot spot;
     struct bw_permitted_time time;
     const struct bw_table *table = bw_tables_find("icnirp-2013");
-    add_beam(&output, 810., 1., (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, 10e-3, 0., 10e-3});
+    add_beam(&output, 810., 1., (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 10e-3, 10e-3, 0., 10e-3));
     assert_int_equal(bw_hazard_prepare(table, &output, &viewing, &hazard, &working, NULL), BW_OK);
     near(last_step(&working, "E_limit")->value, 16.595869074, 1e-9, "limit");
     assert_int_equal(bw_hazard_reach(&hazard, ALL, &reach, &working, NULL), BW_OK);

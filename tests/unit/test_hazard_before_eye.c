@@ -10,6 +10,8 @@
 
 #include <beamward/hazard.h>
 
+#include "round_beam.h"
+
 #define COUNT(array) (sizeof(array) / sizeof *(array))
 #define NONE         ((double)NAN)
 
@@ -22,7 +24,7 @@ static struct bw_output output_of(double wavelength_nm, double power_w, double d
     struct bw_output output = {.count = 1};
     struct bw_emission_input input = {wavelength_nm, power_w, NONE, NONE, NONE, NONE};
     assert_int_equal(bw_emission_resolve(&input, &output.emissions[0], NULL), BW_OK);
-    output.beams[0] = (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, diameter_m, divergence_rad, 0., diameter_m};
+    output.beams[0] = (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, diameter_m, divergence_rad, 0., diameter_m);
     return output;
 }
 
@@ -157,7 +159,7 @@ static void test_diffuse_steps(void **state) {
         struct bw_hazard hazard;
         struct bw_reach reach;
         assert_int_equal(bw_emission_resolve(&input, &output.emissions[0], NULL), BW_OK);
-        output.beams[0] = (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, .1, 0., 0., .1};
+        output.beams[0] = (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, .1, 0., 0., .1);
         output.aid = &aid;
         prepare(&hazard, &output, BW_EYE, 100., 0.);
         assert_int_equal(bw_hazard_diffuse_reach(&hazard, &spot, &reach, NULL, NULL), BW_OK);

@@ -12,6 +12,8 @@
 
 #include <beamward/hazard.h>
 
+#include "round_beam.h"
+
 #include "../../src/hazard/series.h"
 
 /* The same numbers in every run. */
@@ -67,9 +69,8 @@ static struct one answer_one(const struct bw_table *table, const struct beams *b
                                                .continuous = true,
                                                .average_power_w = beams->powers_w[i],
                                                .peak_power_w = beams->powers_w[i]};
-    output.beams[0] = (struct bw_beam){BW_GAUSSIAN,           BW_HYPERBOLIC,
-                                       beams->diameters_m[i], beams->divergences_rad[i],
-                                       .waist_m = 0,          .exit_diameter_m = beams->diameters_m[i]};
+    output.beams[0] = (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, beams->diameters_m[i], beams->divergences_rad[i], 0,
+                                              beams->diameters_m[i]);
     if (bw_hazard_prepare(table, &output, &viewing, &hazard, NULL, NULL) != BW_OK ||
         bw_hazard_reach(&hazard, BW_EMISSIONS_MAX, &reach, NULL, NULL) != BW_OK ||
         bw_limits_eye(table, &exposure, &limits, NULL, NULL) != BW_OK)

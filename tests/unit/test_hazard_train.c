@@ -11,6 +11,8 @@
 
 #include <beamward/hazard.h>
 
+#include "round_beam.h"
+
 #define COUNT(array) (sizeof(array) / sizeof *(array))
 #define NONE         ((double)NAN)
 
@@ -251,7 +253,7 @@ static void test_apertures_of_all_windows(void **state) {
         struct bw_viewing_case viewing = {BW_EYE, exposure_s, 0., 0.};
         struct bw_train_limit limit = limit_of("icnirp-2013", &e, viewing, BW_EFFECTS);
         for (double width_m = 1e-4; width_m < 1.; width_m *= 2.) {
-            struct bw_beam beam = {BW_GAUSSIAN, BW_HYPERBOLIC, width_m, 0., 0., width_m};
+            struct bw_beam beam = ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, width_m, 0., 0., width_m);
             double ratio = bw_beam_irradiance_per_w(&beam, 0., limit.aperture_m) / limit.per_pulse_j_m2;
             for (double n = 1.; n <= 60.; n++) {
                 struct bw_exposure exposure = {wavelength_nm, (n - 1.) / rate_hz + e.pulse_duration_s, 0., 0.};

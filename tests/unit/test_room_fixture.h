@@ -4,6 +4,8 @@
 
 #include <beamward/room.h>
 
+#include "round_beam.h"
+
 #include <setjmp.h>
 #include <stdarg.h>
 #include <stdint.h>
@@ -51,7 +53,7 @@ static inline void lamp(struct handpiece *handpiece, double power_w, double exit
     struct bw_error error = {BW_OK, ""};
     assert_int_equal(bw_emission_resolve(&input, &handpiece->output.emissions[0], &error), BW_OK);
     handpiece->output.count = 1;
-    handpiece->output.beams[0] = (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, exit_m, divergence_rad, 0, exit_m};
+    handpiece->output.beams[0] = (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, exit_m, divergence_rad, 0, exit_m);
     prepare(handpiece, 100);
 }
 
@@ -65,7 +67,7 @@ static inline void trident(struct handpiece *handpiece) {
     for (size_t i = 0; i < 3; i++) {
         assert_int_equal(bw_emission_resolve(&inputs[i], &handpiece->output.emissions[i], &error), BW_OK);
         handpiece->output.beams[i] =
-            (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, 0.03 / sqrt(2), 0.2 / sqrt(2), 0, 0.03 / sqrt(2)};
+            (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 0.03 / sqrt(2), 0.2 / sqrt(2), 0, 0.03 / sqrt(2));
     }
     handpiece->output.count = 3;
     prepare(handpiece, 100);
@@ -74,8 +76,8 @@ static inline void trident(struct handpiece *handpiece) {
 /* A lens that focuses at 0.4 m, and a wide top hat beside it. */
 static inline void lens(struct handpiece *handpiece) {
     trident(handpiece);
-    handpiece->output.beams[0] = (struct bw_beam){BW_GAUSSIAN, BW_HYPERBOLIC, 0.002, 0.05, 0.4, 0.02};
-    handpiece->output.beams[1] = (struct bw_beam){BW_TOP_HAT, BW_LINEAR, 0.01, 0.3, 0, 0.01};
+    handpiece->output.beams[0] = (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 0.002, 0.05, 0.4, 0.02);
+    handpiece->output.beams[1] = (struct bw_beam)ROUND(BW_TOP_HAT, BW_LINEAR, 0.01, 0.3, 0, 0.01);
     prepare(handpiece, 100);
 }
 
