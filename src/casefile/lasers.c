@@ -20,7 +20,7 @@ static bool any_wrong(const enum presence *presences, size_t count) {
 
 static void read_emission(struct reading *reading, const struct section *section, struct bw_emission *emission,
                           struct bw_tolerance *tolerance) {
-    struct bw_emission_input input;
+    struct bw_emission_input input = {.timing = NULL};
     struct bw_error error = {0};
     enum presence presences[] = {
         value_number(reading, section, "wavelength", wavelengths_nm, &input.wavelength_nm),
