@@ -4,7 +4,7 @@
 #include <math.h>
 
 /* Two starts in one file are decimal numbers, so an end and the next start may differ by their rounding. */
-static const double rounding = 1e-12;
+static const double rounding = 1e-15;
 
 static const struct {
     const char *name, *unit;

@@ -196,11 +196,27 @@ static enum bw_status add_level(const struct level_input *level, struct bw_emiss
         every(emission, level->period_s); /* one of it: its period is the level's */
         return BW_OK;
     }
-    if (fabs(holds * unit - level->period_s) <= 1e-12 * level->period_s)
-        return BW_OK; /* it goes on evenly: the level changes nothing */
     double on_s = isnan(level->on_s) ? holds * unit : level->on_s;
     emission->levels[emission->level_count++] = (struct bw_level){on_s, level->period_s, holds};
     return BW_OK;
+}
+
+/* A level after which it goes on as evenly as inside changes nothing. */
+static void drop_even_levels(struct bw_emission *emission) {
+    double unit = 1. / emission->repetition_rate_hz;
+    for (size_t i = 0; i < emission->level_count;) {
+        struct bw_level *level = &emission->levels[i];
+        if (!(fabs(level->holds * unit - level->period_s) <= 1e-12 * level->period_s)) {
+            unit = level->period_s;
+            i++;
+            continue;
+        }
+        if (i + 1 < emission->level_count) {
+            level[1].holds *= level->holds;
+            level[0] = level[1];
+        }
+        emission->level_count--;
+    }
 }
 
 /* ---- the whole ------------------------------------------------------------------------------------ */
@@ -270,6 +286,8 @@ enum bw_status bw_beam_resolve_timed(const struct bw_emission_input *input, stru
         status = cut_into_pulses(&levels[inner++], emission, error);
     for (; status == BW_OK && inner < level_count; inner++)
         status = add_level(&levels[inner], emission, error);
+    if (status == BW_OK && !emission->continuous)
+        drop_even_levels(emission);
     if (status == BW_OK)
         status = limit_count(input->timing->pulse_count, emission, error);
     if (status == BW_OK && !emission->continuous)

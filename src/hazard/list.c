@@ -53,6 +53,12 @@ static double part_j(const struct list *list, size_t k, double reach_s) {
     return list->pulses[k].energy_j * fmin(1., reach_s / list->pulses[k].duration_s);
 }
 
+/* Pulses that a window meets, by more than rounding where two touch: the pulses i to j, of which it reaches so far into
+ * the outermost. */
+static size_t met(size_t i, size_t j, double held_j, double whole_j) {
+    return j - i + (held_j > 1e-9 * whole_j ? 1 : 0);
+}
+
 /* The most that a window of a length holds. As a window moves on, it gains and loses evenly until one of its ends meets
  * an end of a pulse; it holds the most where it opens with a pulse, or where it closes with one. */
 double bw_hazard_list_most_j(const struct list *list, double length_s, size_t meets) {
@@ -63,9 +69,10 @@ double bw_hazard_list_most_j(const struct list *list, double length_s, size_t me
         while (last + 1 < list->count && p[last + 1].start_s - p[i].start_s < length_s)
             last++;
         double held_j = part_j(list, last, length_s - (p[last].start_s - p[i].start_s));
+        size_t here = met(i, last, held_j, p[last].energy_j);
         if (last > i)
             held_j += bw_hazard_list_energy_j(list, i, last - 1);
-        if (last - i + 1 >= meets)
+        if (here >= meets)
             most_j = fmax(most_j, held_j);
     }
     for (size_t j = 0, first = 0; j < list->count; j++) { /* closes with pulse j; begins in or before pulse `first` */
@@ -73,9 +80,10 @@ double bw_hazard_list_most_j(const struct list *list, double length_s, size_t me
             first++;
         double held_j =
             part_j(list, first, length_s - (p[j].start_s - p[first].start_s + (p[j].duration_s - p[first].duration_s)));
+        size_t here = met(first, j, held_j, p[first].energy_j);
         if (j > first)
             held_j += bw_hazard_list_energy_j(list, first + 1, j);
-        if (j - first + 1 >= meets)
+        if (here >= meets)
             most_j = fmax(most_j, held_j);
     }
     return most_j;
