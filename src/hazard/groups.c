@@ -34,7 +34,7 @@ static double groups_between(const struct runs *runs, double from, double to) {
 }
 
 /* Given:    emission  no list; ti_s  grouping time, 0 = none; window_s  the time in which pulses are counted
- * Returns:  N in the worst window
+ * Returns:  N in the worst window; of a train that ends, with bursts, at least that
  * Notes:    The window opens with the first or last pulse of a first or last burst. Take one that touches a run at each
  *           of its ends, and shift: what the one end loses the other gains, and floor(a) + floor(b) <= floor(a + b), so
  *           one of the two may as well be whole, or be one pulse.   Tests: test_hazard_pulses.c, against all windows */
@@ -58,5 +58,7 @@ double bw_hazard_groups(const struct bw_emission *emission, double ti_s, double 
         if (pulses > 0.)
             most = fmax(most, groups_between(&runs, starts[i], starts[i] + pulses - 1.));
     }
+    if (emission->pulse_count > 0) /* some of these windows may lie beyond its end: no more than all of it */
+        most = fmin(most, groups_between(&runs, 0., (double)emission->pulse_count - 1.));
     return most;
 }

@@ -100,7 +100,7 @@ static struct nested random_nested(uint64_t *random) {
         n.burst_period_s = even_s = period_around(random, lasts_s, n.pulses * n.period_s);
     }
     if (levels > 1) {
-        n.bursts = floor(between(random, 2., 5.));
+        n.bursts = floor(between(random, 2., 7.));
         lasts_s += (n.bursts - 1.) * n.burst_period_s;
         n.gate_period_s = period_around(random, lasts_s, n.bursts * even_s);
     }
@@ -113,9 +113,18 @@ static double outermost_s(const struct nested *n) {
     return n->gate_period_s > 0. ? n->gate_period_s : n->burst_period_s > 0. ? n->burst_period_s : n->period_s;
 }
 
+/* Where the rule of the train is a bound, so is what is made of it: the limit may be lower and N higher. */
+enum exactness { EXACT, TRAIN_BOUND, BOUND };
+
 static bool closer_outside(const struct nested *n) {
     return (n->burst_period_s > 0. && n->burst_period_s < n->pulses * n->period_s * (1. - 1e-12)) ||
            (n->gate_period_s > 0. && n->gate_period_s < n->bursts * n->burst_period_s * (1. - 1e-12));
+}
+
+static enum exactness exactness_of(const struct nested *n) {
+    if (n->count > 0. && closer_outside(n))
+        return BOUND;
+    return closer_outside(n) || (n->count > 0. && n->burst_period_s > 0.) ? TRAIN_BOUND : EXACT;
 }
 
 /* Its pulses one by one, those that begin before a time. */
@@ -154,9 +163,6 @@ static void same(double got, double want, double relative, const char *what, enu
     if (!(fabs(got - want) <= relative * fabs(want)))
         fail_msg("%s: %s, %s: got %.15g, all windows %.15g", told, bw_effect_name(effect), what, got, want);
 }
-
-/* Where the rule of the train is a bound, so is what is made of it: the limit may be lower and N higher. */
-enum exactness { EXACT, TRAIN_BOUND, BOUND };
 
 static void compare(const struct brute *b, const struct bw_train_limit_set *set, double relative,
                     enum exactness exactness) {
@@ -249,7 +255,7 @@ static void test_nested(void **state) {
     struct bw_pulse pulses[LIST_MAX];
     for (int i = 0; i < TRAINS; i++) {
         struct nested n = random_nested(&random);
-        double exposure_s = outermost_s(&n) * decades(&random, .01, n.gate_period_s > 0. ? 2.5 : 10.);
+        double exposure_s = outermost_s(&n) * decades(&random, .01, fmin(10., 150. / n.pulses / n.bursts));
         if (uniform(&random) < .1)
             exposure_s = n.duration_s * between(&random, .2, 2.);
         struct brute b = {.table = bw_tables_find(*state), .wavelength_nm = wavelength(&random, *state),
@@ -267,7 +273,7 @@ static void test_nested(void **state) {
         brute_all(&b);
         limits_of(&b, &emission, &set);
         compare(&b, &set, tolerance(&b),
-                closer_outside(&n) ? n.count > 0. ? BOUND : TRAIN_BOUND : EXACT);
+                exactness_of(&n));
         if (n.count > 0. && (double)b.count < n.count)
             continue; /* the list would end before the train does */
         if (n.count > 0.) {
@@ -278,14 +284,80 @@ static void test_nested(void **state) {
     }
 }
 
+/* ---- long lists --------------------------------------------------------------------------------- */
+
+enum { MANY = 200000 };
+
+/* Two pulses close together after very many others: their energy is the difference of two large sums. */
+static void test_sums(void **state) {
+    (void)state;
+    struct bw_pulse *pulses = malloc(MANY * sizeof *pulses);
+    assert_non_null(pulses);
+    for (size_t i = 0; i < MANY; i++)
+        pulses[i] = (struct bw_pulse){(double)i, 1e-9, .1 + 1e-7 * (double)(i % 7)};
+    pulses[MANY - 2] = (struct bw_pulse){MANY - 2., 1e-9, .2};
+    pulses[MANY - 1] = (struct bw_pulse){MANY - 2. + 1. / 65536., 1e-9, .3};
+    struct bw_emission emission = of_list(1600., pulses, MANY);
+    struct bw_viewing_case viewing = {BW_EYE, 1., 0., 0.};
+    struct bw_exposure exposure = {1600., 1. / 65536. + 1e-9, 0., 0.};
+    struct bw_train_limit_set set;
+    struct bw_limit_set limits;
+    snprintf(told, sizeof told, "a pair at the end");
+    assert_int_equal(bw_hazard_train_limits(bw_tables_find("icnirp-2013"), &emission, &viewing, &set, NULL, NULL),
+                     BW_OK);
+    assert_int_equal(bw_limits(bw_tables_find("icnirp-2013"), BW_EYE, &exposure, &limits, NULL, NULL), BW_OK);
+    same(set.limits[0].rules_j_m2[BW_RULE_AVERAGE], limits.limits[0].radiant_exposure_j_m2 * .3 / (.2 + .3), 1e-14,
+         "two among many", BW_ANTERIOR);
+    free(pulses);
+}
+
+/* A regular train with bursts in gates, as the closed form has it and as a list of all its pulses. */
+static void test_long_lists(void **state) {
+    uint64_t random = 23;
+    struct bw_pulse *pulses = malloc(MANY * sizeof *pulses);
+    assert_non_null(pulses);
+    for (int i = 0; i < 6; i++) {
+        double tick_s = ldexp(1., -24 - i % 3), wavelength_nm = wavelength(&random, *state);
+        struct nested n = {64. * tick_s, between(&random, 1., 60.) * tick_s, 2048. * tick_s, 262144. * tick_s, 20., 90.,
+                           50000. + 30000. * i};
+        for (size_t k = 0; k < (size_t)n.count; k++)
+            pulses[k] = (struct bw_pulse){(double)(k / 1800) * n.gate_period_s +
+                                              (double)(k % 1800 / 20) * n.burst_period_s +
+                                              (double)(k % 20) * n.period_s,
+                                          n.duration_s, 1e-3};
+        struct bw_viewing_case viewing = random_viewing(&random, decades(&random, 1e-4, 10.));
+        struct bw_emission regular = of_nested(wavelength_nm, &n, &random);
+        struct bw_emission list = of_list(wavelength_nm, pulses, (size_t)n.count);
+        struct brute b = {.table = bw_tables_find(*state), .viewing = viewing};
+        struct bw_train_limit_set want, got;
+        snprintf(told, sizeof told, "long %d: %g nm, %g s, %g rad", i, wavelength_nm, viewing.exposure_s,
+                 viewing.subtense_rad);
+        limits_of(&b, &regular, &want);
+        limits_of(&b, &list, &got);
+        assert_int_equal(got.count, want.count);
+        for (size_t k = 0; k < got.count; k++) {
+            enum bw_effect effect = got.limits[k].limit.effect;
+            for (size_t rule = 0; rule < BW_RULES - 1; rule++)
+                same(got.limits[k].rules_j_m2[rule], want.limits[k].rules_j_m2[rule], 1e-11, "as a list", effect);
+            same(got.limits[k].irradiance_w_m2 / list.average_power_w * list.pulse_energy_j,
+                 got.limits[k].per_pulse_j_m2, 1e-14, "mean", effect);
+            if (!(got.limits[k].pulses <= want.limits[k].pulses))
+                fail_msg("%s: N %g in the list, %g in the train", told, got.limits[k].pulses, want.limits[k].pulses);
+        }
+    }
+    free(pulses);
+}
+
 static char rule_sets[][32] = {"eu-2006-25", "iec-60825-1-2014", "icnirp-2013", "ansi-z136-1-2014"};
-static struct CMUnitTest tests[2 * COUNT(rule_sets)];
+static struct CMUnitTest tests[3 * COUNT(rule_sets) + 1];
 
 int main(void) {
     size_t count = 0;
     for (size_t i = 0; i < COUNT(rule_sets); i++) {
         tests[count++] = (struct CMUnitTest){"lists against all windows", test_lists, NULL, NULL, rule_sets[i]};
         tests[count++] = (struct CMUnitTest){"nested against all windows", test_nested, NULL, NULL, rule_sets[i]};
+        tests[count++] = (struct CMUnitTest){"long lists", test_long_lists, NULL, NULL, rule_sets[i]};
     }
+    tests[count++] = (struct CMUnitTest){"sums of a long list", test_sums, NULL, NULL, NULL};
     return cmocka_run_group_tests_name("hazard pulses", tests, NULL, NULL) == 0 ? EXIT_SUCCESS : EXIT_FAILURE;
 }
