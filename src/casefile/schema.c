@@ -78,6 +78,14 @@ static const struct key_word emission_keys[] = {
     {"pulse_energy_tolerance", &percent, "pulse_energy_tolerance_pct = 20"},
     {"pulse_duration_tolerance", &percent, "pulse_duration_tolerance_pct = 10"},
     {"repetition_rate_tolerance", &percent, "repetition_rate_tolerance_pct = 5"},
+    {"pulse_count", NULL, "pulse_count = 1"},
+    {"burst_on", &duration, "burst_on_ms = 10"},
+    {"burst_period", &duration, "burst_period_ms = 50"},
+    {"burst_pulses", NULL, "burst_pulses = 20"},
+    {"burst_rate", &rate, "burst_rate_hz = 20"},
+    {"gate_on", &duration, "gate_on_s = 0.5"},
+    {"gate_period", &duration, "gate_period_s = 2"},
+    {"pulses", NULL, "pulses = train.csv"},
 };
 static const struct key_word handpiece_keys[] = {TITLE_KEY, BEAM_KEYS, {"exposure", &seconds, "exposure_s = 10"},
                                                  {"exposed_skin", &area, "exposed_skin_cm2 = 50"}};
@@ -216,10 +224,6 @@ static const struct {
     const char *begin; /* of the key */
     const char *text;
 } not_built[] = {
-    {"gate_", "gates are not in this version; describe the train as if it ran without gates, the stricter side"},
-    {"burst_", "bursts are not in this version; describe the train as if it ran without gaps, the stricter side"},
-    {"pulses", "measured and counted trains are not in this version; describe a regular train at least as strong"},
-    {"pulse_count", "counted pulses are not in this version; describe a regular train at least as strong"},
     {"emitter_", "clusters of emitters are not in this version; describe one emitter with the power of all, the "
                  "stricter side"},
     {"beam_diameter_x_", "elliptical beams are not in this version; write the smaller diameter as beam_diameter_mm"},
