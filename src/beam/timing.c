@@ -68,6 +68,13 @@ static enum bw_status burst_period(const struct bw_timing *timing, double *perio
     return BW_OK;
 }
 
+static enum bw_status check_on(const struct level_input *level, struct bw_error *error) {
+    if (isnan(level->on_s) || level->on_s <= level->period_s * (1. + hair))
+        return BW_OK;
+    return bw_error_set(error, BW_INPUT, "the %s is on for %.6g s, %.6g times its period of %.6g s; it must be at most "
+                        "once", level->name, level->on_s, level->on_s / level->period_s, level->period_s);
+}
+
 /* Returned: levels  innermost first, those of which anything is given. */
 static enum bw_status read_levels(const struct bw_timing *timing, struct level_input levels[BW_LEVELS_MAX],
                                   size_t *count, struct bw_error *error) {
@@ -89,12 +96,9 @@ static enum bw_status read_levels(const struct bw_timing *timing, struct level_i
         return bw_error_set(error, BW_INPUT, "gate on-time and gate period need each other; only one is given");
     if (!isnan(gate.on_s))
         levels[(*count)++] = gate;
-    for (size_t i = 0; i < *count; i++)
-        if (!isnan(levels[i].on_s) && !(levels[i].on_s <= levels[i].period_s * (1. + hair)))
-            return bw_error_set(error, BW_INPUT, "the %s is on for %.6g s, %.6g times its period of %.6g s; it must be "
-                                "at most once", levels[i].name, levels[i].on_s,
-                                levels[i].on_s / levels[i].period_s, levels[i].period_s);
-    return BW_OK;
+    for (size_t i = 0; i < *count && status == BW_OK; i++)
+        status = check_on(&levels[i], error);
+    return status;
 }
 
 /* ---- a continuous emission that is switched ------------------------------------------------------ */
@@ -121,11 +125,11 @@ static enum bw_status power_while_on(const struct bw_emission_input *input, stru
 /* The innermost level cuts a steady power into pulses. */
 static enum bw_status cut_into_pulses(const struct level_input *level, struct bw_emission *emission,
                                       struct bw_error *error) {
-    if (!isnan(level->holds))
+    if (isnan(level->on_s))
         return bw_error_set(error, BW_INPUT, "a number of pulses in a burst is given, but the emission inside is "
                                              "continuous; give the pulses as well, or the burst on-time alone");
     if (level->on_s >= level->period_s * (1. - hair))
-        return BW_OK; /* never off */
+        return check_on(level, error); /* never off */
     emission->continuous = false;
     emission->pulse_duration_s = level->on_s;
     emission->pulse_energy_j = emission->peak_power_w * level->on_s;
@@ -245,19 +249,27 @@ static void find_average(struct bw_emission *emission) {
         energy_j * pulses_inside(emission) / emission->levels[emission->level_count - 1].period_s;
 }
 
+/* So many pulses without a gap between them last as long as a burst that is on for their time. */
+static void join_pulses(const struct bw_emission_input *inner, struct level_input *level) {
+    double each_s = isnan(inner->repetition_rate_hz) ? inner->pulse_duration_s : 1. / inner->repetition_rate_hz;
+    if (!isnan(level->holds) && !isnan(each_s))
+        level->on_s = isnan(level->on_s) ? level->holds * each_s : fmax(level->on_s, level->holds * each_s);
+}
+
 /* The innermost train; its rate follows from a burst's length and number of pulses if it is not given itself. */
-static enum bw_status resolve_innermost(const struct bw_emission_input *input, const struct level_input *levels,
-                                        size_t level_count, bool *steady, struct bw_emission *emission,
-                                        struct bw_error *error) {
+static enum bw_status resolve_innermost(const struct bw_emission_input *input, struct level_input *levels,
+                                        size_t level_count, struct bw_emission *emission, struct bw_error *error) {
     struct bw_emission_input inner = *input;
     bool single = level_count == 0 && input->timing->pulse_count <= 1. && isnan(input->repetition_rate_hz) &&
                   isnan(input->average_power_w);
-    *steady = level_count > 0 && steady_while_on(input) && isnan(levels[0].holds);
-    if (*steady)
+    if (level_count > 0 && steady_while_on(input) && isnan(levels[0].holds))
         return power_while_on(input, emission, error);
     if (level_count > 0 && isnan(inner.repetition_rate_hz))
         inner.repetition_rate_hz = levels[0].holds / levels[0].on_s;
-    return bw_beam_resolve_train(&inner, single, emission, error);
+    enum bw_status status = bw_beam_resolve_train(&inner, single, emission, error);
+    if (status == BW_OK && level_count > 0 && emission->continuous)
+        join_pulses(&inner, &levels[0]);
+    return status;
 }
 
 static enum bw_status limit_count(double count, struct bw_emission *emission, struct bw_error *error) {
@@ -276,12 +288,11 @@ enum bw_status bw_beam_resolve_timed(const struct bw_emission_input *input, stru
                                      struct bw_error *error) {
     struct level_input levels[BW_LEVELS_MAX];
     size_t level_count = 0, inner = 0;
-    bool steady;
     enum bw_status status = check_ranges(input->timing, error);
     if (status == BW_OK)
         status = read_levels(input->timing, levels, &level_count, error);
     if (status == BW_OK)
-        status = resolve_innermost(input, levels, level_count, &steady, emission, error);
+        status = resolve_innermost(input, levels, level_count, emission, error);
     while (status == BW_OK && emission->continuous && inner < level_count)
         status = cut_into_pulses(&levels[inner++], emission, error);
     for (; status == BW_OK && inner < level_count; inner++)
