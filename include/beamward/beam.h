@@ -12,26 +12,61 @@ extern "C" {
 
 /* ---- emissions and trains ------------------------------------------------------------------- */
 
-/* What a person knows of an emission; NAN where not given. */
+/* One pulse of a measured or irregular train, rectangular. */
+struct bw_pulse {
+    double start_s, duration_s, energy_j;
+};
+
+/* How the pulses follow each other, beyond duration and rate; NAN where not given. A zeroed struct is not "nothing
+ * given": start from bw_timing_none(). */
+struct bw_timing {
+    double pulse_count;                                             /* 1 = a single pulse, else so many and no more */
+    double burst_on_s, burst_period_s, burst_pulses, burst_rate_hz; /* pulses inside a burst */
+    double gate_on_s, gate_period_s;                                /* bursts, or pulses, inside a gate */
+    const struct bw_pulse *pulses; /* a train as measured, kept by reference; NULL = none. Then nothing else is given */
+    size_t pulses_given;
+};
+struct bw_timing bw_timing_none(void);
+
+/* What a person knows of an emission; NAN where not given. Powers and rate are those of the innermost train, that is
+ * while burst and gate are on: what a display shows, and the safe reading of a mean given for a gated emission. */
 struct bw_emission_input {
     double wavelength_nm;
     double average_power_w, peak_power_w;
     double pulse_energy_j, pulse_duration_s, repetition_rate_hz;
+    const struct bw_timing *timing; /* NULL = a train without end, or continuous */
 };
 
-/* A regular train of rectangular pulses, or a continuous emission. All fields consistent. */
+/* What is inside goes on for on_s and starts anew every period_s: the pulses of a burst, the bursts of a gate. What
+ * has begun while the level is on is finished. */
+struct bw_level {
+    double on_s, period_s;
+    double holds; /* of the next level inward, or pulses; 2 or more */
+};
+enum { BW_LEVELS_MAX = 2 };
+
+/* A train of rectangular pulses, or a continuous emission. All fields consistent. Of a zeroed struct the fields after
+ * the rate say: a regular train without end.
+ * Regular: pulses of one kind, at the rate, inside the levels if there are any; each level opens with what it holds.
+ * Irregular: a list. pulse_energy_j and pulse_duration_s are those of the pulse with the most energy, peak_power_w the
+ * largest of all; energies and powers may be scaled together, the list then stands for the scaled train. */
 struct bw_emission {
     char name[BW_NAME_SIZE];
     double wavelength_nm;     /* 180 to 1e6 */
     bool continuous;
-    double average_power_w;
+    double average_power_w;   /* without end: over whole periods of the outermost level; else from the first pulse's
+                                 start to the last one's end (a single pulse: its peak power) */
     double peak_power_w;      /* continuous: the average power */
     double pulse_energy_j;    /* continuous: 0 */
     double pulse_duration_s;  /* continuous: 0 */
-    double repetition_rate_hz;/* continuous: 0 */
+    double repetition_rate_hz;/* of the innermost train; continuous, single pulse, list: 0 */
+    size_t level_count;       /* 0 to BW_LEVELS_MAX */
+    struct bw_level levels[BW_LEVELS_MAX]; /* innermost first */
+    size_t pulse_count;       /* pulses in all; 0 = without end */
+    const struct bw_pulse *pulses; /* a list of pulse_count, ascending, memory of the caller; NULL = regular */
 };
 
-/* Completes any consistent set of power, energy, duration and rate. Only average_power_w: continuous.
+/* Completes any consistent set of power, energy, duration, rate and timing. Only average_power_w: continuous.
  * Returns: BW_OK; BW_ARGUMENT out of range; BW_INPUT if too little is given (says what is missing) or
  * if the set contradicts itself by more than 0.1 % (says by how much). */
 enum bw_status bw_emission_resolve(const struct bw_emission_input *input, struct bw_emission *emission,
@@ -48,10 +83,24 @@ struct bw_tolerance {
 enum bw_status bw_emission_varied(const struct bw_emission_input *given, double power, double duration, double rate,
                                   struct bw_emission *emission, struct bw_error *error);
 
-/* Largest energy that the emission sends in any window of this length [J]. Closed form. */
+enum { BW_PULSES_MAX = 1000000 }; /* of a list */
+/* What is wrong with the pulse `index` of a list, after those before it; error may be NULL. */
+enum bw_status bw_pulses_check(const struct bw_pulse *pulses, size_t index, struct bw_error *error);
+
+/* Largest energy that the emission sends in any window of this length [J]. Closed form; of a list one pass. */
 double bw_train_window_energy(const struct bw_emission *emission, double window_s);
-/* Pulses of an exposure of this length that begins with a pulse (1 for continuous). */
+/* Most pulses, whole or begun, in an exposure of this length (1 for continuous). */
 double bw_train_pulse_count(const struct bw_emission *emission, double exposure_s);
+
+/* The pulses of a regular train have numbers from 0. A window of so many pulses is shortest if it opens with pulse
+ * first, for one of these `first` (src/beam/train.c has the proof); one alone unless bursts or gates follow each other
+ * closer than what they hold. Returns: how many. */
+enum { BW_STARTS_MAX = 4 };
+size_t bw_train_starts(const struct bw_emission *emission, double first[BW_STARTS_MAX]);
+/* Time from the start of pulse `first` to that of pulse first + next [s]. */
+double bw_train_span_s(const struct bw_emission *emission, double first, double next);
+/* Pulses, whole or begun, of a window that opens with pulse `first`; not more than pulse_count. */
+double bw_train_pulses_from(const struct bw_emission *emission, double first, double window_s);
 
 /* ---- geometry ------------------------------------------------------------------------------- */
 

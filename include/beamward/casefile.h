@@ -31,6 +31,7 @@ struct bw_laser {
     size_t emission_count, handpiece_count;
     struct bw_emission *emissions; /* in the order of the file */
     struct bw_tolerance *tolerances; /* of each: what was given, and how far it may be off */
+    struct bw_timing *timings;     /* of each, as given; owns the lists of pulses that the emissions refer to */
     struct bw_handpiece *handpieces;
     int line;
 };

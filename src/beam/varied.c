@@ -5,13 +5,22 @@
 
 enum { QUANTITIES = 5, ENOUGH = 3 };
 
+/* Of the pulses inside a burst, even if each burst has but one. */
+static double innermost_rate_hz(const struct bw_emission_input *input, const struct bw_emission *whole) {
+    double of_energy_hz = input->average_power_w / input->pulse_energy_j;
+    if (!isnan(input->repetition_rate_hz))
+        return input->repetition_rate_hz;
+    return isnan(of_energy_hz) ? whole->repetition_rate_hz : of_energy_hz;
+}
+
 /* More than three quantities of the pulses would contradict each other as soon as one of them changes. What is metered
  * or set stays: the average power, the rate and the duration; where one of these was not given, the energy or the peak
  * stands for it. */
 static void keep_enough(struct bw_emission_input *input, const struct bw_emission *whole) {
     double *all[QUANTITIES] = {&input->average_power_w, &input->repetition_rate_hz, &input->pulse_duration_s,
                                &input->pulse_energy_j, &input->peak_power_w};
-    double values[QUANTITIES] = {whole->average_power_w, whole->repetition_rate_hz, whole->pulse_duration_s,
+    double rate_hz = innermost_rate_hz(input, whole);
+    double values[QUANTITIES] = {whole->pulse_energy_j * rate_hz, rate_hz, whole->pulse_duration_s,
                                  whole->pulse_energy_j, whole->peak_power_w};
     size_t given = 0, kept = 0;
     for (size_t i = 0; i < QUANTITIES; i++)
@@ -35,7 +44,9 @@ static void keep_enough(struct bw_emission_input *input, const struct bw_emissio
  * Notes:    1) What was not given follows: with average power, duration and rate given, a longer pulse has the same
  *              energy; with the peak given, a larger one.
  *           2) Pulses that would overlap are cut where the next one begins.
- *           3) A quantity that was not given does not change. */
+ *           3) A quantity that was not given does not change; nor do bursts and gates: at another rate a burst of so
+ *              many pulses takes another time, and one of such a length holds another number.
+ *           4) Of a list of pulses only the power changes. */
 enum bw_status bw_emission_varied(const struct bw_emission_input *given, double power, double duration, double rate,
                                   struct bw_emission *emission, struct bw_error *error) {
     struct bw_emission_input input = *given;
@@ -48,9 +59,13 @@ enum bw_status bw_emission_varied(const struct bw_emission_input *given, double 
     }
     keep_enough(&input, emission);
     if (!emission->continuous && !isnan(input.pulse_duration_s)) {
-        double rate_hz = emission->repetition_rate_hz * (isnan(input.repetition_rate_hz) ? 1. : rate);
+        double rate_hz = innermost_rate_hz(&input, emission) * (isnan(input.repetition_rate_hz) ? 1. : rate);
         input.pulse_duration_s = fmin(input.pulse_duration_s * duration, 1. / rate_hz);
     }
+    struct bw_timing timing = given->timing != NULL ? *given->timing : bw_timing_none();
+    if (!isnan(timing.burst_pulses) && !isnan(input.repetition_rate_hz))
+        timing.burst_on_s = nan(""); /* so many pulses, however long they take: it would contradict another rate */
+    input.timing = given->timing != NULL ? &timing : NULL;
     input.repetition_rate_hz *= rate;
     status = bw_emission_resolve(&input, emission, error);
     /* All powers and energies are proportional, whichever of them were given. */

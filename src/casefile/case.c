@@ -101,9 +101,9 @@ static void read_all(struct reading *reading) {
 }
 
 /* With lost lines, the faults of the INI guard are in the list already, and what it refused is not in ini. */
-static enum bw_status read_case(const struct bw_ini *ini, const struct lost_lines *lost, struct bw_case **the_case,
-                                struct bw_faults *faults, struct bw_error *error) {
-    struct reading reading = {.ini = ini, .faults = faults, .lost_lines = lost};
+static enum bw_status read_case(const struct bw_ini *ini, const char *path, const struct lost_lines *lost,
+                                struct bw_case **the_case, struct bw_faults *faults, struct bw_error *error) {
+    struct reading reading = {.ini = ini, .faults = faults, .lost_lines = lost, .path = path};
     for (size_t i = 0; i < SECTION_KINDS; i++)
         reading.lost[i] = lost && lost->sections;
     *the_case = NULL;
@@ -135,11 +135,11 @@ static enum bw_status read_case(const struct bw_ini *ini, const struct lost_line
  * Notes:    Whether the rule set exists is not judged here: the caller may bring a foreign one. */
 enum bw_status bw_case_from_ini(const struct bw_ini *ini, struct bw_case **the_case, struct bw_faults *faults,
                                 struct bw_error *error) {
-    return read_case(ini, NULL, the_case, faults, error);
+    return read_case(ini, NULL, NULL, the_case, faults, error);
 }
 
 /* Judges what the INI guard has left, so that its faults and ours are told together. */
-static enum bw_status judge_rest(const struct bw_text *bytes, struct bw_case **the_case, struct bw_faults *faults,
+static enum bw_status judge_rest(const char *path, const struct bw_text *bytes, struct bw_case **the_case, struct bw_faults *faults,
                                  struct bw_error *error) {
     struct bw_text plain = {0};
     struct lost_lines lost = {0};
@@ -149,7 +149,7 @@ static enum bw_status judge_rest(const struct bw_text *bytes, struct bw_case **t
     if (repair_lines(bytes, faults, &plain, &lost))
         status = bw_ini_read_bytes(plain.data, plain.length, &ini, &again, NULL);
     if (status == BW_OK)
-        status = read_case(&ini, &lost, the_case, faults, error);
+        status = read_case(&ini, path, &lost, the_case, faults, error);
     bool no_memory = lost.no_memory || status == BW_NO_MEMORY;
     if (no_memory) {
         if (error) /* of the guard's first fault */
@@ -174,9 +174,9 @@ enum bw_status bw_case_read(const char *path, struct bw_case **the_case, struct 
     *the_case = NULL;
     enum bw_status status = bw_ini_read(path, &ini, content, faults, error);
     if (status == BW_OK)
-        status = read_case(&ini, NULL, the_case, faults, error);
+        status = read_case(&ini, path, NULL, the_case, faults, error);
     else if (status == BW_INPUT && faults->count > 0)
-        status = judge_rest(content, the_case, faults, error);
+        status = judge_rest(path, content, the_case, faults, error);
     bw_ini_free(&ini);
     bw_text_free(&own);
     return status;
@@ -184,6 +184,7 @@ enum bw_status bw_case_read(const char *path, struct bw_case **the_case, struct 
 
 static void free_laser(struct bw_laser *laser) {
     free(laser->emissions);
+    free_timings(laser->timings, laser->emission_count);
     free(laser->handpieces);
     free(laser->tolerances);
 }

@@ -99,6 +99,8 @@ struct reading {
     bool lost[SECTION_KINDS];            /* a section of this kind was refused: do not complain that one is missing */
     const struct lost_lines *lost_lines; /* may be NULL */
     bool no_memory;
+    const char *path;   /* of the case file; NULL if it has none */
+    size_t pulse_total; /* in the lists read so far */
     struct bw_material *materials; /* the case's own */
     size_t material_count;
 };
@@ -166,6 +168,13 @@ enum presence value_material(struct reading *reading, const struct section *sect
 void read_materials(struct reading *reading);
 void read_goggles(struct reading *reading);
 void read_lasers(struct reading *reading);     /* with emissions */
+/* Bursts, gates, counts and lists. ABSENT: none of them is given. */
+enum presence read_timing(struct reading *reading, const struct section *section, struct bw_timing *timing);
+void free_timings(struct bw_timing *timings, size_t count);
+/* A list of at most so many pulses; shown: its name in messages, `FILE:LINE: ...`.
+ * Returned: pulses  to be freed; NULL on error. Returns: BW_OK; BW_INPUT; BW_NO_MEMORY */
+enum bw_status pulses_csv_read(const char *path, const char *shown, size_t most, struct bw_pulse **pulses,
+                               size_t *count, struct bw_error *error);
 void read_handpieces(struct reading *reading); /* with beams */
 void read_rooms(struct reading *reading);      /* with what is in them */
 void read_uses(struct reading *reading);

@@ -19,8 +19,8 @@ static bool any_wrong(const enum presence *presences, size_t count) {
 }
 
 static void read_emission(struct reading *reading, const struct section *section, struct bw_emission *emission,
-                          struct bw_tolerance *tolerance) {
-    struct bw_emission_input input;
+                          struct bw_tolerance *tolerance, struct bw_timing *timing) {
+    struct bw_emission_input input = {.timing = timing};
     struct bw_error error = {0};
     enum presence presences[] = {
         value_number(reading, section, "wavelength", wavelengths_nm, &input.wavelength_nm),
@@ -29,6 +29,7 @@ static void read_emission(struct reading *reading, const struct section *section
         value_number(reading, section, "pulse_energy", energies_j, &input.pulse_energy_j),
         value_number(reading, section, "pulse_duration", durations_s, &input.pulse_duration_s),
         value_number(reading, section, "repetition_rate", rates_hz, &input.repetition_rate_hz),
+        read_timing(reading, section, timing),
     };
     if (presences[0] == ABSENT) {
         fault_missing(reading, section, "wavelength");
@@ -50,18 +51,20 @@ static void read_emissions(struct reading *reading, const struct section *of, st
     size_t at = 0, count = sections_count(reading, SECTION_EMISSION, laser->name, NULL);
     laser->emissions = reading_allocate(reading, count, sizeof *laser->emissions);
     laser->tolerances = reading_allocate(reading, count, sizeof *laser->tolerances);
+    laser->timings = reading_allocate(reading, count, sizeof *laser->timings);
     if (count == 0 && !reading->lost[SECTION_EMISSION])
         fault_section(reading, of, "has no emission; [emission %s NAME] with wavelength and power would be right",
                       laser->name);
     if (count > BW_EMISSIONS_MAX)
         fault_section(reading, of, "has %zu emissions; at most %d would be right", count, BW_EMISSIONS_MAX);
     for (struct section *section;
-         laser->emissions && laser->tolerances &&
+         laser->emissions && laser->tolerances && laser->timings &&
          (section = sections_next(reading, &at, SECTION_EMISSION, laser->name, NULL));) {
         section->index = laser->emission_count++;
         section->parent = of->index;
         section->made = true;
-        read_emission(reading, section, &laser->emissions[section->index], &laser->tolerances[section->index]);
+        read_emission(reading, section, &laser->emissions[section->index], &laser->tolerances[section->index],
+                      &laser->timings[section->index]);
     }
 }
 

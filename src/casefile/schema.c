@@ -87,6 +87,14 @@ static const struct key_word emission_keys[] = {
     {"pulse_energy_tolerance", &percent, "pulse_energy_tolerance_pct = 20"},
     {"pulse_duration_tolerance", &percent, "pulse_duration_tolerance_pct = 10"},
     {"repetition_rate_tolerance", &percent, "repetition_rate_tolerance_pct = 5"},
+    {"pulse_count", NULL, "pulse_count = 1"},
+    {"burst_on", &duration, "burst_on_ms = 10"},
+    {"burst_period", &duration, "burst_period_ms = 50"},
+    {"burst_pulses", NULL, "burst_pulses = 20"},
+    {"burst_rate", &rate, "burst_rate_hz = 20"},
+    {"gate_on", &duration, "gate_on_s = 0.5"},
+    {"gate_period", &duration, "gate_period_s = 2"},
+    {"pulses", NULL, "pulses = train.csv"},
 };
 static const struct key_word handpiece_keys[] = {TITLE_KEY,
                                                  BEAM_KEYS,
@@ -228,10 +236,6 @@ static const struct {
     const char *begin; /* of the key */
     const char *text;
 } not_built[] = {
-    {"gate_", "gates are not in this version; describe the train as if it ran without gates, the stricter side"},
-    {"burst_", "bursts are not in this version; describe the train as if it ran without gaps, the stricter side"},
-    {"pulses", "measured and counted trains are not in this version; describe a regular train at least as strong"},
-    {"pulse_count", "counted pulses are not in this version; describe a regular train at least as strong"},
     {"beam_diameter_x_", "is not known; beam_diameter_mm is the x axis, beam_diameter_y_mm the other"},
     {"divergence_x_", "is not known; divergence_mrad is the x axis, divergence_y_mrad the other"},
 };

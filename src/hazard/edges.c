@@ -83,6 +83,15 @@ static void add_kinks(const struct train_case *train, double from, double to, in
     add_kinks(train, meeting, to, depth - 1, edges);
 }
 
+static void sort(struct edges *edges) {
+    for (size_t i = 1; i < edges->count; i++)
+        for (size_t j = i; j > 0 && edges->at_s[j] < edges->at_s[j - 1]; j--) {
+            double swapped = edges->at_s[j];
+            edges->at_s[j] = edges->at_s[j - 1];
+            edges->at_s[j - 1] = swapped;
+        }
+}
+
 enum bw_status bw_hazard_edges(const struct train_case *train, struct edges *edges, struct bw_error *error) {
     struct bw_exposure exposure = bw_hazard_exposure(train, train->viewing->exposure_s);
     edges->count = bw_limits_time_edges(train->table, train->viewing->target, &exposure, edges->at_s, EDGES_MAX);
@@ -93,5 +102,6 @@ enum bw_status bw_hazard_edges(const struct train_case *train, struct edges *edg
     if (edges->count >= EDGES_MAX)
         return bw_error_set(error, BW_OUT_OF_RANGE, "the limits at %g nm have more than %d edges in time",
                             exposure.wavelength_nm, EDGES_MAX - 1);
+    sort(edges);
     return BW_OK;
 }

@@ -21,22 +21,21 @@ struct edges {
 /* Limit as a function of the whole exposure: what is measured within the acceptance cone is put on all of it. */
 double bw_hazard_whole_limit_j_m2(const struct bw_limit *limit, double subtense_rad);
 struct bw_exposure bw_hazard_exposure(const struct train_case *train, double time_s);
-/* All edges, those beyond the exposure too. Returns: BW_OK; BW_OUT_OF_RANGE if there are more than fit. */
+/* All edges, ascending, those beyond the exposure too. Returns: BW_OK; BW_OUT_OF_RANGE if there are more than fit. */
 enum bw_status bw_hazard_edges(const struct train_case *train, struct edges *edges, struct bw_error *error);
 
 /* ---- windows.c: where the worst window of a train can lie -------------------------------------- */
 
-/* A length of time and the most that it can hold, in pulses; of a continuous emission, in seconds. */
+/* A length of time and the most that it can hold, in pulses (of a list: energy over that of the largest pulse); of a
+ * continuous emission, in seconds. */
 struct window {
     double time_s, holds;
+    bool alone; /* it is an exposure that meets one pulse, no more */
 };
-enum { WINDOWS_MAX = 3 * EDGES_MAX + 4 };
-struct windows {
-    size_t count;
-    struct window at[WINDOWS_MAX];
-};
-void bw_hazard_windows(const struct bw_emission *emission, const struct edges *edges, double exposure_s,
-                       struct windows *windows);
+typedef enum bw_status window_visitor(const struct window *window, void *context);
+/* Regular trains and continuous emissions. Returns: what the visitor returns, as soon as it is not BW_OK. */
+enum bw_status bw_hazard_windows(const struct bw_emission *emission, const struct edges *edges, double exposure_s,
+                                 window_visitor *visit, void *context);
 
 /* ---- train_limit.c ----------------------------------------------------------------------------- */
 
@@ -44,14 +43,89 @@ void bw_hazard_windows(const struct bw_emission *emission, const struct edges *e
 struct finding {
     bool found;
     double per_unit_j_m2; /* per pulse; continuous: per second */
+    double correction;    /* in it already */
     struct window window;
     struct bw_limit limit;
 };
 struct tally {
     struct finding rules[BW_RULES];
     double least_j; /* lowest limit x aperture squared of all windows: what binds a beam narrower than the aperture */
-    double pulses, group_pulses, correction;
+    double pulses, group_pulses;
 };
+/* A window against every effect by rule 1 or 2. */
+enum bw_status bw_hazard_offer_window(const struct train_case *train, struct tally tallies[BW_EFFECTS],
+                                      enum bw_train_rule rule, const struct window *window, struct bw_error *error);
+/* A pulse or a group against every effect that rule 3 corrects. */
+enum bw_status bw_hazard_offer_train(const struct train_case *train, struct tally tallies[BW_EFFECTS],
+                                     const struct window *window, double correction, struct bw_error *error);
+/* The correction of N pulses of a duration. Returns: BW_OUT_OF_RANGE if the rule set has none. */
+enum bw_status bw_hazard_correction(const struct train_case *train, double pulse_s, double ti_s, double pulses,
+                                    double *correction, struct bw_working *working, struct bw_error *error);
+bool bw_hazard_train_applies(const struct train_case *train);
+double bw_hazard_grouping_time_s(const struct train_case *train);
+/* The time in which pulses are counted. */
+double bw_hazard_counting_time_s(const struct train_case *train);
+
+/* ---- pulse_groups.c: pulses that count as one --------------------------------------------------------- */
+
+/* Groups in the worst window of a regular train. */
+double bw_hazard_groups(const struct bw_emission *emission, double ti_s, double window_s);
+/* Pulses of a run whose neighbours are within Ti: so many Ti as begin before the last of them does. */
+double bw_hazard_groups_in_run(double pulses, double span_s, double ti_s);
+
+/* ---- list.c: a list of pulses with its sums; list_rules.c: the rules for it ---------------------- */
+
+struct list {
+    const struct bw_pulse *pulses;
+    size_t count;
+    double largest_j;     /* energy of the largest pulse */
+    double *whole, *lost; /* energy of the pulses before each: sum, and what rounding takes from it */
+};
+enum bw_status bw_hazard_list_make(const struct bw_emission *emission, struct list *list, struct bw_error *error);
+void bw_hazard_list_free(struct list *list);
+/* Length and energy of the window that opens with pulse i and closes with pulse j. */
+double bw_hazard_list_length_s(const struct list *list, size_t i, size_t j);
+double bw_hazard_list_energy_j(const struct list *list, size_t i, size_t j);
+/* The most energy in a window of a length that meets so many pulses (1 or 2) or more; 0 if none does. */
+double bw_hazard_list_most_j(const struct list *list, double length_s, size_t meets);
+/* Groups in the worst window: pulses if none are within Ti. */
+enum bw_status bw_hazard_list_groups(const struct list *list, double ti_s, double window_s, double *groups,
+                                     struct bw_error *error);
+/* All rules. */
+enum bw_status bw_hazard_list_rules(const struct train_case *train, struct tally tallies[BW_EFFECTS],
+                                    struct bw_working *working, struct bw_error *error);
+
+/* ---- laws.c: the limits between two edges, fast -------------------------------------------------- */
+
+/* One limit as a function of time, over a stretch: H, or H D^2 (what binds a beam narrower than the aperture). */
+struct law {
+    enum bw_effect effect;
+    bool narrow;
+    bool power;     /* it is scale x t^(eighths / 8); else it is evaluated each time */
+    int eighths;
+    double scale;
+};
+enum { LAWS_MAX = 2 * BW_EFFECTS };
+struct laws {
+    const struct train_case *train;
+    size_t count;
+    struct law at[LAWS_MAX];
+};
+/* varies: effects whose aperture changes with time; of the others H D^2 goes as H. */
+void bw_hazard_laws(const struct train_case *train, double from_s, double to_s, const bool varies[BW_EFFECTS],
+                    struct laws *laws);
+double bw_hazard_law(const struct laws *laws, size_t which, double time_s);
+
+/* ---- list_search.c: the worst windows of a list between two edges -------------------------------- */
+
+struct strictest { /* of one law: the window from pulse i to pulse j with the most energy for its limit */
+    bool found;
+    size_t i, j;
+    double most; /* energy over limit to beat; then that of the window */
+};
+enum bw_status bw_hazard_list_search(const struct list *list, const struct laws *laws, double from_s, double to_s,
+                                     struct strictest strictest[LAWS_MAX], struct bw_error *error);
+
 /* train_working.c */
 void bw_hazard_train_working(const struct train_case *train, const struct tally tallies[BW_EFFECTS],
                              const struct bw_train_limit_set *limits, struct bw_working *working);
@@ -98,7 +172,7 @@ void bw_hazard_bounds(const struct bw_hazard *hazard, double near_m, double far_
 /* From this distance on every term falls: beyond the last waist, and where all are points. */
 double bw_hazard_settled_m(const struct bw_hazard *hazard, size_t only);
 
-/* ---- groups.c: which emitters the eye sees together ---------------------------------------------- */
+/* ---- emitter_groups.c: which emitters the eye sees together ---------------------------------------------- */
 
 /* The smallest subtense that any rule set tells from a point [rad]: alpha_min is 1.5 mrad in all of them. */
 static const double point_rad = 1.5e-3;

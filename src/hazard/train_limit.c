@@ -21,7 +21,7 @@ static void offer(const struct train_case *train, struct tally *tally, enum bw_t
         tally->least_j = narrow;
     if (finding->found && finding->per_unit_j_m2 <= per_unit)
         return;
-    *finding = (struct finding){true, per_unit, *window, *limit};
+    *finding = (struct finding){true, per_unit, correction, *window, *limit};
 }
 
 /* Every effect's limit at the length of a window. */
@@ -31,8 +31,8 @@ static enum bw_status limits_at(const struct train_case *train, double time_s, s
     return bw_limits(train->table, train->viewing->target, &exposure, set, NULL, error);
 }
 
-static enum bw_status offer_window(const struct train_case *train, struct tally tallies[BW_EFFECTS],
-                                   enum bw_train_rule rule, const struct window *window, struct bw_error *error) {
+enum bw_status bw_hazard_offer_window(const struct train_case *train, struct tally tallies[BW_EFFECTS],
+                                      enum bw_train_rule rule, const struct window *window, struct bw_error *error) {
     struct bw_limit_set set;
     enum bw_status status = limits_at(train, window->time_s, &set, error);
     for (size_t i = 0; status == BW_OK && i < set.count; i++) {
@@ -40,7 +40,7 @@ static enum bw_status offer_window(const struct train_case *train, struct tally 
         const struct finding *single = &tally->rules[BW_RULE_SINGLE];
         double limit_j_m2 = bw_hazard_whole_limit_j_m2(&set.limits[i], train->viewing->subtense_rad);
         /* An exposure that holds one pulse is under rule 1: no lower, where the printed rows step down. */
-        if (rule == BW_RULE_AVERAGE && window->holds <= 1. && single->found && limit_j_m2 < single->per_unit_j_m2)
+        if (window->alone && single->found && limit_j_m2 < single->per_unit_j_m2)
             tally->rules[rule] = *single;
         else
             offer(train, tally, rule, &set.limits[i], window, 1.);
@@ -48,66 +48,87 @@ static enum bw_status offer_window(const struct train_case *train, struct tally 
     return status;
 }
 
+struct average_case {
+    const struct train_case *train;
+    struct tally *tallies;
+    struct bw_error *error;
+};
+
+static enum bw_status visit_window(const struct window *window, void *context) {
+    const struct average_case *average = context;
+    return bw_hazard_offer_window(average->train, average->tallies, BW_RULE_AVERAGE, window, average->error);
+}
+
 /* Rule 2: the energy of every window within the limit of its length; of a continuous emission, of the exposure. */
 static enum bw_status rule_average(const struct train_case *train, struct tally tallies[BW_EFFECTS],
                                    struct bw_error *error) {
     struct edges edges = {.count = 0};
-    struct windows windows;
+    struct average_case average = {train, tallies, error};
     enum bw_status status = train->emission->continuous ? BW_OK : bw_hazard_edges(train, &edges, error);
     if (status != BW_OK)
         return status;
-    bw_hazard_windows(train->emission, &edges, train->viewing->exposure_s, &windows);
-    for (size_t i = 0; status == BW_OK && i < windows.count; i++)
-        status = offer_window(train, tallies, BW_RULE_AVERAGE, &windows.at[i], error);
-    return status;
+    return bw_hazard_windows(train->emission, &edges, train->viewing->exposure_s, visit_window, &average);
 }
 
 /* One pulse; of a pulse longer than the exposure, what the exposure cuts from it. */
 static struct window one_pulse(const struct train_case *train) {
     double seen_s = fmin(train->emission->pulse_duration_s, train->viewing->exposure_s);
-    return (struct window){seen_s, seen_s / train->emission->pulse_duration_s};
+    return (struct window){seen_s, seen_s / train->emission->pulse_duration_s, false};
+}
+
+double bw_hazard_grouping_time_s(const struct train_case *train) {
+    double ti_s;
+    return bw_limits_grouping_time(train->table, train->emission->wavelength_nm, &ti_s, NULL) ? ti_s : 0.;
+}
+
+double bw_hazard_counting_time_s(const struct train_case *train) {
+    struct bw_exposure exposure = bw_hazard_exposure(train, train->viewing->exposure_s);
+    return fmin(exposure.exposure_s, bw_limits_counting_time(train->table, &exposure));
+}
+
+/* From the start of a pulse to that of the next, where they follow each other most closely. */
+static double closest_s(const struct bw_emission *emission) {
+    double first[BW_STARTS_MAX], closest_s = HUGE_VAL;
+    if (emission->pulse_count == 1)
+        return closest_s;
+    size_t count = bw_train_starts(emission, first);
+    for (size_t i = 0; i < count; i++)
+        closest_s = fmin(closest_s, bw_train_span_s(emission, first[i], 1.));
+    return closest_s;
 }
 
 /* Pulses that count as one because they fall inside Ti (Tmin): the most that any window of Ti holds.
  * Returns: a window of one pulse if there is no Ti or the pulses are farther apart. */
-static struct window one_group(const struct train_case *train, double *ti_s) {
+static struct window one_group(const struct train_case *train, double ti_s) {
     const struct bw_emission *emission = train->emission;
-    if (!bw_limits_grouping_time(train->table, emission->wavelength_nm, ti_s, NULL))
-        *ti_s = 0.;
-    double length_s = fmin(*ti_s, train->viewing->exposure_s);
-    if (!(emission->repetition_rate_hz * length_s >= 1.))
+    double length_s = fmin(ti_s, train->viewing->exposure_s);
+    if (!(closest_s(emission) <= length_s * (1. + 1e-12)))
         return one_pulse(train);
-    return (struct window){length_s, bw_train_window_energy(emission, length_s) / emission->pulse_energy_j};
+    return (struct window){length_s, bw_train_window_energy(emission, length_s) / emission->pulse_energy_j, false};
 }
 
 static bool is_group(const struct train_case *train, const struct window *group) {
     return group->time_s > one_pulse(train).time_s;
 }
 
-/* N: pulses, or groups of them, in the exposure or in the counting time, whichever is shorter. */
-static double counted(const struct train_case *train, const struct window *group) {
-    struct bw_exposure exposure = bw_hazard_exposure(train, train->viewing->exposure_s);
-    double time_s = fmin(exposure.exposure_s, bw_limits_counting_time(train->table, &exposure));
-    if (!is_group(train, group))
-        return bw_train_pulse_count(train->emission, time_s);
-    double groups = time_s / group->time_s;
-    return fmax(1., ceil(groups - 1e-12 * groups));
-}
-
-static struct bw_train_count train_count(const struct train_case *train, const struct window *group, double ti_s,
-                                         double pulses) {
-    return (struct bw_train_count){
-        .pulse_s = group->time_s,
+enum bw_status bw_hazard_correction(const struct train_case *train, double pulse_s, double ti_s, double pulses,
+                                    double *correction, struct bw_working *working, struct bw_error *error) {
+    struct bw_train_count count = {
+        .pulse_s = pulse_s,
         .ti_s = ti_s,
         .pulses = pulses,
         .exposure_s = train->viewing->exposure_s,
         .subtense_rad = train->viewing->subtense_rad,
     };
+    *correction = bw_limits_train_correction(train->table, &count, NULL, working);
+    if (!(*correction > 0. && *correction <= 1.))
+        return bw_error_set(error, BW_OUT_OF_RANGE, "no row of %s corrects a train of %g pulses of %g s",
+                            bw_table_id(train->table), pulses, pulse_s);
+    return BW_OK;
 }
 
-/* Rule 3 for one effect at one length: a pulse, or a group, within the limit of that length times the correction. */
-static enum bw_status offer_train(const struct train_case *train, struct tally tallies[BW_EFFECTS],
-                                  const struct window *window, double correction, struct bw_error *error) {
+enum bw_status bw_hazard_offer_train(const struct train_case *train, struct tally tallies[BW_EFFECTS],
+                                     const struct window *window, double correction, struct bw_error *error) {
     struct bw_limit_set set;
     enum bw_status status = limits_at(train, window->time_s, &set, error);
     for (size_t i = 0; status == BW_OK && i < set.count; i++)
@@ -116,7 +137,7 @@ static enum bw_status offer_train(const struct train_case *train, struct tally t
     return status;
 }
 
-static bool applies_at_all(const struct train_case *train) {
+bool bw_hazard_train_applies(const struct train_case *train) {
     for (int effect = 0; effect < BW_EFFECTS; effect++)
         if (bw_limits_train_applies(train->table, (enum bw_effect)effect, train->emission->wavelength_nm) &&
             (effect == BW_SKIN_EFFECT) == (train->viewing->target == BW_SKIN))
@@ -125,30 +146,26 @@ static bool applies_at_all(const struct train_case *train) {
 }
 
 /* Rule 3. Pulses inside Ti count as one pulse of the length Ti with all their energy; the correction goes by the
- * number of groups. Two readings of a group are kept, and the stricter holds: the group against the limit of Ti, and
- * each pulse in it against the limit of its own duration, both corrected. */
+ * number of groups (pulse_groups.c). Two readings of a group are kept, and the stricter holds: the group against the limit of
+ * Ti, and each pulse in it against the limit of its own duration, both corrected. */
 static enum bw_status rule_train(const struct train_case *train, struct tally tallies[BW_EFFECTS],
                                  struct bw_working *working, struct bw_error *error) {
-    double ti_s;
-    if (!applies_at_all(train))
+    double ti_s = bw_hazard_grouping_time_s(train), correction;
+    if (!bw_hazard_train_applies(train))
         return BW_OK;
-    struct window pulse = one_pulse(train), group = one_group(train, &ti_s);
+    struct window pulse = one_pulse(train), group = one_group(train, ti_s);
     if (!(train->emission->pulse_duration_s <= bw_limits_train_longest_pulse(train->table) * (1. + 1e-12)))
         return BW_OK;
-    double pulses = counted(train, &group);
-    struct bw_train_count count = train_count(train, &group, ti_s, pulses);
-    double correction = bw_limits_train_correction(train->table, &count, NULL, working);
-    if (!(correction > 0. && correction <= 1.))
-        return bw_error_set(error, BW_OUT_OF_RANGE, "no row of %s corrects a train of %g pulses of %g s",
-                            bw_table_id(train->table), pulses, group.time_s);
-    enum bw_status status = offer_train(train, tallies, &pulse, correction, error);
+    double pulses = bw_hazard_groups(train->emission, ti_s, bw_hazard_counting_time_s(train));
+    enum bw_status status = bw_hazard_correction(train, group.time_s, ti_s, pulses, &correction, working, error);
+    if (status == BW_OK)
+        status = bw_hazard_offer_train(train, tallies, &pulse, correction, error);
     if (status == BW_OK && is_group(train, &group))
-        status = offer_train(train, tallies, &group, correction, error);
+        status = bw_hazard_offer_train(train, tallies, &group, correction, error);
     for (size_t i = 0; i < BW_EFFECTS; i++)
         if (tallies[i].rules[BW_RULE_TRAIN].found) {
             tallies[i].pulses = pulses;
             tallies[i].group_pulses = is_group(train, &group) ? group.holds : 1.;
-            tallies[i].correction = correction;
         }
     return status;
 }
@@ -189,11 +206,12 @@ static void conclude(const struct train_case *train, const struct tally *tally, 
             lowest = fmin(lowest, finding->per_unit_j_m2);
     }
     limit->per_pulse_j_m2 = lowest * unit;
-    limit->irradiance_w_m2 = emission->continuous ? lowest : lowest * emission->repetition_rate_hz;
+    limit->irradiance_w_m2 =
+        emission->continuous ? lowest : lowest * (emission->average_power_w / emission->pulse_energy_j);
     limit->aperture_m = common_aperture_m(tally, lowest, &limit->limit);
     limit->pulses = tally->pulses;
     limit->group_pulses = tally->group_pulses;
-    limit->correction = tally->correction;
+    limit->correction = tally->rules[BW_RULE_TRAIN].found ? tally->rules[BW_RULE_TRAIN].correction : 1.;
 }
 
 static enum bw_status check(const struct train_case *train, struct bw_error *error) {
@@ -203,8 +221,9 @@ static enum bw_status check(const struct train_case *train, struct bw_error *err
                             train->viewing->exposure_s);
     if (!(emission->average_power_w > 0. && emission->average_power_w < HUGE_VAL))
         return bw_error_set(error, BW_ARGUMENT, "average power is %g W; it must be above 0", emission->average_power_w);
-    bool pulses = emission->pulse_duration_s > 0. && emission->pulse_energy_j > 0. && emission->repetition_rate_hz > 0.;
-    if (!emission->continuous && !pulses)
+    bool pulses = emission->pulse_duration_s > 0. && emission->pulse_energy_j > 0.;
+    bool follow = emission->repetition_rate_hz > 0. || emission->pulse_count == 1 || emission->pulses != NULL;
+    if (!emission->continuous && !(pulses && follow))
         return bw_error_set(error, BW_ARGUMENT, "the pulses are incomplete: %g J, %g s, %g Hz",
                             emission->pulse_energy_j, emission->pulse_duration_s, emission->repetition_rate_hz);
     return BW_OK;
@@ -213,11 +232,13 @@ static enum bw_status check(const struct train_case *train, struct bw_error *err
 static enum bw_status tally_rules(const struct train_case *train, struct tally tallies[BW_EFFECTS],
                                   struct bw_working *working, struct bw_error *error) {
     for (size_t i = 0; i < BW_EFFECTS; i++)
-        tallies[i] = (struct tally){.least_j = HUGE_VAL, .group_pulses = 1., .correction = 1.};
+        tallies[i] = (struct tally){.least_j = HUGE_VAL, .group_pulses = 1.};
     enum bw_status status = check(train, error);
+    if (status == BW_OK && train->emission->pulses != NULL)
+        return bw_hazard_list_rules(train, tallies, working, error);
     if (status == BW_OK && !train->emission->continuous) {
         struct window pulse = one_pulse(train);
-        status = offer_window(train, tallies, BW_RULE_SINGLE, &pulse, error);
+        status = bw_hazard_offer_window(train, tallies, BW_RULE_SINGLE, &pulse, error);
         if (status == BW_OK)
             status = rule_train(train, tallies, working, error);
     }

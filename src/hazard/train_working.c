@@ -37,13 +37,27 @@ static void write_rule(const struct train_case *train, const struct tally *tally
                         limit_j_m2, window->time_s);
     else if (rule == BW_RULE_TRAIN)
         bw_working_step(working, symbols[rule], value, "J/m2", source, "C H(t) / n, each pulse corrected by the train",
-                        "%.6g x %.6g J/m2 / %.9g, t = %.6g s, N = %.9g", tally->correction, limit_j_m2, window->holds,
+                        "%.6g x %.6g J/m2 / %.9g, t = %.6g s, N = %.9g", finding->correction, limit_j_m2, window->holds,
                         window->time_s, tally->pulses);
     else
         bw_working_step(working, symbols[rule], value, "J/m2", source,
                         rule == BW_RULE_SINGLE ? "H(d), each pulse by itself"
                                                : "H(t) / n, lowest over all windows of n pulses",
                         "%.6g J/m2 / %.9g, t = %.9g s", limit_j_m2, window->holds, window->time_s);
+}
+
+/* The limit of a pulse as one of the mean power: both are the same share of the pulses' own. */
+static void write_mean(const struct bw_emission *emission, const struct bw_train_limit *limit,
+                       struct bw_working *working) {
+    if (emission->pulse_count == 0 && emission->level_count == 0)
+        bw_working_step(working, "E_limit", limit->irradiance_w_m2, "W/m2", NULL, "H f", "%.6g J/m2 x %.9g Hz",
+                        limit->per_pulse_j_m2, emission->repetition_rate_hz);
+    else
+        bw_working_step(working, "E_limit", limit->irradiance_w_m2, "W/m2", NULL,
+                        emission->pulse_count > 0 ? "H P / Q, P the mean from the first pulse to the end of the last"
+                                                  : "H P / Q, P the mean of all bursts and gaps",
+                        "%.6g J/m2 x %.9g W / %.9g J", limit->per_pulse_j_m2, emission->average_power_w,
+                        emission->pulse_energy_j);
 }
 
 static void write_effect(const struct train_case *train, const struct tally *tally, const struct bw_train_limit *limit,
@@ -58,8 +72,7 @@ static void write_effect(const struct train_case *train, const struct tally *tal
         bw_working_step(working, "E_limit", limit->irradiance_w_m2, "W/m2", NULL, "H / t_e", "%.6g J/m2 / %.9g s",
                         limit->per_pulse_j_m2, train->viewing->exposure_s);
     else
-        bw_working_step(working, "E_limit", limit->irradiance_w_m2, "W/m2", NULL, "H f", "%.6g J/m2 x %.9g Hz",
-                        limit->per_pulse_j_m2, train->emission->repetition_rate_hz);
+        write_mean(train->emission, limit, working);
     if (limit->aperture_m < limit->limit.aperture_m)
         bw_working_step(
             working, "D", limit->aperture_m, "m", NULL,

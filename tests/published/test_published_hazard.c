@@ -30,7 +30,7 @@ static void compare(double got, double printed, double per_cent, double half_dig
 
 static struct bw_emission emission_of(double wavelength_nm, double power_w, double energy_j, double duration_s,
                                       double rate_hz) {
-    struct bw_emission_input input = {wavelength_nm, power_w, NONE, energy_j, duration_s, rate_hz};
+    struct bw_emission_input input = {wavelength_nm, power_w, NONE, energy_j, duration_s, rate_hz, NULL};
     struct bw_emission emission;
     struct bw_error error = {.status = BW_OK};
     if (bw_emission_resolve(&input, &emission, &error) != BW_OK)

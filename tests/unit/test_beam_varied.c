@@ -46,7 +46,7 @@ static struct varied_case {
 
 static void test_varied(void **state) {
     const struct varied_case *c = *state;
-    struct bw_emission_input given = {810, c->average_w, c->peak_w, c->energy_j, c->duration_s, c->rate_hz};
+    struct bw_emission_input given = {810, c->average_w, c->peak_w, c->energy_j, c->duration_s, c->rate_hz, NULL};
     struct bw_emission emission;
     struct bw_error error = {.status = BW_OK};
     if (bw_emission_varied(&given, c->power, c->duration, c->rate, &emission, &error) != BW_OK)
@@ -59,9 +59,65 @@ static void test_varied(void **state) {
     assert_true(emission.continuous == !(c->want_duration_s > 0));
 }
 
+/* Bursts of pulses of 1 mJ, 1 kHz, 10 in 10 ms, every 100 ms: 0.1 W in the mean. */
+static struct burst_case {
+    const char *name;
+    struct bw_emission_input given;
+    struct bw_timing timing;
+    double power, duration, rate;
+    double want_average_w, want_energy_j, want_duration_s, want_rate_hz, want_holds;
+} bursts[] = {
+    {"bursts: as given", {810, NONE, NONE, 1e-3, 1e-6, 1e3, NULL}, {NONE, .01, .1, NONE, NONE, NONE, NONE, NULL, 0},
+     1, 1, 1, .1, 1e-3, 1e-6, 1e3, 10},
+    {"bursts: power", {810, NONE, NONE, 1e-3, 1e-6, 1e3, NULL}, {NONE, .01, .1, NONE, NONE, NONE, NONE, NULL, 0},
+     1.2, 1, 1, .12, 1.2e-3, 1e-6, 1e3, 10},
+    {"bursts: more given than needed, the power is that while on", {810, 1, 1e3, 1e-3, 1e-6, 1e3, NULL},
+     {NONE, .01, .1, NONE, NONE, NONE, NONE, NULL, 0}, 1, 2, 1, .1, 1e-3, 2e-6, 1e3, 10},
+    {"bursts: four given, no rate", {810, 1, 1e3, 1e-3, 1e-6, NONE, NULL},
+     {NONE, .01, .1, NONE, NONE, NONE, NONE, NULL, 0}, 1, 2, 1, .1, 1e-3, 2e-6, 1e3, 10},
+    {"bursts: of a length hold more pulses at a higher rate", {810, NONE, NONE, 1e-3, 1e-6, 1e3, NULL},
+     {NONE, .01, .1, NONE, NONE, NONE, NONE, NULL, 0}, 1, 1, 1.5, .15, 1e-3, 1e-6, 1.5e3, 15},
+    {"bursts: of so many pulses are shorter at a higher rate", {810, NONE, NONE, 1e-3, 1e-6, 1e3, NULL},
+     {NONE, .01, .1, 10, NONE, NONE, NONE, NULL, 0}, 1, 1, 1.5, .1, 1e-3, 1e-6, 1.5e3, 10},
+    {"bursts: the rate was not given and stays", {810, NONE, NONE, 1e-3, 1e-6, NONE, NULL},
+     {NONE, .01, .1, 10, NONE, NONE, NONE, NULL, 0}, 1, 1, 1.5, .1, 1e-3, 1e-6, 1e3, 10},
+    {"bursts of one: pulses overlap only with the next burst", {810, NONE, NONE, 1e-3, 9e-4, 1e3, NULL},
+     {NONE, NONE, .1, 1, NONE, NONE, NONE, NULL, 0}, 1, 1.5, 1, .01, 1e-3, 1e-3, 10, 0},
+};
+
+static void test_bursts(void **state) {
+    const struct burst_case *c = *state;
+    struct bw_emission_input given = c->given;
+    struct bw_emission emission;
+    struct bw_error error = {.status = BW_OK};
+    given.timing = &c->timing;
+    if (bw_emission_varied(&given, c->power, c->duration, c->rate, &emission, &error) != BW_OK)
+        fail_msg("%s", error.text);
+    expect("average", emission.average_power_w, c->want_average_w);
+    expect("energy", emission.pulse_energy_j, c->want_energy_j);
+    expect("duration", emission.pulse_duration_s, c->want_duration_s);
+    expect("rate", emission.repetition_rate_hz, c->want_rate_hz);
+    expect("holds", emission.level_count > 0 ? emission.levels[0].holds : 0, c->want_holds);
+}
+
+static void test_varied_list(void **state) {
+    (void)state;
+    const struct bw_pulse pulses[] = {{0, .1, .2}, {.5, .2, .6}};
+    struct bw_timing timing = bw_timing_none();
+    struct bw_emission_input given = {810, NONE, NONE, NONE, NONE, NONE, &timing};
+    struct bw_emission emission;
+    timing.pulses = pulses;
+    timing.pulses_given = 2;
+    assert_int_equal(bw_emission_varied(&given, 1.5, 2, 2, &emission, NULL), BW_OK);
+    expect("average", emission.average_power_w, 1.5 * .8 / .7);
+    expect("energy", emission.pulse_energy_j, .9);
+    expect("duration", emission.pulse_duration_s, .2);
+    expect("window", bw_train_window_energy(&emission, 1), 1.2);
+}
+
 static void test_not_a_factor(void **state) {
     (void)state;
-    struct bw_emission_input given = {810, 8, NONE, NONE, NONE, NONE};
+    struct bw_emission_input given = {810, 8, NONE, NONE, NONE, NONE, NULL};
     struct bw_emission emission;
     assert_int_equal(bw_emission_varied(&given, -1, 1, 1, &emission, NULL), BW_ARGUMENT);
     assert_true(isnan(emission.average_power_w));
@@ -88,12 +144,15 @@ static void test_beam(void **state) {
 }
 
 int main(void) {
-    struct CMUnitTest tests[COUNT(varied) + COUNT(beams) + 1];
+    struct CMUnitTest tests[COUNT(varied) + COUNT(beams) + COUNT(bursts) + 2];
     size_t count = 0;
     for (size_t i = 0; i < COUNT(varied); i++)
         tests[count++] = (struct CMUnitTest){varied[i].name, test_varied, NULL, NULL, &varied[i]};
     for (size_t i = 0; i < COUNT(beams); i++)
         tests[count++] = (struct CMUnitTest){beams[i].name, test_beam, NULL, NULL, &beams[i]};
+    for (size_t i = 0; i < COUNT(bursts); i++)
+        tests[count++] = (struct CMUnitTest){bursts[i].name, test_bursts, NULL, NULL, &bursts[i]};
+    tests[count++] = (struct CMUnitTest){"of a list only the power", test_varied_list, NULL, NULL, NULL};
     tests[count++] = (struct CMUnitTest){"a factor below 0", test_not_a_factor, NULL, NULL, NULL};
     return _cmocka_run_group_tests("beam varied", tests, count, NULL, NULL) == 0 ? EXIT_SUCCESS : EXIT_FAILURE;
 }

@@ -28,14 +28,14 @@ static double uniform(uint64_t *random) {
 }
 
 static void add_beam(struct bw_output *output, double wavelength_nm, double power_w, struct bw_beam beam) {
-    struct bw_emission_input input = {wavelength_nm, power_w, NONE, NONE, NONE, NONE};
+    struct bw_emission_input input = {wavelength_nm, power_w, NONE, NONE, NONE, NONE, NULL};
     assert_int_equal(bw_emission_resolve(&input, &output->emissions[output->count], NULL), BW_OK);
     output->beams[output->count++] = beam;
 }
 
 static void add_train(struct bw_output *output, double wavelength_nm, double peak_w, double duration_s, double rate_hz,
                       struct bw_beam beam) {
-    struct bw_emission_input input = {wavelength_nm, NONE, peak_w, NONE, duration_s, rate_hz};
+    struct bw_emission_input input = {wavelength_nm, NONE, peak_w, NONE, duration_s, rate_hz, NULL};
     assert_int_equal(bw_emission_resolve(&input, &output->emissions[output->count], NULL), BW_OK);
     output->beams[output->count++] = beam;
 }

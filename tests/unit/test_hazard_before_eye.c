@@ -22,7 +22,7 @@ static void near(double got, double want, double relative, const char *what) {
 
 static struct bw_output output_of(double wavelength_nm, double power_w, double diameter_m, double divergence_rad) {
     struct bw_output output = {.count = 1};
-    struct bw_emission_input input = {wavelength_nm, power_w, NONE, NONE, NONE, NONE};
+    struct bw_emission_input input = {wavelength_nm, power_w, NONE, NONE, NONE, NONE, NULL};
     assert_int_equal(bw_emission_resolve(&input, &output.emissions[0], NULL), BW_OK);
     output.beams[0] = (struct bw_beam)ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, diameter_m, divergence_rad, 0., diameter_m);
     return output;
@@ -153,7 +153,7 @@ static void test_diffuse_steps(void **state) {
     for (size_t i = 0; i < COUNT(magnifications); i++) {
         double m = magnifications[i];
         struct bw_output output = {.count = 1};
-        struct bw_emission_input input = {650, NONE, 1100. / .72, NONE, .24, 3.};
+        struct bw_emission_input input = {650, NONE, 1100. / .72, NONE, .24, 3., NULL};
         struct bw_aid aid = {.magnification = m, .objective_m = 1., .band_count = 1, .bands = {{600, 700, 1. / m / m}}};
         struct bw_spot spot = {.reflectance = 1., .diameter_m = {.1 / m}};
         struct bw_hazard hazard;
@@ -279,15 +279,15 @@ static struct corner_case {
     enum bw_target target;
     const char *rules;
 } corners[] = {
-    {"peak given", {905, NONE, 75, NONE, 150e-9, 1e4}, 0, 0.1, 0.2, BW_EYE, "icnirp-2013"},
-    {"peak and power", {905, NONE, 75, NONE, 150e-9, 1e4}, 0.2, 0.1, 0.2, BW_EYE, "iec-60825-1-2014"},
-    {"average given", {905, 0.5, NONE, NONE, 150e-9, 1e4}, 0.1, 0.3, 0.3, BW_EYE, "eu-2006-25"},
-    {"long pulses", {810, 5, NONE, NONE, 5e-3, 50}, 0.1, 0.3, 0.3, BW_EYE, "icnirp-2013"},
-    {"across Ti", {810, 5, NONE, NONE, 5.2e-6, 1e4}, 0, 0.1, 0.1, BW_EYE, "iec-60825-1-2014"},
-    {"duration alone", {810, 5, NONE, NONE, 5.2e-6, 1e4}, 0, 0.1, 0, BW_EYE, "iec-60825-1-2014"},
-    {"energy given, skin", {1064, NONE, NONE, 0.02, 12e-9, 11}, 0.2, 0.5, 0.2, BW_SKIN, "icnirp-2013"},
-    {"apertures that switch", {1550, NONE, NONE, 0.5, 0.3, 1.2}, 0, 0.4, 0.2, BW_EYE, "icnirp-2013"},
-    {"continuous: nothing to vary", {810, 8, NONE, NONE, NONE, NONE}, 0.2, 0, 0, BW_EYE, "icnirp-2013"},
+    {"peak given", {905, NONE, 75, NONE, 150e-9, 1e4, NULL}, 0, 0.1, 0.2, BW_EYE, "icnirp-2013"},
+    {"peak and power", {905, NONE, 75, NONE, 150e-9, 1e4, NULL}, 0.2, 0.1, 0.2, BW_EYE, "iec-60825-1-2014"},
+    {"average given", {905, 0.5, NONE, NONE, 150e-9, 1e4, NULL}, 0.1, 0.3, 0.3, BW_EYE, "eu-2006-25"},
+    {"long pulses", {810, 5, NONE, NONE, 5e-3, 50, NULL}, 0.1, 0.3, 0.3, BW_EYE, "icnirp-2013"},
+    {"across Ti", {810, 5, NONE, NONE, 5.2e-6, 1e4, NULL}, 0, 0.1, 0.1, BW_EYE, "iec-60825-1-2014"},
+    {"duration alone", {810, 5, NONE, NONE, 5.2e-6, 1e4, NULL}, 0, 0.1, 0, BW_EYE, "iec-60825-1-2014"},
+    {"energy given, skin", {1064, NONE, NONE, 0.02, 12e-9, 11, NULL}, 0.2, 0.5, 0.2, BW_SKIN, "icnirp-2013"},
+    {"apertures that switch", {1550, NONE, NONE, 0.5, 0.3, 1.2, NULL}, 0, 0.4, 0.2, BW_EYE, "icnirp-2013"},
+    {"continuous: nothing to vary", {810, 8, NONE, NONE, NONE, NONE, NULL}, 0.2, 0, 0, BW_EYE, "icnirp-2013"},
 };
 
 static double ratio_of(const struct corner_case *c, double power, double duration, double rate, double distance_m) {

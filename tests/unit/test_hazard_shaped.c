@@ -31,7 +31,7 @@ static double uniform(uint64_t *random) {
 
 static void add(struct bw_output *output, double wavelength_nm, double power_w, double duration_s, double rate_hz,
                 struct bw_beam beam) {
-    struct bw_emission_input input = {wavelength_nm, power_w, NONE, NONE, duration_s, rate_hz};
+    struct bw_emission_input input = {wavelength_nm, power_w, NONE, NONE, duration_s, rate_hz, NULL};
     struct bw_error error = {.status = BW_OK};
     if (bw_emission_resolve(&input, &output->emissions[output->count], &error) != BW_OK)
         fail_msg("%s", error.text);

@@ -22,7 +22,7 @@ static void near(double got, double want, double relative, const char *what) {
 }
 
 static struct bw_emission pulses(double wavelength_nm, double duration_s, double rate_hz) {
-    struct bw_emission_input input = {wavelength_nm, NONE, NONE, 1e-3, duration_s, rate_hz};
+    struct bw_emission_input input = {wavelength_nm, NONE, NONE, 1e-3, duration_s, rate_hz, NULL};
     struct bw_emission emission;
     struct bw_error error = {.status = BW_OK};
     if (bw_emission_resolve(&input, &emission, &error) != BW_OK)
@@ -31,7 +31,7 @@ static struct bw_emission pulses(double wavelength_nm, double duration_s, double
 }
 
 static struct bw_emission steady(double wavelength_nm) {
-    struct bw_emission_input input = {wavelength_nm, 1., NONE, NONE, NONE, NONE};
+    struct bw_emission_input input = {wavelength_nm, 1., NONE, NONE, NONE, NONE, NULL};
     struct bw_emission emission;
     assert_int_equal(bw_emission_resolve(&input, &emission, NULL), BW_OK);
     return emission;

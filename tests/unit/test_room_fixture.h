@@ -49,7 +49,7 @@ static inline void prepare(struct handpiece *handpiece, double diffuse_s) {
 /* One continuous emission at 810 nm. */
 static inline void lamp(struct handpiece *handpiece, double power_w, double exit_m, double divergence_rad) {
     memset(handpiece, 0, sizeof *handpiece);
-    struct bw_emission_input input = {810, power_w, (double)NAN, (double)NAN, (double)NAN, (double)NAN};
+    struct bw_emission_input input = {810, power_w, (double)NAN, (double)NAN, (double)NAN, (double)NAN, NULL};
     struct bw_error error = {BW_OK, ""};
     assert_int_equal(bw_emission_resolve(&input, &handpiece->output.emissions[0], &error), BW_OK);
     handpiece->output.count = 1;
@@ -60,9 +60,9 @@ static inline void lamp(struct handpiece *handpiece, double power_w, double exit
 /* Three wavelengths, one of them superpulsed, as in the design. */
 static inline void trident(struct handpiece *handpiece) {
     memset(handpiece, 0, sizeof *handpiece);
-    struct bw_emission_input inputs[3] = {{810, 8, (double)NAN, (double)NAN, (double)NAN, (double)NAN},
-                                          {905, (double)NAN, 75, (double)NAN, 150e-9, 10000},
-                                          {650, 0.002, (double)NAN, (double)NAN, (double)NAN, (double)NAN}};
+    struct bw_emission_input inputs[3] = {{810, 8, (double)NAN, (double)NAN, (double)NAN, (double)NAN, NULL},
+                                          {905, (double)NAN, 75, (double)NAN, 150e-9, 10000, NULL},
+                                          {650, 0.002, (double)NAN, (double)NAN, (double)NAN, (double)NAN, NULL}};
     struct bw_error error = {BW_OK, ""};
     for (size_t i = 0; i < 3; i++) {
         assert_int_equal(bw_emission_resolve(&inputs[i], &handpiece->output.emissions[i], &error), BW_OK);
