@@ -5,8 +5,8 @@
 #include <stdio.h>
 #include <string.h>
 
-static const char *seconds_words(char out[BW_NUMBER_SIZE], double exposure_s) {
-    snprintf(out, BW_NUMBER_SIZE, "%.6g", exposure_s); /* as given: an input, not a result */
+static const char *as_given(char out[BW_NUMBER_SIZE], double value) {
+    snprintf(out, BW_NUMBER_SIZE, "%.6g", value); /* as given: an input, not a result */
     return out;
 }
 
@@ -28,7 +28,7 @@ static void skin(const struct assess_job *job, const char *subject, const struct
     assess_finding(job, BW_CAUTION, subject,
                    "Skin in the beam for %s s gets up to %s times the skin limit; the hazard reaches %s. Keep hands "
                    "and all skin that is not treated out of the beam.",
-                   seconds_words(seconds, distance->skin_time.exposure_s),
+                   as_given(seconds, distance->skin_time.exposure_s),
                    bw_format(times, distance->skin_ratio_at_exit, 2, BW_UP),
                    bw_length_words(reach, distance->skin.distance_m, job->the_case->us_units));
 }
@@ -40,7 +40,7 @@ static void diffuse(const struct assess_job *job, const char *subject, const str
     assess_finding(job, BW_CAUTION, subject,
                    "Looking for %s s at the lit spot on a white matt surface is above the eye limit up to %s from "
                    "it: whoever only watches needs goggles too.",
-                   seconds_words(seconds, distance->diffuse_time.exposure_s),
+                   as_given(seconds, distance->diffuse_time.exposure_s),
                    bw_length_words(reach, distance->diffuse.distance_m, job->the_case->us_units));
 }
 
@@ -51,14 +51,14 @@ static void exposure(const struct assess_job *job, const char *subject, const st
             job, distance->glance.exposure_s >= distance->customary.exposure_s ? BW_NOTE : BW_CAUTION, subject,
             "The exposure time, %s s, comes from the case file; customary for an accidental glance is %s "
             "s%s",
-            seconds_words(given, distance->glance.exposure_s), seconds_words(customary, distance->customary.exposure_s),
+            as_given(given, distance->glance.exposure_s), as_given(customary, distance->customary.exposure_s),
             distance->glance.exposure_s >= distance->customary.exposure_s ? "." : ". Write down why it is shorter.");
     if (distance->glance.aversion_response)
         assess_finding(job, BW_NOTE, subject,
                        "The exposure time of %s s for visible light rests on the aversion response (blinking, turning "
                        "away). The German radiation protection commission (SSK, 15 March 2006) says that newer results "
                        "do not bear this assumption out.",
-                       seconds_words(given, distance->glance.exposure_s));
+                       as_given(given, distance->glance.exposure_s));
 }
 
 static void definition(const struct assess_job *job, const char *subject, const struct bw_distance_result *distance) {
@@ -79,7 +79,7 @@ static void shape(const struct assess_job *job, const char *subject, const struc
         assess_finding(job, BW_NOTE, subject,
                        "Ratios and densities at the exit hold %s mm in front of it, where the spacer ends: it must "
                        "always be fitted. Distances count from the exit.",
-                       bw_format(number, 1e3 * distance->nearest_m, 6, BW_NEAREST));
+                       as_given(number, 1e3 * distance->nearest_m));
 }
 
 static void meter(const struct assess_job *job) {
