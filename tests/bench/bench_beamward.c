@@ -111,7 +111,7 @@ static void set_output(struct bw_output *output, size_t count, int pulsed) {
     output->count = count;
     for (size_t i = 0; i < count; i++) {
         struct bw_emission_input input = {wavelengths_nm[i], (double)NAN, (double)NAN,
-                                          (double)NAN,       (double)NAN, (double)NAN};
+                                          (double)NAN,       (double)NAN, (double)NAN, NULL};
         input.average_power_w = 1 + (double)i;
         if (pulsed) {
             input.pulse_duration_s = 200e-9;
