@@ -27,7 +27,8 @@ PROGRAM = $(BUILD)/beamward
 UNIT_TESTS = $(patsubst tests/unit/%.c,$(BUILD)/tests/unit/%,$(wildcard tests/unit/test_*.c))
 PUBLISHED_TESTS = $(patsubst tests/published/%.c,$(BUILD)/tests/published/%,$(wildcard tests/published/test_*.c))
 FILE_TESTS = $(patsubst tests/%.c,$(BUILD)/tests/%,$(wildcard tests/reference/test_*.c tests/mutation/test_*.c \
-                                                              tests/bad_cases/test_*.c tests/cli/test_*.c))
+                                                              tests/bad_cases/test_*.c tests/cli/test_*.c \
+                                                              tests/faults/test_*.c tests/tablec/test_*.c))
 TESTS = $(UNIT_TESTS) $(PUBLISHED_TESTS) $(FILE_TESTS)
 
 .PHONY: all demo test tests run-tests check clang sanitize bench coverage demo-run packages-build packages-test packages-check packages-bench clean help
@@ -195,9 +196,14 @@ $(BUILD)/tests/unit/test_%: $(BUILD)/testobj/unit/test_%.o $$(call archives_from
 $(BUILD)/tests/%: $(BUILD)/testobj/%.o $(call archives_from,report)
 	@mkdir -p $(@D)
 	$(SAY)$(CC) $(CFLAGS) $^ $(LIBS) -lcmocka -lgsl -lgslcblas -lm -o $@
+# Memory that runs short: the test stands between the program and the allocator.
+$(BUILD)/tests/faults/%: $(BUILD)/testobj/faults/%.o $(call archives_from,report)
+	@mkdir -p $(@D)
+	$(SAY)$(CC) $(CFLAGS) -Wl,--wrap=malloc -Wl,--wrap=calloc -Wl,--wrap=realloc -Wl,--wrap=free $^ $(LIBS) -lcmocka -lm -o $@
+$(BUILD)/tests/tablec/test_tablec: | $(TABLEC)
 $(BUILD)/testobj/%.o: tests/%.c
 	@mkdir -p $(@D)
-	$(COMPILE) -Itests -DTEST_PROGRAM='"$(PROGRAM)"' -c $< -o $@
+	$(COMPILE) -Itests -DTEST_PROGRAM='"$(PROGRAM)"' -DTEST_TABLEC='"$(TABLEC)"' -c $< -o $@
 
 -include $(shell find $(BUILD) -name '*.d' 2>/dev/null)
 

@@ -45,11 +45,10 @@ static double read_number(struct material_reading *reading, const struct bw_ini_
     return 0.0;
 }
 
+/* A key without a value does not read. */
 static void read_text(struct material_reading *reading, const struct bw_ini_entry *entry, char out[BW_TITLE_SIZE]) {
     if (snprintf(out, BW_TITLE_SIZE, "%s", entry->value) >= BW_TITLE_SIZE)
         fault(reading, entry, "is too long; wants at most 199 bytes");
-    else if (out[0] == '\0')
-        fault(reading, entry, "is empty; wants a text");
 }
 
 static void read_finish(struct material_reading *reading, const struct bw_ini_entry *entry) {
@@ -131,7 +130,8 @@ static void end_material(struct material_reading *reading) {
     if (coated) {
         missing(reading, KEY_REFRACTIVE_INDEX);
         double n = material->refractive_index, fresnel = (n - 1.0) / (n + 1.0) * ((n - 1.0) / (n + 1.0));
-        if (n >= 1.0 && !(material->reflectance >= fresnel && material->reflectance <= fresnel * 1.1))
+        if (n >= 1.0 && !(material->reflectance >= fresnel * (1.0 - limits_edge_rounding) &&
+                          material->reflectance <= fresnel * 1.1))
             bw_faults_add(reading->faults, reading->line, "materials", "reflectance",
                           "of [material %s] does not fit its refractive index; wants %.3g or a little more",
                           material->name, fresnel);

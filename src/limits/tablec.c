@@ -491,7 +491,7 @@ static enum bw_status read_rule_set(struct inputs *inputs, const struct bw_ini *
 
 static enum bw_status read_triples(struct inputs *inputs, const struct bw_ini *ini, struct bw_faults *faults,
                                    struct bw_error *error) {
-    const char *first = ini->count == 0 ? "" : ini->entries[0].section;
+    const char *first = ini->entries[0].section; /* a file without one does not read */
     if (strcmp(first, "table") == 0)
         return read_rule_set(inputs, ini, faults, error);
     if (strcmp(first, "materials") == 0 && inputs->materials == NULL)
@@ -535,7 +535,7 @@ static int write_file(const struct inputs *inputs, const char *path) {
     }
     write_all(out, inputs);
     bool failed = ferror(out) != 0;
-    failed = fclose(out) != 0 || failed;
+    failed |= fclose(out) != 0;
     if (failed || rename(beside, path) != 0) {
         perror(path);
         remove(beside);
