@@ -53,6 +53,7 @@ static const struct time_row *choose(const struct bw_table *table, enum bw_viewi
         first = TIME_ALIGNMENT;
         break;
     case BW_WORKING_DAY:
+    default: /* the longest is the safe side */
         return for_all(table, TIME_WORKING_DAY, wavelengths_nm, count);
     }
     const struct time_row *row = for_any(table, TIME_ULTRAVIOLET, wavelengths_nm, count);

@@ -292,7 +292,7 @@ const char *bw_limits_span(char out[LIMITS_SPAN_SIZE], const struct span *span);
 
 struct memory; /* memory.c: blocks that are freed together */
 struct memory *bw_limits_memory_new(void);
-void *bw_limits_memory_take(struct memory *memory, size_t count, size_t size); /* zeroed; NULL if short */
+void *bw_limits_memory_take(struct memory *memory, size_t count, size_t size); /* size > 0; zeroed; NULL if short */
 const char *bw_limits_memory_copy(struct memory *memory, const char *string);
 void bw_limits_memory_free(struct memory *memory);
 

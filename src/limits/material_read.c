@@ -86,6 +86,7 @@ static void read_value(struct material_reading *reading, const struct bw_ini_ent
         read_text(reading, entry, material->source);
         break;
     case KEY_KNOWN:
+    default:
         material->known = strcmp(entry->value, "read") == 0 ? BW_READ : BW_MEMORY;
         if (strcmp(entry->value, "read") != 0 && strcmp(entry->value, "memory") != 0)
             fault(reading, entry, "unknown word; wants read or memory");

@@ -18,7 +18,7 @@ struct memory *bw_limits_memory_new(void) {
 }
 
 void *bw_limits_memory_take(struct memory *memory, size_t count, size_t size) {
-    if (size != 0 && count > (SIZE_MAX - sizeof(struct block)) / size)
+    if (count > (SIZE_MAX - sizeof(struct block)) / size)
         return NULL;
     struct block *block = calloc(1, sizeof *block + count * size);
     if (block == NULL)

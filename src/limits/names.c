@@ -64,23 +64,23 @@ const char *bw_limits_number(char out[LIMITS_NUMBER_SIZE], double value) {
         snprintf(out, LIMITS_NUMBER_SIZE, "%s", isnan(value) ? "n/a" : "unbounded");
         return out;
     }
-    for (; digits <= 17; digits++) {
+    for (;; digits++) {
         snprintf(text, sizeof text, "%.*e", digits - 1, value);
         double back = strtod(text, NULL);
-        if (!(back < value) && !(back > value))
+        if (digits == 17 || (!(back < value) && !(back > value)))
             break;
     }
     char *mark = strchr(text, 'e');
-    int exponent = mark == NULL ? 0 : (int)strtol(mark + 1, NULL, 10);
+    int exponent = (int)strtol(mark + 1, NULL, 10);
     int decimals = digits - 1 - exponent;
     snprintf(out, LIMITS_NUMBER_SIZE, "%.*f", decimals > 0 ? decimals : 0, value);
     /* As the tables are printed: 1e4, 5e-3, 1e-13, but 1000, 0.25 and 400. */
     bool plain = exponent > -3 && exponent < 4;
-    if (mark != NULL && !plain) {
+    if (!plain) {
         char scientific[LIMITS_NUMBER_SIZE];
         *mark = '\0';
         snprintf(scientific, sizeof scientific, "%.24se%d", text, exponent);
-        if (strlen(scientific) <= strlen(out) || exponent < -6 || exponent > 9)
+        if (strlen(scientific) <= strlen(out) || exponent > 9)
             memcpy(out, scientific, sizeof scientific);
     }
     return out;

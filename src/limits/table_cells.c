@@ -17,18 +17,16 @@ void bw_cells_fault(struct cells *cells, const char *format, ...) {
     bw_faults_add(cells->faults, cells->entry->line, cells->entry->section, cells->entry->key, "%s", text);
 }
 
-/* Copies the text from..to without the blanks around it. Returns: false if it does not fit. */
-static bool copy_trimmed(char out[CELL_SIZE], const char *from, const char *to) {
+/* Copies the text from..to without the blanks around it; cut, should it not fit. Returns: its whole length. */
+static size_t copy_trimmed(char out[CELL_SIZE], const char *from, const char *to) {
     while (from < to && isspace((unsigned char)*from))
         from++;
     while (to > from && isspace((unsigned char)to[-1]))
         to--;
-    size_t length = (size_t)(to - from);
-    if (length >= CELL_SIZE)
-        return false;
-    memcpy(out, from, length);
-    out[length] = '\0';
-    return true;
+    size_t length = (size_t)(to - from), kept = length < CELL_SIZE ? length : CELL_SIZE - 1;
+    memcpy(out, from, kept);
+    out[kept] = '\0';
+    return length;
 }
 
 static size_t count_columns(const char *text) {
@@ -46,7 +44,7 @@ bool bw_cells_split(struct cells *cells, const struct bw_ini_entry *entry, struc
     cells->good = true;
     cells->count = 0;
     size_t want = count_columns(columns), have = count_columns(entry->value);
-    if (have != want || have > CELLS_MAX) {
+    if (have != want) { /* no reader wants more than CELLS_MAX */
         bw_cells_fault(cells, "has %zu columns; wants %zu: %s", have, want, columns);
         return false;
     }
@@ -55,7 +53,7 @@ bool bw_cells_split(struct cells *cells, const struct bw_ini_entry *entry, struc
         const char *to = strchr(from, '|');
         if (to == NULL)
             to = from + strlen(from);
-        if (!copy_trimmed(cells->cell[i], from, to))
+        if (copy_trimmed(cells->cell[i], from, to) >= CELL_SIZE)
             bw_cells_fault(cells, "column %zu is longer than %d characters; shorten it", i + 1, CELL_SIZE - 1);
         else if (cells->cell[i][0] == '\0')
             bw_cells_fault(cells, "column %zu is empty; wants %zu: %s", i + 1, want, columns);
@@ -71,7 +69,8 @@ static double parse_quotient(const char *text) {
     const char *slash = strchr(text, '/');
     if (slash == NULL)
         return bw_parse_number(text, &value) ? value : limits_nan;
-    if (!copy_trimmed(top, text, slash) || !bw_parse_number(top, &dividend) || !bw_parse_number(slash + 1, &divisor))
+    copy_trimmed(top, text, slash);
+    if (!bw_parse_number(top, &dividend) || !bw_parse_number(slash + 1, &divisor))
         return limits_nan;
     return dividend / divisor;
 }
@@ -108,8 +107,9 @@ bool bw_cells_span_texts(struct cells *cells, size_t column, const char *what, c
         to++;
     open->open_low = *from == '>';
     open->open_high = *to == '<';
-    return copy_trimmed(low, from + (open->open_low ? 1 : 0), dots) &&
-           copy_trimmed(high, to + (open->open_high ? 1 : 0), text + strlen(text));
+    copy_trimmed(low, from + (open->open_low ? 1 : 0), dots); /* parts of a cell fit into one */
+    copy_trimmed(high, to + (open->open_high ? 1 : 0), text + strlen(text));
+    return true;
 }
 
 struct span bw_cells_span(struct cells *cells, size_t column, const char *what, double low, double high, int allowed) {
@@ -141,12 +141,10 @@ size_t bw_cells_word(struct cells *cells, size_t column, const char *what, const
             return i;
     const char *nearest = bw_nearest_name(word, words, count);
     char list[CELL_SIZE] = "";
-    for (size_t i = 0, length = 0; i < count && length < sizeof list; i++)
-        length += (size_t)snprintf(list + length, sizeof list - length, "%s%s",
-                                   i == 0           ? ""
-                                   : i + 1 == count ? " or "
-                                                    : ", ",
-                                   words[i]);
+    for (size_t i = 0; i < count; i++) {
+        size_t length = strlen(list);
+        snprintf(list + length, sizeof list - length, "%s%s", i == 0 ? "" : i + 1 == count ? " or " : ", ", words[i]);
+    }
     if (nearest != NULL && strlen(word) > 2)
         bw_cells_fault(cells, "unknown %s '%s'; did you mean %s?", what, word, nearest);
     else

@@ -40,9 +40,9 @@ size_t bw_check_sort_edges(double *values, size_t count) {
     return kept;
 }
 
-/* Without rounding: the checker asks beside an edge, not at it. */
+/* Without rounding: the checker asks beside an edge, not at it. Wavelengths and subtenses never open below. */
 static bool exactly_in(const struct span *span, double x) {
-    return (span->open_low ? x > span->low : x >= span->low) && (span->open_high ? x < span->high : x <= span->high);
+    return x >= span->low && (span->open_high ? x < span->high : x <= span->high);
 }
 
 static bool tile_holds(const struct tiling *tiling, const struct tile *tile, double wavelength_nm, double time_s) {
@@ -110,12 +110,8 @@ static void check_times(struct tiling *tiling, double wavelength_nm, const doubl
         const struct tile *tile = i < tiling->count ? &tiling->tiles[i] : &tiling->cover;
         if (!exactly_in(&tile->wavelength_nm, wavelength_nm))
             continue;
-        double from = bw_limits_edge_s(tiling->table, &tile->from, wavelength_nm, tiling->subtense_mrad);
-        double to = bw_limits_edge_s(tiling->table, &tile->to, wavelength_nm, tiling->subtense_mrad);
-        if (from > 0.0 && to > 0.0) {
-            times[count++] = from;
-            times[count++] = to;
-        }
+        times[count++] = bw_limits_edge_s(tiling->table, &tile->from, wavelength_nm, tiling->subtense_mrad);
+        times[count++] = bw_limits_edge_s(tiling->table, &tile->to, wavelength_nm, tiling->subtense_mrad);
     }
     count = bw_check_sort_edges(times, count);
     for (size_t i = 0; i + 1 < count; i++)

@@ -26,6 +26,13 @@ static void check_factor_rows(const struct bw_table *table, const struct factor 
         const struct factor_row *before = &table->factor_rows[i - 1], *row = &table->factor_rows[i];
         check_follows(factor->section, &before->note, &before->argument, &row->note, &row->argument, faults);
     }
+    for (size_t i = factor->first; i < factor->first + factor->count; i++) { /* from end to end it rises or falls */
+        const struct factor_row *row = &table->factor_rows[i];
+        if (!isfinite(bw_limits_factor_row(row, row->argument.low)) ||
+            !isfinite(bw_limits_factor_row(row, row->argument.high)))
+            bw_faults_add(faults, row->note.line, factor->section, row->note.key,
+                          "is beyond all numbers at an end of the row; wants a smaller slope");
+    }
 }
 
 static bool factor_reaches(const struct bw_table *table, int index, const struct span *wavelength_nm) {
@@ -33,16 +40,25 @@ static bool factor_reaches(const struct bw_table *table, int index, const struct
     if (factor->count == 0)
         return true; /* reported */
     double low = table->factor_rows[factor->first].argument.low;
-    double high = table->factor_rows[factor->first + factor->count - 1].argument.high;
+    const struct span *last = &table->factor_rows[factor->first + factor->count - 1].argument;
     if (factor->argument == BY_SUBTENSE_MRAD)
-        return low <= 0.0 && high >= limits_subtense_high_mrad;
-    return low <= wavelength_nm->low && high >= wavelength_nm->high;
+        return low <= 0.0 && last->high >= limits_subtense_high_mrad;
+    bool stops_short = last->open_high && !wavelength_nm->open_high;
+    return low <= wavelength_nm->low &&
+           (stops_short ? last->high > wavelength_nm->high : last->high >= wavelength_nm->high);
 }
 
 static void check_use(const struct bw_table *table, int factor, const struct limit_row *row, struct bw_faults *faults) {
     if (factor >= 0 && !factor_reaches(table, factor, &row->wavelength_nm))
         bw_faults_add(faults, row->note.line, table->sections[row->section].name, row->note.key,
                       "factor %s does not reach over the whole row", table->factors[factor].name);
+}
+
+static void check_cover(const struct bw_table *table, int factor, const struct limit_section *section,
+                        struct bw_faults *faults) {
+    if (factor >= 0 && !factor_reaches(table, factor, &section->wavelength_nm))
+        bw_faults_add(faults, section->covers_line, section->name, "covers",
+                      "factor %s does not reach over the whole section", table->factors[factor].name);
 }
 
 void bw_check_factors(const struct bw_table *table, struct bw_faults *faults) {
@@ -56,6 +72,11 @@ void bw_check_factors(const struct bw_table *table, struct bw_faults *faults) {
         for (size_t j = 0; j < row->use_count; j++)
             check_use(table, row->uses[j].factor, row, faults);
     }
+    for (size_t i = 0; i < table->section_count; i++)
+        if (table->sections[i].covers_line != 0) {
+            check_cover(table, table->sections[i].from.factor, &table->sections[i], faults);
+            check_cover(table, table->sections[i].to.factor, &table->sections[i], faults);
+        }
     int counting = table->repetition.counting_factor;
     if (counting >= 0 && !factor_reaches(table, counting, &all))
         bw_faults_add(faults, table->repetition.count_note.line, "repetition", "count",

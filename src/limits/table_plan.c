@@ -29,10 +29,9 @@ struct planning {
 
 /* ---- cuts ------------------------------------------------------------------------------------- */
 
-/* The two numbers from which on bw_limits_in_span() answers otherwise. */
+/* The two numbers from which on bw_limits_in_span() answers otherwise. No wavelength or time opens below. */
 static void cut_span(const struct span *span, double *cuts, size_t *count) {
-    double low = span->low * (span->open_low ? 1.0 + limits_edge_rounding : 1.0 - limits_edge_rounding);
-    cuts[(*count)++] = span->open_low ? nextafter(low, limits_infinity) : low;
+    cuts[(*count)++] = span->low * (1.0 - limits_edge_rounding);
     cuts[(*count)++] =
         span->open_high ? span->high : nextafter(span->high * (1.0 + limits_edge_rounding), limits_infinity);
 }
@@ -210,7 +209,7 @@ static bool uses_source_size(const struct limit_row *row) {
 
 static bool takes_any_source(const struct limit_section *section) {
     return section->subtense_mrad.low <= 0.0 && section->subtense_mrad.high >= limits_subtense_high_mrad &&
-           section->area_m2.low <= 0.0 && !(section->area_m2.high < limits_infinity);
+           section->area_m2.low <= 0.0; /* a condition on the area begins above 0 */
 }
 
 static struct held_row resolve(const struct planning *planning, const struct limit_row *row, double wavelength_nm,

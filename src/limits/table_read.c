@@ -114,12 +114,10 @@ static void register_factors(struct reading *reading) {
 }
 
 static void begin_factor(struct reading *reading, const struct bw_ini_entry *entry) {
-    reading->factor = NULL;
-    for (size_t i = 0; i < reading->table->factor_count; i++)
+    for (size_t i = 0; i < reading->table->factor_count; i++) /* all are registered */
         if (reading->factors[i].line == entry->line && strcmp(reading->factors[i].section, entry->section) == 0)
             reading->factor = &reading->factors[i];
-    if (reading->factor != NULL)
-        reading->factor->first = reading->table->factor_row_count;
+    reading->factor->first = reading->table->factor_row_count;
 }
 
 /* Sections that carry a name or an effect. */
@@ -199,6 +197,7 @@ static void read_key(struct reading *reading, const struct bw_ini_entry *entry) 
         bw_reading_fault(reading, entry, "stands before the first section; wants [table] first");
         break;
     case SECTION_UNKNOWN: /* reported at its head */
+    default:
         break;
     }
 }

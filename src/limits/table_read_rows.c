@@ -20,8 +20,6 @@ static void read_factor_argument(struct reading *reading, const struct bw_ini_en
 
 void bw_read_factor(struct reading *reading, const struct bw_ini_entry *entry) {
     struct cells cells;
-    if (reading->factor == NULL)
-        return;
     if (strcmp(entry->key, "argument") == 0) {
         read_factor_argument(reading, entry);
         return;

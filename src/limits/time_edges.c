@@ -11,7 +11,7 @@ struct edges {
 /* Inserts in order, once. */
 static void add(struct edges *edges, double value) {
     size_t at = 0;
-    if (isnan(value) || !(value >= 0.0))
+    if (!(value >= 0.0))
         return;
     while (at < edges->count && edges->values[at] < value * (1.0 - limits_edge_rounding))
         at++;

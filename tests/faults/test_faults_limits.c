@@ -119,9 +119,8 @@ static void test_job(void **state) {
     struct bw_ini ini = {0};
     struct bw_faults faults = {0};
     struct bw_error error = {0};
-    enum bw_status status = job->path != NULL
-                                ? bw_ini_read(job->path, &ini, NULL, &faults, &error)
-                                : bw_ini_read_bytes(job->text, strlen(job->text), &ini, &faults, &error);
+    enum bw_status status = job->path != NULL ? bw_ini_read(job->path, &ini, NULL, &faults, &error)
+                                              : bw_ini_read_bytes(job->text, strlen(job->text), &ini, &faults, &error);
     assert_int_equal(status, BW_OK);
     memory.taken = memory.fails_at = 0;
     long live = memory.live;
@@ -144,10 +143,21 @@ static void test_job(void **state) {
     bw_faults_free(&faults);
 }
 
+/* More bytes than there are addresses. */
+static void test_impossible(void **state) {
+    (void)state;
+    struct memory *few = bw_limits_memory_new();
+    assert_non_null(few);
+    assert_null(bw_limits_memory_take(few, SIZE_MAX / 4, 8));
+    bw_limits_memory_free(few);
+}
+
 int main(void) {
     enum { JOBS = sizeof jobs / sizeof jobs[0] };
-    struct CMUnitTest tests[JOBS];
+    struct CMUnitTest tests[JOBS + 1];
     for (size_t i = 0; i < JOBS; i++)
         tests[i] = (struct CMUnitTest){jobs[i].name, test_job, NULL, NULL, &jobs[i]};
-    return cmocka_run_group_tests_name("limits with memory short", tests, NULL, NULL) == 0 ? EXIT_SUCCESS : EXIT_FAILURE;
+    tests[JOBS] = (struct CMUnitTest){"an impossible size", test_impossible, NULL, NULL, NULL};
+    return cmocka_run_group_tests_name("limits with memory short", tests, NULL, NULL) == 0 ? EXIT_SUCCESS
+                                                                                           : EXIT_FAILURE;
 }

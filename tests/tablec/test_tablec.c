@@ -23,8 +23,8 @@ static char tablec[PATH_SIZE], tables[PATH_SIZE]; /* whole paths: a row's folder
     "[material pane]\ntitle = a pane\nfinish = glass\nrefractive_index = 1.5\nreflectance = 0.04\n"                    \
     "transmittance = 0.92\nsource = invented for this test\nknown = memory\n"
 #define OF_A_WALL(keys) HEAD "[material wall]\n" keys "source = invented for this test\nknown = memory\n"
-#define GOOD_KEYS "title = a wall\nfinish = matt\nreflectance = 0.9\ntransmittance = 0\n"
-#define COPY "cp \"$TABLES\"/icnirp-2013.ini a.ini; "
+#define GOOD_KEYS       "title = a wall\nfinish = matt\nreflectance = 0.9\ntransmittance = 0\n"
+#define COPY            "cp \"$TABLES\"/icnirp-2013.ini a.ini; "
 
 struct row {
     const char *name;
@@ -46,8 +46,7 @@ static struct row rows[] = {
     {"a refusal after a failure of the system", "[zebra]\n", "ln -s b.ini b.ini", "--out out.c b.ini in.ini", 3,
      "b.ini:0: cannot be opened: Too many levels of symbolic links\n"
      "in.ini:0: unknown kind of table [zebra]; wants [table] or one [materials] first\n"},
-    {"empty", "", NULL, "--out out.c in.ini", 2,
-     "in.ini:0: empty: no section in it; the first line could be [case]\n"},
+    {"empty", "", NULL, "--out out.c in.ini", 2, "in.ini:0: empty: no section in it; the first line could be [case]\n"},
     {"a key before all sections", "id = x\n[table]\n", NULL, "--out out.c in.ini", 2,
      "in.ini:1: id: key before any section; begin with [case] or [table]\n"},
     {"unknown kind", "[zebra]\n", NULL, "--out out.c in.ini", 2,
@@ -59,6 +58,9 @@ static struct row rows[] = {
     {"33 rule sets", NULL,
      COPY "i=10; while [ $i -le 42 ]; do sed \"s/^id .*/id = t$i/\" a.ini >t$i.ini; i=$((i + 1)); done",
      "--out out.c t*.ini", 2, "t42.ini:0: more than 32 rule sets\n"},
+    {"a rule set with faults", "[table]\nid = A b\ntitle = t\nsource = s\n", NULL, "--out out.c in.ini", 2,
+     "in.ini:0: [table] edition: is missing; a rule set must name its edition\n"
+     "in.ini:0: [table] id: 'A b' is not a name; wants a-z, 0-9 and hyphen\n"},
     /* outputs */
     {"no such folder", HEAD WALL, NULL, "--out none/out.c in.ini", 3, "none/out.c.part: No such file or directory\n"},
     {"a full disk", HEAD WALL, COPY "ln -s /dev/full out.c.part", "--out out.c in.ini a.ini", 3,
@@ -77,8 +79,8 @@ static struct row rows[] = {
      "in.ini:4: [material a_b] : unknown section; wants material NAME, with a-z, 0-9 and hyphen\n"},
     {"another section", HEAD WALL "[factor ca]\n", NULL, "--out out.c in.ini", 2,
      "in.ini:10: [factor ca] : unknown section; wants material NAME, with a-z, 0-9 and hyphen\n"},
-    {"long name", HEAD WALL "[material a-name-that-is-so-long-that-no-report-has-a-column-that-would-take-it-in]\n", NULL,
-     "--out out.c in.ini", 2,
+    {"long name", HEAD WALL "[material a-name-that-is-so-long-that-no-report-has-a-column-that-would-take-it-in]\n",
+     NULL, "--out out.c in.ini", 2,
      "in.ini:10: [material a-name-that-is-so-long-that-no-report-has-a-column-that-would-take-it-in] : unknown "
      "section; wants material NAME, with a-z, 0-9 and hyphen\n"},
     {"no materials", HEAD, NULL, "--out out.c in.ini", 2, "in.ini:0: the materials have 0 faults\n"},
@@ -93,16 +95,15 @@ static struct row rows[] = {
     {"reflectance above 1", OF_A_WALL("title = a wall\nfinish = matt\nreflectance = 1.01\ntransmittance = 0\n"), NULL,
      "--out out.c in.ini", 2, "in.ini:6: [material wall] reflectance: '1.01' is not a number from 0 to 1\n"},
     {"transmittance below 0", OF_A_WALL("title = a wall\nfinish = matt\nreflectance = 0.9\ntransmittance = -0.1\n"),
-     NULL, "--out out.c in.ini", 2,
-     "in.ini:7: [material wall] transmittance: '-0.1' is not a number from 0 to 1\n"},
-    {"known by hearsay",
-     HEAD "[material wall]\n" GOOD_KEYS "source = invented for this test\nknown = hearsay\n", NULL,
+     NULL, "--out out.c in.ini", 2, "in.ini:7: [material wall] transmittance: '-0.1' is not a number from 0 to 1\n"},
+    {"known by hearsay", HEAD "[material wall]\n" GOOD_KEYS "source = invented for this test\nknown = hearsay\n", NULL,
      "--out out.c in.ini", 2, "in.ini:9: [material wall] known: unknown word; wants read or memory\n"},
     {"title empty", OF_A_WALL("title =\nfinish = matt\nreflectance = 0.9\ntransmittance = 0\n"), NULL,
      "--out out.c in.ini", 2, "in.ini:4: [material wall] title: has no value; write one or remove the key\n"},
     {"title of 200 bytes", NULL,
      "{ printf '[materials]\\ntitle = invented\\n[material wall]\\ntitle = %0200d\\n' 0; "
-     "printf 'finish = matt\\nreflectance = 0.9\\ntransmittance = 0\\nsource = invented\\nknown = memory\\n'; } >in.ini",
+     "printf 'finish = matt\\nreflectance = 0.9\\ntransmittance = 0\\nsource = invented\\nknown = memory\\n'; } "
+     ">in.ini",
      "--out out.c in.ini", 2, "in.ini:4: [material wall] title: is too long; wants at most 199 bytes\n"},
     {"key missing", OF_A_WALL("title = a wall\nfinish = matt\nreflectance = 0.9\n"), NULL, "--out out.c in.ini", 2,
      "in.ini:3: [materials] transmittance: is missing in [material wall]\n"},
