@@ -12,6 +12,8 @@
 #include <sys/wait.h>
 #include <unistd.h>
 
+#include "unit/small_table.h"
+
 enum { PATH_SIZE = 512, COMMAND_SIZE = 16384, TEXT_SIZE = 16384 };
 static char tablec[PATH_SIZE], tables[PATH_SIZE]; /* whole paths: a row's folder is the current one */
 
@@ -198,18 +200,47 @@ static void test_materials_written(void **state) {
     static char text[TEXT_SIZE];
     (void)state;
     assert_non_null(mkdtemp(folder));
-    write_input(folder, HEAD WALL GLASS "[material a]\ntitle = a \"b\" c\\d \xc3\xa4 ?\?= e\nfinish = matt\n"
+    write_input(folder, HEAD WALL GLASS "[material a]\ntitle = a \"b\" c\\d \xc3\xa4 ?\?=\te\nfinish = matt\n"
                                         "reflectance = 0.5\ntransmittance = 0\nsource = invented\nknown = read\n");
     assert_int_equal(run(folder, "--out out.c in.ini", says), 0);
     assert_string_equal(says, "");
     read_output(folder, text, sizeof text);
-    const char *a = strstr(text, "{\"a\", \"a \\\"b\\\" c\\\\d \\303\\244 \\077\\077= e\", BW_MATT, 0.5, 0.5, 0, 0, "
-                                 "\"invented\", BW_READ},\n");
+    const char *a =
+        strstr(text, "{\"a\", \"a \\\"b\\\" c\\\\d \\303\\244 \\077\\077=\\011e\", BW_MATT, 0.5, 0.5, 0, 0, "
+                     "\"invented\", BW_READ},\n");
     const char *pane = strstr(text, "{\"pane\", \"a pane\", BW_GLASS, ");
     const char *wall = strstr(text, "{\"wall\", \"a wall\", BW_MATT, ");
     if (a == NULL || pane == NULL || wall == NULL)
         fail_msg("%s", text);
     assert_true(a < pane && pane < wall);
+    snprintf(away, sizeof away, "rm -r %s", folder);
+    shell("/tmp", away);
+}
+
+/* A rule set without cones, sums of the eye alone: C has no empty arrays. */
+static void test_table_written(void **state) {
+    char folder[] = "/tmp/beamward-tablec-XXXXXX", says[TEXT_SIZE], away[PATH_SIZE], text[TEXT_SIZE];
+    static char out[1 << 20];
+    static const char photochemical[] = "[eye retina-photochemical]", skin[] = "[skin]", second[] = "r02 = retina-ph",
+                      third[] = "r03 = skin", cone[] = "[cone]", repetition[] = "[repetition]", eye[] = "| eye skin |";
+    (void)state;
+    assert_non_null(mkdtemp(folder));
+    const char *at = small_table;
+    const char *stops[] = {strstr(at, photochemical), strstr(at, skin),       strstr(at, second), strstr(at, third),
+                           strstr(at, cone),          strstr(at, repetition), strstr(at, eye)};
+    for (size_t i = 0; i < 7; i++)
+        assert_non_null(stops[i]);
+    snprintf(text, sizeof text, "%.*s%.*sr02%.*s%.*s| skin |%s", (int)(stops[0] - at), at, (int)(stops[2] - stops[1]),
+             stops[1], (int)(stops[4] - stops[3] - 3), stops[3] + 3, (int)(stops[6] - stops[5]), stops[5],
+             stops[6] + strlen(eye));
+    write_input(folder, text);
+    int code = run(folder, "--out out.c in.ini", says);
+    assert_string_equal(says, "");
+    assert_int_equal(code, 0);
+    read_output(folder, out, sizeof out);
+    assert_non_null(strstr(out, "static const struct size_row t0_cones[1] = {\n    {0},\n};\n"));
+    assert_non_null(strstr(out, ".cone_count = 0,"));
+    assert_non_null(strstr(out, ", false, true, ")); /* the sum: not the eye, the skin */
     snprintf(away, sizeof away, "rm -r %s", folder);
     shell("/tmp", away);
 }
@@ -230,7 +261,7 @@ static void test_long_path(void **state) {
 
 int main(void) {
     enum { ROWS = sizeof rows / sizeof rows[0] };
-    static struct CMUnitTest tests[ROWS + 2];
+    static struct CMUnitTest tests[ROWS + 3];
     char here[PATH_SIZE / 2];
     if (getcwd(here, sizeof here) == NULL)
         return EXIT_FAILURE;
@@ -241,5 +272,6 @@ int main(void) {
         tests[i] = (struct CMUnitTest){rows[i].name, test_refused, NULL, NULL, &rows[i]};
     tests[ROWS] = (struct CMUnitTest){"materials written", test_materials_written, NULL, NULL, NULL};
     tests[ROWS + 1] = (struct CMUnitTest){"a path too long", test_long_path, NULL, NULL, NULL};
+    tests[ROWS + 2] = (struct CMUnitTest){"a table written", test_table_written, NULL, NULL, NULL};
     return cmocka_run_group_tests_name("tablec", tests, NULL, NULL) == 0 ? EXIT_SUCCESS : EXIT_FAILURE;
 }
