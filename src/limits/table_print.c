@@ -47,11 +47,8 @@ static void print_wrapped(const struct printer *printer, const char *label, cons
 }
 
 /* One row: what it says, and where that is printed; the place on a line of its own if it does not fit. */
-static void print_row(const struct printer *printer, char line[LINE_SIZE], const struct row_note *note) {
+static void print_row(const struct printer *printer, const char line[LINE_SIZE], const struct row_note *note) {
     char place[LINE_SIZE] = "";
-    size_t end = strlen(line);
-    while (end > 0 && line[end - 1] == ' ')
-        line[--end] = '\0';
     append(place, "%s%s", note->clause, note->known == BW_MEMORY ? " *" : "");
     bw_text_add(printer->out, "  %s", line);
     size_t used = 2 + strlen(line), width = strlen(note->clause) + 2; /* clauses end in one column, the marks after */

@@ -217,7 +217,7 @@ static void test_materials_written(void **state) {
     shell("/tmp", away);
 }
 
-/* A rule set without cones, sums of the eye alone: C has no empty arrays. */
+/* A rule set without cones, sums of one target each: C has no empty arrays. */
 static void test_table_written(void **state) {
     char folder[] = "/tmp/beamward-tablec-XXXXXX", says[TEXT_SIZE], away[PATH_SIZE], text[TEXT_SIZE];
     static char out[1 << 20];
@@ -230,9 +230,9 @@ static void test_table_written(void **state) {
                            strstr(at, cone),          strstr(at, repetition), strstr(at, eye)};
     for (size_t i = 0; i < 7; i++)
         assert_non_null(stops[i]);
-    snprintf(text, sizeof text, "%.*s%.*sr02%.*s%.*s| skin |%s", (int)(stops[0] - at), at, (int)(stops[2] - stops[1]),
-             stops[1], (int)(stops[4] - stops[3] - 3), stops[3] + 3, (int)(stops[6] - stops[5]), stops[5],
-             stops[6] + strlen(eye));
+    snprintf(text, sizeof text, "%.*s%.*sr02%.*s%.*s| eye | F | memory\nr02 = 400 .. 1400 | 400 .. 1400 | skin |%s",
+             (int)(stops[0] - at), at, (int)(stops[2] - stops[1]), stops[1], (int)(stops[4] - stops[3] - 3),
+             stops[3] + 3, (int)(stops[6] - stops[5]), stops[5], stops[6] + strlen(eye));
     write_input(folder, text);
     int code = run(folder, "--out out.c in.ini", says);
     assert_string_equal(says, "");
@@ -240,7 +240,8 @@ static void test_table_written(void **state) {
     read_output(folder, out, sizeof out);
     assert_non_null(strstr(out, "static const struct size_row t0_cones[1] = {\n    {0},\n};\n"));
     assert_non_null(strstr(out, ".cone_count = 0,"));
-    assert_non_null(strstr(out, ", false, true, ")); /* the sum: not the eye, the skin */
+    assert_non_null(strstr(out, "}, true, false, {\"r01\"")); /* the sums: the eye, then the skin */
+    assert_non_null(strstr(out, "}, false, true, {\"r02\""));
     snprintf(away, sizeof away, "rm -r %s", folder);
     shell("/tmp", away);
 }

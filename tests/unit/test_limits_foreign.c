@@ -218,6 +218,56 @@ static struct variant variants[] = {
      NULL,
      {BW_SKIN, {800.0, 1.0, 0.0, 0.0}, BW_SKIN_EFFECT, 6339.5727698444538}, /* 4000 10^0.2 */
      "2 * 10^(0.002 (w - 700))"},
+    {"sizes of sources of no use",
+     {{"2e-3 | 0 | ca ce", "2e-3 | 0 | ca"},
+      {"18 | 0.75 | ce", "18 | 0.75 | -"},
+      {"18 | 0.75 | ca ce", "18 | 0.75 | ca"},
+      {"18 | 0.75 | ca ce", "18 | 0.75 | ca"},
+      {"18 | 0 | ca ce t2", "18 | 0 | ca t2"},
+      {"0 .. amax", "0 .. 100"},
+      {">amax", ">100"}},
+     "source size",
+     NULL,
+     {BW_EYE, {650.0, 1.0, 0.0, 0.0}, BW_RETINA_THERMAL, 18.0},
+     "18 t^0.75"},
+    {"sizes of sources of use to trains only",
+     {{"2e-3 | 0 | ca ce", "2e-3 | 0 | ca"},
+      {"18 | 0.75 | ce", "18 | 0.75 | -"},
+      {"18 | 0.75 | ca ce", "18 | 0.75 | ca"},
+      {"18 | 0.75 | ca ce", "18 | 0.75 | ca"},
+      {"18 | 0 | ca ce t2", "18 | 0 | ca t2"},
+      {"r02 = long | 0 .. amax | 1 .. | 0 .. | 1 | -0.25 | 0.4",
+       "r02 = long | >amax .. 1571 | 1 .. | 0 .. | 1 | 0 | 0"},
+      {"r03 = long | >amax .. 1571 | 1 .. | 0 .. | 1 | 0 | 0",
+       "r03 = long | 0 .. amax | 1 .. | 0 .. | 1 | -0.25 | 0.4"}},
+     ">alpha_max .. 1571 mrad",
+     NULL,
+     {BW_EYE, {650.0, 1.0, 0.0, 0.0}, BW_RETINA_THERMAL, 18.0},
+     "18 t^0.75"},
+    {"a factor open beyond all rows",
+     {{"r02 = 700 .. 1400 | 0 | 1", "r02 = 700 .. <1500 | 0 | 1"}},
+     "700 .. <1500",
+     NULL,
+     {BW_SKIN, {800.0, 1.0, 0.0, 0.0}, BW_SKIN_EFFECT, 3169.7863849222269}, /* 2000 10^0.2 */
+     "2000 CA"},
+    {"the later section open above",
+     {{"area_m2 = 0.1 ..\ncovers = 400 .. 1400", "area_m2 = 0.1 ..\ncovers = 400 .. <1400"},
+      {"r01 = 400 .. 1400 | 10 .. 3e4 | E | 10 | 0 | area", "r01 = 400 .. <1400 | 10 .. 3e4 | E | 10 | 0 | area"}},
+     "400 .. <1400",
+     NULL,
+     {BW_SKIN, {500.0, 100.0, 0.0, 0.5}, BW_SKIN_EFFECT, 2000.0},
+     "10 AREA^-1"},
+    {"skin in two bands, the later one higher",
+     {{"[skin]\ncovers = 400 .. 1400", "[skin]\ncovers = 400 .. <700"},
+      {"area_m2 = 0.1 ..\ncovers = 400 .. 1400", "area_m2 = 0.1 ..\ncovers = 400 .. <700"},
+      {"r01 = 400 .. 1400 | 10 .. 3e4 | E | 10 | 0 | area", "r01 = 400 .. <700 | 10 .. 3e4 | E | 10 | 0 | area"},
+      {SKIN_ROW,
+       "r01 = 400 .. <700 | 1e-13 .. 3e4 | E | 1000 | 0 | - | C | read\n[skin high]\n"
+       "covers = 700 .. 1400 | 1e-13 .. 3e4\nr01 = 700 .. 1400 | 1e-13 .. 3e4 | E | 2000 | 0 | - | C | read\n"}},
+     "skin high",
+     NULL,
+     {BW_SKIN, {800.0, 2.0, 0.0, 0.0}, BW_SKIN_EFFECT, 4000.0},
+     "2000"},
     {"a clause as long as a line",
      {{"| ca | C | read\n[skin",
        "| ca | a clause that is as long as a whole line of the page, or longer than that, it seems | read\n[skin"}},
@@ -330,6 +380,11 @@ static void test_train(void **state) {
     if (c->formula != NULL) {
         assert_int_equal(working.count, 1);
         assert_string_equal(working.steps[0].formula, c->formula);
+        struct bw_text page = {0};
+        assert_int_equal(bw_table_print(table, &page), BW_OK);
+        if (strstr(page.data, c->formula) == NULL)
+            fail_msg("does not print '%s':\n%s", c->formula, page.data);
+        bw_text_free(&page);
     }
     bw_working_free(&working);
     bw_table_free(table);
@@ -462,8 +517,7 @@ static struct flood floods[] = {
     {"65535 cones", "cone", "r", "1000 .. 2000 | 1 .. 2 | 1 | 0 | A | read", 65535, 0.0},
     {"65535 rows of alpha_max", "source-size", "max_", "1 .. 2 | 1 | 0 | A | read", 65535, 0.0},
     {"65534 wavelengths", "factor a", "r", "%.1f .. 20000 | 1 | 0 | 0 | 0 | A | read", 65534, 0.2},
-    {"65534 times of apertures", "aperture", "r",
-     "skin | 1000 .. 2000 | %.1f .. 20000 | 1 | 0 | A | read", 65534, 0.2},
+    {"65534 times of apertures", "aperture", "r", "skin | 1000 .. 2000 | %.1f .. 20000 | 1 | 0 | A | read", 65534, 0.2},
 };
 
 static char *print_flood(const struct flood *flood, size_t row) {
