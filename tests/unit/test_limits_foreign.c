@@ -268,6 +268,27 @@ static struct variant variants[] = {
      NULL,
      {BW_SKIN, {800.0, 2.0, 0.0, 0.0}, BW_SKIN_EFFECT, 4000.0},
      "2000"},
+    {"a factor in the power 3/4",
+     {{"E | 2000 | 0 | ca", "E | 2000 | 0 | ca^0.75"}},
+     "E = 2000 CA^0.75 W/m2",
+     NULL,
+     {BW_SKIN, {800.0, 1.0, 0.0, 0.0}, BW_SKIN_EFFECT, 2825.0750892455089}, /* 2000 10^0.15 */
+     "2000 CA^0.75"},
+    {"a factor in the power 3/8",
+     {{"E | 2000 | 0 | ca", "E | 2000 | 0 | ca^0.375"}},
+     "E = 2000 CA^0.375 W/m2",
+     NULL,
+     {BW_SKIN, {800.0, 1.0, 0.0, 0.0}, BW_SKIN_EFFECT, 2377.004454874037}, /* 2000 10^0.075 */
+     "2000 CA^0.375"},
+    {"cones in two bands, two of them at one time",
+     {{"r01 = 400 .. 600 | 10 .. 3e4 | 11 | 0 | D | memory",
+       "r01 = 400 .. 500 | 10 .. 3e4 | 11 | 0 | D | memory\nr02 = 500 .. 600 | 10 .. 100 | 11 | 0 | D | memory\n"
+       "r03 = 500 .. 600 | 100 .. 3e4 | 1.1 | 0.5 | D | memory"}},
+     "1.1 t^0.5 mrad",
+     NULL,
+     /* 1.1 100^0.5 = 11 mrad too: 1e6 pi/4 0.011^2 */
+     {BW_EYE, {550.0, 100.0, 0.0, 0.0}, BW_RETINA_PHOTOCHEMICAL, 95.033177771091248},
+     "1e6 pi/4 gamma^2"},
     {"a clause as long as a line",
      {{"| ca | C | read\n[skin",
        "| ca | a clause that is as long as a whole line of the page, or longer than that, it seems | read\n[skin"}},
