@@ -114,6 +114,7 @@ struct bw_room_result {
     size_t source_count;
     size_t *sources; /* indices into distances */
     bool solved;     /* false without BW_PART_ROOM: persons only, no map, no openings */
+    struct bw_working working; /* of the persons' places and openings; empty unless options.working */
     struct bw_room_solution solution;
     struct bw_person_result *persons;
 };
@@ -129,6 +130,36 @@ struct bw_incident_result {
     struct bw_permitted_time eye, skin; /* how long it would have taken to reach the limit */
     struct bw_working working;
 };
+struct bw_result;
+/* The distances of one handpiece by one rule set. */
+struct bw_rule_cell {
+    struct bw_result *result; /* of this handpiece alone; NULL if the rule set has no row for it */
+    char *reason;             /* then why */
+};
+/* One column a rule set, the primary one first, then the others in order of id. */
+struct bw_comparison {
+    size_t table_count, handpiece_count; /* as the result's distances */
+    const struct bw_table **tables;
+    struct bw_rule_cell *cells; /* [handpiece][table] */
+    char **sentences;           /* [handpiece]: why the columns differ */
+};
+const struct bw_rule_cell *bw_comparison_cell(const struct bw_comparison *comparison, size_t handpiece, size_t table);
+/* NULL if the rule set has no row. */
+const struct bw_distance_result *bw_comparison_distance(const struct bw_comparison *comparison, size_t handpiece,
+                                                        size_t table);
+
+/* What one rule set says of an exposure, for a sentence that compares: by which rule and row it governs. */
+struct bw_column {
+    const struct bw_table *table;
+    bool out_of_range;
+    double figure;          /* what is compared: equal figures need no reason */
+    double exposure_s, wavelength_nm;
+    struct bw_train_limit limit;
+    bool has_train;         /* a train of pulses: the rule that governs counts */
+};
+/* "They differ because eu-2006-25 governs by N^-0.25 (train) ..., icnirp-2013 by the average ...". Appends. */
+bool bw_columns_differ(const struct bw_column *columns, size_t count);
+void bw_column_words(struct bw_text *out, const struct bw_column *columns, size_t count, const char *what);
 
 enum bw_severity { BW_DANGER, BW_ACTION, BW_CAUTION, BW_NOTE };
 const char *bw_severity_name(enum bw_severity severity); /* "danger", "action", "caution", "note" */
@@ -148,6 +179,8 @@ struct bw_result {
     struct bw_incident_result *incidents;
     struct bw_finding *findings; /* in order of severity */
     bool needs_action;           /* any finding of danger or action */
+    struct bw_working eyewear_working; /* of the goggles; empty unless options.working */
+    struct bw_comparison *comparison; /* with options.all_rules, else NULL */
 };
 
 enum bw_part { BW_PART_DISTANCE = 1, BW_PART_EYEWEAR = 2, BW_PART_ROOM = 4, BW_PART_INCIDENT = 8, BW_PART_ALL = 15 };
@@ -158,6 +191,7 @@ struct bw_assess_options {
     size_t at_count;
     double at_m[BW_PLACES_MAX]; /* permitted exposure times at these distances */
     bool working;
+    bool all_rules;             /* also by every other rule set, side by side */
 };
 /* Returns: BW_OK; BW_OUT_OF_RANGE (a wavelength that the rule set lacks; names the emission); BW_INPUT (a name that the
  * case lacks; offers the nearest); BW_NO_MEMORY. */

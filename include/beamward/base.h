@@ -168,10 +168,11 @@ struct bw_step {
     bool heading;   /* then only `formula` holds text */
     char *symbol;   /* "CA" */
     char *formula;  /* "10^(0.002 (w - 700))" */
-    char *numbers;  /* "10^(0.002 (810 - 700))"; may be empty */
+    char *numbers;  /* "10^(0.002 * (810 - 700))": gives the value on a pocket calculator; empty if it is an input or searched */
     double value;   /* as the evaluation used it */
     char *unit;     /* "J/m2"; may be empty */
     char *source;   /* "icnirp-2013, factor ca r02, Table 4, from memory"; may be empty */
+    char *note;     /* what is assumed, or how it was found, in words; may be empty */
 };
 struct bw_working {
     struct bw_step *steps;
@@ -179,9 +180,14 @@ struct bw_working {
     bool failed;
 };
 void bw_working_heading(struct bw_working *working, const char *format, ...) BW_PRINTF(2, 3);
-/* formula and numbers may be NULL. */
+/* formula and numbers may be NULL. In numbers stand + - * / ^ ( ) pi and sqrt exp ln log10 atan min max floor ceil,
+ * numbers to ten digits; every other word belongs into the note. */
 void bw_working_step(struct bw_working *working, const char *symbol, double value, const char *unit,
                      const char *source, const char *formula, const char *numbers, ...) BW_PRINTF(7, 8);
+/* Adds words to the last step. */
+void bw_working_note(struct bw_working *working, const char *format, ...) BW_PRINTF(2, 3);
+/* A number for the numbers of a step: ten digits, as short as it can be. Returns: out. */
+const char *bw_working_number(char out[BW_NUMBER_SIZE], double value);
 void bw_working_free(struct bw_working *working);
 
 #ifdef __cplusplus

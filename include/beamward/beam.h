@@ -166,6 +166,10 @@ double bw_beam_fraction(const struct bw_beam *beam, double distance_m, double ap
 /* Mean irradiance over the aperture at the beam's centre, per watt [1/m2]. aperture 0 = peak irradiance. Of a
  * cluster: as if all power left one emitter, which no place exceeds. */
 double bw_beam_irradiance_per_w(const struct bw_beam *beam, double distance_m, double aperture_m);
+/* The same two with a step each. */
+double bw_beam_diameter_working(const struct bw_beam *beam, double distance_m, struct bw_working *working);
+double bw_beam_irradiance_working(const struct bw_beam *beam, double distance_m, double aperture_m,
+                                  struct bw_working *working);
 /* Upper bound of the mean irradiance over an aperture whose centre is off the axis by offset_m, per watt;
  * equals bw_beam_irradiance_per_w at offset 0 and never rises with the offset. */
 double bw_beam_irradiance_off_axis_per_w(const struct bw_beam *beam, double distance_m, double aperture_m,

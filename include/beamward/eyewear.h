@@ -65,6 +65,11 @@ void bw_eyewear_judge_together(const struct bw_goggles *goggles, const struct bw
                                const double term_ratios[BW_TERMS_MAX], const double od_required[BW_EMISSIONS_MAX],
                                struct bw_pair_verdict *verdict);
 
+/* How the verdict on goggles came about: what each emission needs and gets, and what comes through all together. */
+void bw_eyewear_working(const struct bw_goggles *goggles, const struct bw_hazard *hazard,
+                        const double term_ratios[BW_TERMS_MAX], const struct bw_pair_verdict *verdict,
+                        struct bw_working *working);
+
 #ifdef __cplusplus
 }
 #endif

@@ -30,6 +30,7 @@ struct bw_train_limit {
     double pulses;               /* N as counted for rule 3; 0 if it does not apply */
     double group_pulses;         /* pulses that count as one because they fall inside Ti; 1 = none */
     double correction;           /* of rule 3; 1 if none */
+    struct bw_source_note correction_source; /* its row; empty if rule 3 does not apply */
 };
 
 struct bw_viewing_case {
@@ -130,8 +131,15 @@ double bw_hazard_ratio(const struct bw_hazard *hazard, double distance_m);
 void bw_hazard_ratio_detail(const struct bw_hazard *hazard, double distance_m, struct bw_ratio *ratio);
 /* The same for a place off the axis by offset_m: an upper bound that never rises with the offset. */
 double bw_hazard_ratio_off_axis(const struct bw_hazard *hazard, double distance_m, double offset_m);
-/* How the ratio on the axis comes about. */
+/* How the ratio on the axis comes about: of all emissions, and the sum. */
 void bw_hazard_ratio_working(const struct bw_hazard *hazard, double distance_m, struct bw_working *working);
+/* Of one term, or of one emission at one distance: its width, what falls into the aperture, the ratio. Returns: it. */
+double bw_hazard_term_working(const struct bw_hazard *hazard, size_t term, double distance_m,
+                              struct bw_working *working);
+/* Of given ratios, one a term, the largest sum over terms that add, of one emission (BW_EMISSIONS_MAX: of all).
+ * Returns: it. */
+double bw_hazard_sum_working(const struct bw_hazard *hazard, const double term_ratios[BW_TERMS_MAX], size_t only,
+                             struct bw_working *working);
 /* Envelope: the largest ratio at this distance (with a stand-off: outside it) or farther; at most 1e-4 above it, never
  * below. From a ladder: somewhat more above it. */
 double bw_hazard_ratio_envelope(const struct bw_hazard *hazard, double distance_m);
@@ -158,6 +166,9 @@ struct bw_spot {
 enum bw_status bw_hazard_spot(const struct bw_output *output, double beam_path_m, double reflectance, struct bw_spot *spot);
 enum bw_status bw_hazard_diffuse_ratio(const struct bw_hazard *hazard, const struct bw_spot *spot, double distance_m,
                                        struct bw_ratio *ratio, struct bw_error *error);
+/* How a ratio on a spot came about. */
+enum bw_status bw_hazard_diffuse_working(const struct bw_hazard *hazard, const struct bw_spot *spot, double distance_m,
+                                         struct bw_ratio *ratio, struct bw_working *working, struct bw_error *error);
 
 /* A distance that may not end. */
 struct bw_reach {
@@ -178,6 +189,9 @@ void bw_hazard_optical_density(const struct bw_hazard *hazard, const double term
                                double od[BW_EMISSIONS_MAX]);
 /* The largest sum over terms that add; NAN if a ratio is. */
 double bw_hazard_total(const struct bw_hazard *hazard, const double term_ratios[BW_TERMS_MAX]);
+/* The same, and how the allowance was shared. */
+void bw_hazard_density_working(const struct bw_hazard *hazard, const double term_ratios[BW_TERMS_MAX],
+                               double od[BW_EMISSIONS_MAX], struct bw_working *working);
 /* Term ratios at a distance, for bw_hazard_optical_density. */
 void bw_hazard_term_ratios(const struct bw_hazard *hazard, double distance_m, double term_ratios[BW_TERMS_MAX]);
 

@@ -156,6 +156,9 @@ bool bw_limits_grouping_time(const struct bw_table *table, double wavelength_nm,
                              struct bw_source_note *source);
 /* Longest time in which pulses are counted [s]: T2 for this subtense, or INFINITY (all pulses). */
 double bw_limits_counting_time(const struct bw_table *table, const struct bw_exposure *exposure);
+/* The same, and how it came about. */
+double bw_limits_counting_working(const struct bw_table *table, const struct bw_exposure *exposure,
+                                  struct bw_working *working);
 /* True if the train correction (rule 3: N^-1/4, C5, CP) applies to this effect and wavelength. */
 bool bw_limits_train_applies(const struct bw_table *table, enum bw_effect effect, double wavelength_nm);
 /* Longest pulse that rule 3 applies to [s]; INFINITY if the rule set names none. */
@@ -171,6 +174,12 @@ struct bw_train_count {
 /* The correction of rule 3 (at most 1). Source may be NULL. */
 double bw_limits_train_correction(const struct bw_table *table, const struct bw_train_count *count,
                                   struct bw_source_note *source, struct bw_working *working);
+
+/* What a row prints, as words can quote it: "H = 18 t^0.75 CA CE" of a limit, "5 N^-0.25, at least 0.4" of a train row.
+ * source: as the limit or the correction names it. Empty if the rule set has no such row. Returns: out. */
+enum { BW_FORMULA_SIZE = 160 };
+const char *bw_limits_row_formula(const struct bw_table *table, const struct bw_source_note *source,
+                                  char out[BW_FORMULA_SIZE]);
 
 /* True if the exposures of two wavelengths add for the target (same tissue and effect). */
 bool bw_limits_add(const struct bw_table *table, enum bw_target target, double first_nm, double second_nm);

@@ -29,6 +29,10 @@ struct bw_limit_query {
     const char *exposure_reason; /* NULL if the time was given */
     bool us_units;
     struct bw_working working;
+    const struct bw_limit_query *rule_sets; /* the same by every rule set, this one first; NULL: not asked for */
+    size_t rule_set_count;
+    bool out_of_range; /* of one of those: the rule set has no row, and why */
+    char reason[480];
 };
 
 /* Text for the terminal: 80 columns. */
@@ -37,7 +41,8 @@ void bw_report_distance_text(struct bw_text *out, const struct bw_result *result
 void bw_report_eyewear_text(struct bw_text *out, const struct bw_result *result);
 void bw_report_room_text(struct bw_text *out, const struct bw_result *result, bool timing);
 void bw_report_summary_text(struct bw_text *out, const struct bw_result *result);
-void bw_report_working_text(struct bw_text *out, const struct bw_working *working);
+void bw_report_working_text(struct bw_text *out, const struct bw_working *working); /* with a legend at its end */
+void bw_report_result_working_text(struct bw_text *out, const struct bw_result *result); /* all that there is */
 
 /* JSON, schema beamward.KIND/1, 12 significant digits, null and "unbounded": true for what never ends. */
 void bw_report_limit_json(struct bw_text *out, const struct bw_limit_query *query);

@@ -73,7 +73,13 @@ struct bw_place {
     size_t source;              /* which handpiece */
     size_t area;                /* from which treatment area */
     double length_m;            /* of the path (diffuse: from the spot) */
-    double share;               /* product of reflectances and transmittances on the way */
+    double share;               /* product of reflectances and transmittances on the way: of the next five */
+    double start_share;         /* that the lit surface sends out again; direct: 1 */
+    double mirror_share, gloss_share; /* that mirrors and that glass and gloss reflect */
+    double pass_share;          /* of what is passed through */
+    double cover_share;         /* of the cover of an opening; 1 at a place */
+    double spot_path_m;         /* diffuse: of the beam to the lit spot, at least */
+    double aside_rad;           /* direct: beside all aims by this angle, at least */
     char via[BW_NAME_SIZE];     /* the reflecting surface; empty if direct */
 };
 
@@ -83,6 +89,14 @@ enum bw_status bw_room_at(const struct bw_room *room, const struct bw_room_sourc
                           struct bw_point at, struct bw_place *place, struct bw_error *error);
 enum bw_status bw_room_terms_at(const struct bw_room *room, const struct bw_room_source *source, struct bw_point at,
                                 double term_ratios[BW_TERMS_MAX], struct bw_error *error);
+
+/* The same, and where each of them comes from (places may be NULL). */
+enum bw_status bw_room_term_places_at(const struct bw_room *room, const struct bw_room_source *source,
+                                      struct bw_point at, double term_ratios[BW_TERMS_MAX],
+                                      struct bw_place places[BW_TERMS_MAX], struct bw_error *error);
+/* How the ratio of a place comes about. term: of source->direct, whose place it is; BW_TERMS_MAX: all together. */
+enum bw_status bw_room_place_working(const struct bw_room_source *source, const struct bw_place *place, size_t term,
+                                     struct bw_working *working, struct bw_error *error);
 
 /* The map: cell (column, row) covers origin + [column, column + 1] x [row, row + 1] cells. A cell's value is the
  * worst anywhere in the cell. */

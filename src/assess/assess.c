@@ -39,9 +39,7 @@ static enum bw_status make_pairs(const struct assess_job *job) {
     result->pairs = calloc(most * result->distance_count, sizeof *result->pairs);
     if (!result->pairs)
         return no_memory(job);
-    if (job->options->parts & BW_PART_EYEWEAR)
-        assess_pairs(job);
-    return BW_OK;
+    return job->options->parts & BW_PART_EYEWEAR ? assess_pairs(job) : BW_OK;
 }
 
 static enum bw_status rooms(const struct assess_job *job) {
@@ -77,6 +75,8 @@ static enum bw_status run(const struct assess_job *job) {
         status = assess_incidents(job);
     if (status == BW_OK)
         status = assess_findings(job);
+    if (status == BW_OK && job->options->all_rules)
+        status = assess_compare(job);
     return status;
 }
 
@@ -123,9 +123,12 @@ void bw_result_free(struct bw_result *result) {
         free(result->rooms[i].sources);
         free(result->rooms[i].persons);
         bw_room_solution_free(&result->rooms[i].solution);
+        bw_working_free(&result->rooms[i].working);
     }
     for (size_t i = 0; i < result->finding_count; i++)
         free(result->findings[i].text);
+    bw_working_free(&result->eyewear_working);
+    assess_comparison_free(result->comparison);
     free(result->distances);
     free(result->pairs);
     free(result->rooms);

@@ -137,19 +137,22 @@ static void look_back(const struct bw_hazard *hazard, const struct bw_reach *rea
     }
 }
 
-static enum bw_status emissions(struct bw_distance_result *distance, struct bw_error *error) {
+static enum bw_status emissions(struct bw_distance_result *distance, struct bw_working *working,
+                                struct bw_error *error) {
     const struct bw_hazard *direct = distance->direct;
+    struct bw_working *alone_working = direct->output->count > 1 ? working : NULL;
     double eye[BW_TERMS_MAX] = {0}, skin[BW_TERMS_MAX] = {0}, od[BW_EMISSIONS_MAX] = {0};
     bw_hazard_worst_terms(direct, eye);
     bw_hazard_worst_terms(distance->skin_view, skin);
-    bw_hazard_optical_density(direct, eye, od);
+    bw_working_heading(working, "Optical density at the exit, by the largest ratio of each emission");
+    bw_hazard_density_working(direct, eye, od, working);
     for (size_t i = 0; i < direct->output->count; i++) {
         struct bw_emission_result *emission = &distance->emissions[i];
         worst_of_emission(direct, eye, i, distance->worst_m, &emission->limit);
         emission->ratio_at_exit = alone(direct, eye, i);
         worst_of_emission(distance->skin_view, skin, i, distance->worst_m, &emission->skin_limit);
         emission->optical_density = od[i];
-        enum bw_status status = bw_hazard_reach(direct, i, &emission->nohd, NULL, error);
+        enum bw_status status = bw_hazard_reach(direct, i, &emission->nohd, alone_working, error);
         if (status != BW_OK)
             return status;
         look_back(direct, &emission->nohd, i, &emission->subtense_rad, &emission->emitters);
@@ -160,6 +163,8 @@ static enum bw_status emissions(struct bw_distance_result *distance, struct bw_e
 static enum bw_status eye_direct(const struct assess_job *job, struct bw_distance_result *distance,
                                  struct bw_working *working, struct bw_error *error) {
     bw_working_heading(working, "Eye in the direct beam, exposure %g s", distance->glance.exposure_s);
+    assess_time_working(distance, &distance->glance, "an accidental glance", working);
+    bw_working_note(working, "a direct view counts as a point source");
     struct bw_viewing_case viewing = {.target = BW_EYE, .exposure_s = distance->glance.exposure_s};
     enum bw_status status = assess_prepare(job, distance, viewing, &distance->direct, working, error);
     if (status == BW_OK)
@@ -169,6 +174,7 @@ static enum bw_status eye_direct(const struct assess_job *job, struct bw_distanc
     bw_hazard_prepare_envelope(distance->direct);
     distance->ratio_at_exit = bw_hazard_ratio_envelope(distance->direct, 0.);
     assess_find_governing(distance->direct, &distance->governing_emission, &distance->governing, &distance->worst_m);
+    assess_exit_working(distance->direct, distance->worst_m, distance->ratio_at_exit, working);
     size_t emitters;
     look_back(distance->direct, &distance->nohd, BW_EMISSIONS_MAX, &distance->subtense_rad, &emitters);
     distance->nearest_m = distance->direct->output->stand_off_m;
@@ -189,10 +195,29 @@ static enum bw_status try_widest_spot(const struct assess_job *job, struct bw_di
     return BW_OK;
 }
 
+static void write_spots(const struct bw_distance_result *distance, struct bw_working *working) {
+    const struct bw_output *output = distance->diffuse_view->output;
+    for (size_t i = 0; i < output->count; i++) {
+        const struct bw_beam *beam = &output->beams[i];
+        double spot_m = distance->diffuse_spot.diameter_m[i];
+        double places_m[] = {fmax(beam->waist_m, output->stand_off_m), output->stand_off_m}, at_m = nan("");
+        for (size_t k = 0; k < 2; k++)
+            if (!(bw_beam_diameter_m(beam, places_m[k]) < spot_m) && !(bw_beam_diameter_m(beam, places_m[k]) > spot_m))
+                at_m = places_m[k];
+        if (isnan(at_m))
+            bw_working_step(working, "d", spot_m, "m", NULL, NULL, NULL);
+        else
+            bw_beam_diameter_working(beam, at_m, working);
+        bw_working_note(working, "%s, on a white matt surface: rho = 1%s", output->emissions[i].name,
+                        isnan(at_m) ? "; the widest that the tolerances allow, which is worse here" : "");
+    }
+}
+
 static enum bw_status eye_diffuse(const struct assess_job *job, struct bw_distance_result *distance,
                                   struct bw_working *working, struct bw_error *error) {
     bw_working_heading(working, "Eye on the diffuse reflection, reflectance 1, smallest spot, exposure %g s",
                        distance->diffuse_time.exposure_s);
+    assess_time_working(distance, &distance->diffuse_time, "diffuse viewing", working);
     struct bw_viewing_case viewing = {.target = BW_EYE, .exposure_s = distance->diffuse_time.exposure_s};
     enum bw_status status = assess_prepare(job, distance, viewing, &distance->diffuse_view, working, error);
     if (status != BW_OK)
@@ -203,6 +228,8 @@ static enum bw_status eye_diffuse(const struct assess_job *job, struct bw_distan
         status = try_widest_spot(job, distance, error);
     if (status != BW_OK || working == NULL)
         return status;
+    bw_working_heading(working, "The lit spot of each emission");
+    write_spots(distance, working);
     return bw_hazard_diffuse_reach(distance->diffuse_view, &distance->diffuse_spot, &distance->diffuse, working, error);
 }
 
@@ -214,7 +241,7 @@ enum bw_status assess_figures(const struct assess_job *job, struct bw_distance_r
         status = assess_skin(job, distance, working, error);
     if (status == BW_OK)
         status = eye_diffuse(job, distance, working, error);
-    return status == BW_OK ? emissions(distance, error) : status;
+    return status == BW_OK ? emissions(distance, working, error) : status;
 }
 
 /* All that is asked of one handpiece.
@@ -231,6 +258,7 @@ enum bw_status assess_distance(const struct assess_job *job, size_t laser, size_
     distance->laser = laser;
     distance->handpiece = handpiece;
     enum bw_status status = find_times(job, distance, &cause);
+    assess_inputs_working(job, distance, working);
     if (status == BW_OK)
         status = assess_find_output(job, distance, working, &cause);
     if (status == BW_OK)

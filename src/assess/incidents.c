@@ -50,34 +50,42 @@ static enum bw_status open_all(struct assess_view *view, const struct bw_inciden
 
 static void write_goggles(const struct assess_view *view, const struct assess_light *light,
                           struct bw_working *working) {
-    for (size_t i = 0; view->goggles && i < light->output.count; i++)
-        bw_working_step(working, "tau", light->passes[i], "", NULL, "10^-OD; 1 where the goggles have no rating",
-                        "%s at %.6g nm", view->goggles->name, light->output.emissions[i].wavelength_nm);
+    for (size_t i = 0; view->goggles && i < light->output.count; i++) {
+        const struct bw_emission *emission = &light->output.emissions[i];
+        const struct bw_rating *rating = bw_eyewear_rating(view->goggles, emission->wavelength_nm);
+        char density[BW_NUMBER_SIZE];
+        if (rating)
+            bw_working_step(working, "tau", light->passes[i], "", NULL, "10^-OD", "10^-%s",
+                            bw_working_number(density, rating->optical_density));
+        else
+            bw_working_step(working, "tau", light->passes[i], "", NULL, "1", "1");
+        bw_working_note(working, "%s at %.6g nm%s", view->goggles->name, emission->wavelength_nm,
+                        rating ? "" : ": no rating, so all of it passes");
+    }
 }
 
+/* The limits for this exposure, and the ratio on the way that was worst. */
 static void write_path(const struct assess_view *view, const struct assess_light *light, double exposure_s,
                        struct bw_working *working) {
-    const struct bw_place *place = &view->place;
-    bool diffuse = place->path == BW_PATH_DIFFUSE;
-    struct bw_viewing_case viewing = diffuse ? light->diffuse.viewing : light->direct.viewing;
-    struct bw_hazard *hazard = malloc(sizeof *hazard);
-    if (!hazard) {
-        if (working)
-            working->failed = true;
+    struct bw_hazard *hazards = calloc(2, sizeof *hazards);
+    struct bw_viewing_case direct = light->direct.viewing, diffuse = light->diffuse.viewing;
+    struct bw_room_source source = {&hazards[0], &hazards[1]};
+    if (!hazards) {
+        working->failed = true;
         return;
     }
-    viewing.exposure_s = exposure_s;
-    if (bw_hazard_prepare(view->job->table, &light->output, &viewing, hazard, working, NULL) == BW_OK && !diffuse)
-        bw_hazard_ratio_working(hazard, place->length_m, working);
-    free(hazard);
-    if (!view->room)
-        return;
-    bw_working_step(working, "share", place->share, "", NULL, "what reflections and panes on the way leave", "%s",
-                    bw_path_name(place->path));
-    bw_working_step(working, "ratio", place->ratio, "", NULL,
-                    diffuse ? "worst lit spot seen from here, with the limits of its own subtense"
-                            : "share x the ratio at this length of path, or farther if larger",
-                    "%s path, r = %.6g m", bw_path_name(place->path), place->length_m);
+    direct.exposure_s = exposure_s;
+    diffuse.exposure_s = exposure_s;
+    bool is_diffuse = view->room && view->place.path == BW_PATH_DIFFUSE;
+    enum bw_status status =
+        bw_hazard_prepare(view->job->table, &light->output, &direct, &hazards[0], is_diffuse ? NULL : working, NULL);
+    bw_working_heading(working, "Ratio at the place");
+    if (status == BW_OK && !view->room)
+        bw_hazard_ratio_working(&hazards[0], view->place.length_m, working);
+    else if (status == BW_OK &&
+             bw_hazard_prepare(view->job->table, &light->output, &diffuse, &hazards[1], NULL, NULL) == BW_OK)
+        bw_room_place_working(&source, &view->place, BW_TERMS_MAX, working, NULL);
+    free(hazards);
 }
 
 static void write_working(const struct assess_view *view, const struct reception *reception,
@@ -93,6 +101,8 @@ static void write_working(const struct assess_view *view, const struct reception
                                      : "",
                        reception->incident->exposure_s, assess_laser(view->job, distance)->name,
                        assess_handpiece(view->job, distance)->name);
+    bw_working_step(working, "te", reception->incident->exposure_s, "s", NULL, NULL, NULL);
+    bw_working_note(working, "exposure time of the incident");
     write_goggles(view, light, working);
     write_path(view, light, reception->incident->exposure_s, working);
 }

@@ -29,7 +29,8 @@ enum bw_status assess_prepare(const struct assess_job *job, const struct bw_dist
                               struct bw_viewing_case viewing, struct bw_hazard **hazard, struct bw_working *working,
                               struct bw_error *error);
 /* The term that governs where the hazard is worst: at the exit, or at the waist of one of the emissions. */
-void assess_find_governing(const struct bw_hazard *hazard, size_t *emission, struct bw_train_limit *limit, double *at_m);
+void assess_find_governing(const struct bw_hazard *hazard, size_t *emission, struct bw_train_limit *limit,
+                           double *at_m);
 
 /* distance.c: distances and densities of distance->output for its exposure times. */
 enum bw_status assess_figures(const struct assess_job *job, struct bw_distance_result *distance,
@@ -105,10 +106,26 @@ void assess_incident_findings(const struct assess_job *job); /* findings_inciden
 enum bw_status assess_blame(const struct assess_job *job, const struct bw_distance_result *distance,
                             enum bw_status status, const struct bw_error *cause);
 
+/* working_inputs.c, working_exit.c: steps of what no evaluator below writes. working may be NULL. */
+void assess_inputs_working(const struct assess_job *job, const struct bw_distance_result *distance,
+                           struct bw_working *working);
+void assess_time_working(const struct bw_distance_result *distance, const struct bw_exposure_time *time,
+                         const char *what, struct bw_working *working);
+/* Ratios where each emission is worst, and of all together: total is what the result says. */
+void assess_exit_working(const struct bw_hazard *hazard, double worst_m, double total, struct bw_working *working);
+
 /* pairs.c: goggles against handpieces at their exits. */
-void assess_pairs(const struct assess_job *job);
+enum bw_status assess_pairs(const struct assess_job *job);
 /* rooms.c: one room of the case; appends a pair for each person's goggles and handpiece. */
 enum bw_status assess_room(const struct assess_job *job, size_t room, struct bw_room_result *result);
+
+/* rooms_working.c: every person's place and what it asks of goggles, every opening. */
+enum bw_status assess_room_working(const struct assess_job *job, struct bw_room_result *result,
+                                   const struct bw_room_source *sources);
+
+/* compare.c: the distances by every rule set. */
+enum bw_status assess_compare(const struct assess_job *job);
+void assess_comparison_free(struct bw_comparison *comparison); /* NULL allowed */
 
 /* findings.c */
 enum bw_status assess_findings(const struct assess_job *job);

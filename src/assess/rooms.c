@@ -153,6 +153,8 @@ enum bw_status assess_room(const struct assess_job *job, size_t room, struct bw_
         sources[i] = (struct bw_room_source){distance->direct, distance->diffuse_view};
     }
     status = fill(job, result, sources);
+    if (status == BW_OK && job->options->working)
+        status = assess_room_working(job, result, sources);
     free(sources);
     return status;
 }

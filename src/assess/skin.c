@@ -98,6 +98,29 @@ static enum bw_status find_whether(const struct assess_job *job, struct bw_dista
     return BW_OK;
 }
 
+/* The answer, and the ratio there with the limit of its own area. */
+static enum bw_status write_reach(const struct assess_job *job, const struct bw_distance_result *distance,
+                                  double area_m2, struct bw_working *working, struct bw_error *error) {
+    struct bw_viewing_case viewing = viewing_of(distance, area_m2);
+    struct bw_hazard hazard;
+    double at_m = distance->skin.distance_m;
+    bw_working_heading(working, "Hazard distance, each place with the limit of its own area");
+    bw_working_step(working, "r", at_m, "m", NULL, NULL, NULL);
+    bw_working_note(working, "%s",
+                    distance->skin.unbounded ? "never ends"
+                    : at_m > 0.              ? "the farthest place where the sum is above 1, searched; put into the "
+                                               "steps below it gives 1"
+                                             : "the sum is nowhere above 1");
+    if (distance->skin.unbounded)
+        return BW_OK;
+    bw_working_step(working, "A", area_m2, "m2", "common practice", NULL, NULL);
+    bw_working_note(working, "skin lit by the widest emission within d86 = sqrt(2) d63 there, of 2 m2 at most");
+    enum bw_status status = bw_hazard_prepare(job->table, &distance->output, &viewing, &hazard, working, error);
+    if (status == BW_OK)
+        bw_hazard_ratio_working(&hazard, at_m, working);
+    return status;
+}
+
 static enum bw_status find_reach(const struct assess_job *job, struct bw_distance_result *distance,
                                  struct bw_working *working, struct bw_error *error) {
     struct skin_case skin = {job, distance, error, BW_OK};
@@ -113,16 +136,15 @@ static enum bw_status find_reach(const struct assess_job *job, struct bw_distanc
         return status;
     distance->skin = with_growing_area(&skin, &bound);
     double area_m2 = assess_skin_area_m2(job, distance, distance->skin.distance_m);
-    bw_working_step(working, "A", area_m2, "m2", "common practice", "pi d86^2 / 4, skin lit by the beam at the answer",
-                    NULL);
-    bw_working_step(working, "r", distance->skin.distance_m, "m", NULL,
-                    "farthest place with a ratio above 1, each place with the limit of its own area", NULL);
+    if (skin.status == BW_OK && working != NULL)
+        skin.status = write_reach(job, distance, area_m2, working, error);
     return skin.status;
 }
 
 enum bw_status assess_skin(const struct assess_job *job, struct bw_distance_result *distance,
                            struct bw_working *working, struct bw_error *error) {
     bw_working_heading(working, "Skin in the beam, exposure %g s", distance->skin_time.exposure_s);
+    assess_time_working(distance, &distance->skin_time, "skin", working);
     enum bw_status status = find_whether(job, distance, error);
     distance->skin_area_m2 = assess_skin_area_m2(job, distance, 0.);
     struct bw_viewing_case viewing = viewing_of(distance, distance->skin_area_m2);
@@ -136,5 +158,6 @@ enum bw_status assess_skin(const struct assess_job *job, struct bw_distance_resu
     bw_hazard_prepare_envelope(distance->skin_view);
     distance->skin_ratio_at_exit = bw_hazard_ratio_envelope(distance->skin_view, 0.);
     assess_find_governing(distance->skin_view, &distance->skin_governing_emission, &distance->skin_governing, &at_m);
+    assess_exit_working(distance->skin_view, at_m, distance->skin_ratio_at_exit, working);
     return BW_OK;
 }

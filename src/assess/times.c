@@ -45,10 +45,29 @@ static void write_working(const struct assess_job *job, const struct bw_distance
     bw_working_heading(working, "Longest exposure of the %s at %g m", target == BW_EYE ? "eye" : "skin", place->at_m);
     if (bw_hazard_prepare(job->table, &distance->output, &viewing, &hazard, working, NULL) != BW_OK)
         return;
+    bw_working_heading(working, "Ratio after %.10g s", viewing.exposure_s);
     bw_hazard_ratio_working(&hazard, place->at_m, working);
-    bw_working_step(
-        working, "t", time->exposure_s, "s", NULL,
-        time->unbounded ? "no limit is reached within 30 000 s" : "longest exposure with a ratio of 1 or below", NULL);
+    bw_working_step(working, "te", time->exposure_s, "s", NULL, NULL, NULL);
+    bw_working_note(working, time->unbounded
+                                 ? "no limit is reached within 30 000 s: the steps above hold for these"
+                                 : "longest exposure with a sum of 1 or below, searched; the steps above hold "
+                                   "for it");
+}
+
+static void write_exit(const struct assess_job *job, const struct bw_place_times *place, struct bw_working *working) {
+    static const char how[] =
+        "longest exposure for which the sum of the ratios, each where it is worst, is 1 or below; "
+        "searched between the times where a limit changes its law";
+    bw_working_heading(working, "Longest exposure at the exit, or at the waist where that is worse");
+    bw_working_step(working, "te", place->eye.exposure_s, "s", NULL, NULL, NULL);
+    bw_working_note(working, "eye; %s", how);
+    bw_working_step(working, "te", place->skin.exposure_s, "s", NULL, NULL, NULL);
+    bw_working_note(working, "skin; %s", how);
+    for (size_t i = 0; i < job->the_case->eyewear_count; i++) {
+        bw_working_step(working, "te", place->behind[i].exposure_s, "s", NULL, NULL, NULL);
+        bw_working_note(working, "eye behind %s, which passes tau = 10^-OD_given of each emission",
+                        job->the_case->eyewear[i].name);
+    }
 }
 
 /* Given:    job; distance  with its figures
@@ -61,11 +80,16 @@ enum bw_status assess_times(const struct assess_job *job, struct bw_distance_res
         return bw_error_set(error, BW_NO_MEMORY, "out of memory");
     distance->exit.at_exit = true;
     enum bw_status status = fill(job, distance, &distance->exit, error);
+    if (status == BW_OK && working)
+        write_exit(job, &distance->exit, working);
     while (status == BW_OK && distance->place_count < job->options->at_count) {
         struct bw_place_times *place = &distance->places[distance->place_count];
         place->at_m = job->options->at_m[distance->place_count++];
         status = fill(job, distance, place, error);
         if (status == BW_OK && working) {
+            bw_working_heading(working, "At %g m, for the exposure times of the handpiece", place->at_m);
+            bw_hazard_ratio_working(distance->direct, place->at_m, working);
+            bw_working_note(working, "eye");
             write_working(job, distance, place, BW_EYE, &place->eye, working);
             write_working(job, distance, place, BW_SKIN, &place->skin, working);
         }

@@ -11,21 +11,31 @@ static enum bw_status worst_emission(const struct assess_job *job, struct bw_dis
     const struct bw_tolerance *tolerance = &assess_laser(job, distance)->tolerances[index];
     const struct bw_handpiece *handpiece = assess_handpiece(job, distance);
     struct bw_emission *emission = &distance->output.emissions[index], given = *emission;
+    const struct bw_beam *beam = &handpiece->output.beams[index];
     enum bw_status status = BW_OK;
+    char value[BW_NUMBER_SIZE], tol[BW_NUMBER_SIZE];
     if (tolerance->power > 0.) {
         status = bw_emission_varied(&tolerance->given, 1. + tolerance->power, 1., 1., emission, error);
         for (size_t i = 0; i < BW_NAME_SIZE; i++)
             emission->name[i] = given.name[i];
-        bw_working_step(working, "P", emission->average_power_w, "W", NULL, "P (1 + tolerance)",
-                        "%.6g W x (1 + %g), %s", given.average_power_w, tolerance->power, given.name);
+        bw_working_step(working, "P", emission->average_power_w, "W", NULL, "P (1 + tol)", "%s * (1 + %s)",
+                        bw_working_number(value, given.average_power_w), bw_working_number(tol, tolerance->power));
+        bw_working_note(working, "%s, the highest power", given.name);
     }
     double diameter = handpiece->diameter_tolerance[index], divergence = handpiece->divergence_tolerance[index];
     distance->output.beams[index] = bw_beam_varied(&handpiece->output.beams[index], 1. - diameter, 1. - divergence);
     if (diameter > 0. || divergence > 0.) {
-        bw_working_step(working, "d factor", 1. - diameter, "", NULL, "1 - tolerance of the diameter", "%s",
-                        given.name);
-        bw_working_step(working, "phi factor", 1. - divergence, "", NULL, "1 - tolerance of the divergence", "%s",
-                        given.name);
+        bool lens = beam->waist_m > 0.;
+        bw_working_step(working, "a", distance->output.beams[index].diameter_m, "m", NULL, "a (1 - tol)",
+                        "%s * (1 - %s)", bw_working_number(value, beam->diameter_m),
+                        bw_working_number(tol, lens ? divergence : diameter));
+        bw_working_note(working, "%s, the narrowest beam%s", given.name,
+                        lens ? "; with a lens the divergence there sets the width of the waist" : "");
+        bw_working_step(working, "phi", distance->output.beams[index].divergence_rad, "rad", NULL, "phi (1 - tol)",
+                        "%s * (1 - %s)", bw_working_number(value, beam->divergence_rad),
+                        bw_working_number(tol, lens ? diameter : divergence));
+        bw_working_note(working, "%s, the least divergence%s", given.name,
+                        lens ? "; with a lens the diameter there sets it" : "");
     }
     distance->tolerances[index] = *tolerance;
     return status;

@@ -63,6 +63,8 @@ void cli_job_free(struct cli_job *job);
 /* The rule set by --tables and --rules; case_rules (may be NULL) is what the case file asks for. */
 enum cli_exit cli_find_table(const struct cli_arguments *arguments, const char *case_rules, const char *case_path,
                              const struct bw_table **table, struct bw_table **loaded);
+/* --rules all. */
+bool cli_wants_all_rules(const struct cli_arguments *arguments);
 /* A rule set from a file; faults are printed. The caller frees it. */
 enum cli_exit cli_load_table(const char *path, struct bw_table **table);
 /* Runs the assessment, with the options --laser, --handpiece, --room, --at and --working of the command. */
@@ -90,16 +92,19 @@ void cli_files_discard(struct cli_files *files);
 enum cli_exit cli_make_directory(const char *path);
 
 /* Options that several commands take. */
-#define CLI_COMMON_OPTIONS                                                                                            \
-    {"--rules", "ID", "rule set to judge by (see `beamward tables`)"},                                                \
-        {"--tables", "FILE", "load another rule set from an INI file"},                                               \
-        {"--format", "text|json", "what to print (text)"},                                                            \
-        {"--working", NULL, "show each figure with its formula, row and clause"},                                     \
-        {"--quiet", NULL, "print nothing but errors; the exit code tells"},                                           \
-        {"--help", NULL, "this text"}
-#define CLI_NARROWING_OPTIONS                                                                                         \
-    {"--laser", "NAME", "only this laser"}, {"--handpiece", "NAME", "only this handpiece"},                           \
-        {"--room", "NAME", "only this room"}
+#define CLI_COMMON_OPTIONS {"--rules", "ID", "rule set to judge by (see `beamward tables`)"}, CLI_OTHER_OPTIONS
+#define CLI_COMPARING_OPTIONS                                                                                          \
+    {"--rules", "ID|all", "rule set (`beamward tables`); all: side by side"}, CLI_OTHER_OPTIONS
+#define CLI_OTHER_OPTIONS                                                                                              \
+    {"--tables", "FILE", "load another rule set from an INI file"}, {"--format", "text|json", "what to print (text)"}, \
+        {"--working", NULL, "show each figure with its formula, row and clause"},                                      \
+        {"--quiet", NULL, "print nothing but errors; the exit code tells"}, {                                          \
+        "--help", NULL, "this text"                                                                                    \
+    }
+#define CLI_NARROWING_OPTIONS                                                                                          \
+    {"--laser", "NAME", "only this laser"}, {"--handpiece", "NAME", "only this handpiece"}, {                          \
+        "--room", "NAME", "only this room"                                                                             \
+    }
 
 #define CLI_COUNT(array) (sizeof(array) / sizeof((array)[0]))
 

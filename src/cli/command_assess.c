@@ -7,7 +7,7 @@
 
 static const struct cli_option options[] = {
     {"--out", "DIR", "folder for report.html, plan-ROOM.svg, result.json (needed)"},
-    CLI_COMMON_OPTIONS,
+    CLI_COMPARING_OPTIONS,
 };
 
 static enum cli_exit add_files(struct cli_files *files, const char *directory, const struct bw_result *result,
@@ -46,6 +46,8 @@ static enum cli_exit answer(const struct cli_arguments *arguments, const struct 
         bw_report_result_json(&text, result, &provenance);
     } else {
         bw_report_summary_text(&text, result);
+        if (cli_value(arguments, "--working"))
+            bw_report_result_working_text(&text, result);
         bw_text_add(&text, "\nThe record: %s/report.html\n", directory);
     }
     exit_code = cli_print_unless_quiet(arguments, &text);

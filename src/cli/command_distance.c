@@ -4,7 +4,7 @@
 static const struct cli_option options[] = {
     CLI_NARROWING_OPTIONS,
     {"--at", "M,M...", "longest exposures at these distances in m as well"},
-    CLI_COMMON_OPTIONS,
+    CLI_COMPARING_OPTIONS,
 };
 
 static enum cli_exit run(const struct cli_arguments *arguments) {

@@ -2,6 +2,8 @@
 #include "cli.h"
 
 #include <math.h>
+#include <stdio.h>
+#include <stdlib.h>
 #include <string.h>
 
 static const struct cli_option options[] = {
@@ -11,13 +13,15 @@ static const struct cli_option options[] = {
     {"--subtense", "MRAD", "angular subtense of the source in mrad (0: a point)"},
     {"--pulse-duration", "S", "a pulse train: duration of each pulse in s"},
     {"--rate", "HZ", "a pulse train: pulses per second"},
-    CLI_COMMON_OPTIONS,
+    CLI_COMPARING_OPTIONS,
 };
 
 static bool read_train(const struct cli_arguments *arguments, struct bw_limit_query *query, bool *wrong) {
     bool has_duration, has_rate;
-    struct bw_emission_input input = {.wavelength_nm = query->exposure.wavelength_nm, .average_power_w = (double)NAN,
-                                      .peak_power_w = (double)NAN, .pulse_energy_j = 1};
+    struct bw_emission_input input = {.wavelength_nm = query->exposure.wavelength_nm,
+                                      .average_power_w = (double)NAN,
+                                      .peak_power_w = (double)NAN,
+                                      .pulse_energy_j = 1};
     *wrong = !cli_number(arguments, "--pulse-duration", 1e-13, 3e4, &has_duration, &input.pulse_duration_s) ||
              !cli_number(arguments, "--rate", 1e-9, 1e12, &has_rate, &input.repetition_rate_hz);
     if (*wrong || (!has_duration && !has_rate))
@@ -57,8 +61,30 @@ static bool read_query(const struct cli_arguments *arguments, struct bw_limit_qu
     return !wrong;
 }
 
+/* How long, and why. */
+static void write_time(const struct bw_limit_query *query, const struct bw_exposure_time *time,
+                       struct bw_working *steps) {
+    char source[BW_REASON_SIZE] = "";
+    if (query->exposure_reason)
+        snprintf(source, sizeof source, "%s, %s %s, %s%s", time->source.table, time->source.section, time->source.row,
+                 time->source.clause, time->source.known == BW_MEMORY ? ", from memory" : "");
+    bw_working_heading(steps, "What is asked");
+    bw_working_step(steps, "w", query->exposure.wavelength_nm, "nm", NULL, NULL, NULL);
+    bw_working_note(steps, "given");
+    bw_working_step(steps, "te", query->exposure.exposure_s, "s", source, NULL, NULL);
+    bw_working_note(steps, "exposure time, %s", query->exposure_reason ? "customary of the rule set" : "given");
+    bw_working_step(steps, "alpha", 1e3 * query->exposure.subtense_rad, "mrad", NULL, NULL, NULL);
+    bw_working_note(steps, "%s", query->exposure.subtense_rad > 0 ? "given" : "a point source, the strictest case");
+    if (!query->has_train)
+        return;
+    bw_working_step(steps, "d", query->emission.pulse_duration_s, "s", NULL, NULL, NULL);
+    bw_working_note(steps, "given");
+    bw_working_step(steps, "f", query->emission.repetition_rate_hz, "Hz", NULL, NULL, NULL);
+    bw_working_note(steps, "given");
+}
+
 static enum bw_status evaluate(struct bw_limit_query *query, bool has_time, bool working, struct bw_error *error) {
-    struct bw_exposure_time time;
+    struct bw_exposure_time time = {0};
     struct bw_working *steps = working ? &query->working : NULL;
     if (!has_time) {
         enum bw_viewing viewing = query->target == BW_EYE ? BW_GLANCE : BW_SKIN_TIME;
@@ -69,13 +95,98 @@ static enum bw_status evaluate(struct bw_limit_query *query, bool has_time, bool
         query->exposure.exposure_s = time.exposure_s;
         query->exposure_reason = time.source.clause;
     }
+    write_time(query, &time, steps);
     enum bw_status status = bw_limits(query->table, query->target, &query->exposure, &query->limits,
                                       query->has_train ? NULL : steps, error);
     if (status != BW_OK || !query->has_train)
         return status;
-    struct bw_viewing_case viewing = {.target = query->target, .exposure_s = query->exposure.exposure_s,
+    struct bw_viewing_case viewing = {.target = query->target,
+                                      .exposure_s = query->exposure.exposure_s,
                                       .subtense_rad = query->exposure.subtense_rad};
     return bw_hazard_train_limits(query->table, &query->emission, &viewing, &query->train, steps, error);
+}
+
+/* The same by every rule set, the primary first: one that has no row says so in its place. */
+static enum bw_status evaluate_all(struct bw_limit_query *sets, size_t *count, const struct bw_limit_query *asked,
+                                   bool has_time, bool working, struct bw_error *error) {
+    for (size_t i = 0; i <= bw_tables_count(); i++) {
+        const struct bw_table *table = i == 0 ? asked->table : bw_tables_at(i - 1);
+        if (i > 0 && strcmp(bw_table_id(table), bw_table_id(asked->table)) == 0)
+            continue;
+        struct bw_limit_query *set = &sets[(*count)++];
+        struct bw_error own = {0};
+        *set = *asked;
+        set->table = table;
+        enum bw_status status = evaluate(set, has_time, working, &own);
+        if (status == BW_OK)
+            continue;
+        if (status != BW_OUT_OF_RANGE || i == 0)
+            return bw_error_set(error, status, "%s", own.text);
+        set->out_of_range = true;
+        double low_nm, high_nm;
+        bw_table_span(table, asked->target, &low_nm, &high_nm);
+        if (strstr(own.text, "covers") != NULL)
+            snprintf(set->reason, sizeof set->reason, "%s", own.text);
+        else
+            snprintf(set->reason, sizeof set->reason, "%.400s; it covers %g to %g nm", own.text, low_nm, high_nm);
+    }
+    return BW_OK;
+}
+
+static void print_working(struct bw_text *text, const struct bw_limit_query *query) {
+    if (query->rule_sets == NULL)
+        bw_report_working_text(text, &query->working);
+    for (size_t i = 0; i < query->rule_set_count; i++)
+        if (query->rule_sets[i].working.count > 0) {
+            bw_text_add(text, "\nWorking by %s\n", bw_table_id(query->rule_sets[i].table));
+            bw_report_working_text(text, &query->rule_sets[i].working);
+        }
+}
+
+static enum cli_exit answer(const struct cli_arguments *arguments, const struct bw_limit_query *query) {
+    struct bw_text text = {0};
+    if (cli_wants_json(arguments)) {
+        bw_report_limit_json(&text, query);
+    } else {
+        bw_report_limit_text(&text, query);
+        print_working(&text, query);
+    }
+    return cli_print_unless_quiet(arguments, &text);
+}
+
+static enum cli_exit run_all(const struct cli_arguments *arguments, const struct bw_limit_query *asked, bool has_time) {
+    struct bw_error error = {0};
+    struct bw_limit_query *sets = calloc(bw_tables_count() + 1, sizeof *sets);
+    size_t count = 0;
+    if (sets == NULL) {
+        bw_error_set(&error, BW_NO_MEMORY, "out of memory");
+        return cli_print_error("beamward limit", &error);
+    }
+    enum cli_exit exit_code;
+    bool working = cli_value(arguments, "--working") != NULL;
+    if (evaluate_all(sets, &count, asked, has_time, working, &error) != BW_OK) {
+        exit_code = cli_print_error("beamward limit", &error);
+    } else {
+        struct bw_limit_query primary = sets[0];
+        primary.rule_sets = sets;
+        primary.rule_set_count = count;
+        exit_code = answer(arguments, &primary);
+    }
+    for (size_t i = 0; i < count; i++)
+        bw_working_free(&sets[i].working);
+    free(sets);
+    return exit_code;
+}
+
+static enum cli_exit run_one(const struct cli_arguments *arguments, struct bw_limit_query *query, bool has_time) {
+    struct bw_error error = {0};
+    enum cli_exit exit_code;
+    if (evaluate(query, has_time, cli_value(arguments, "--working") != NULL, &error) != BW_OK)
+        exit_code = cli_print_error("beamward limit", &error);
+    else
+        exit_code = answer(arguments, query);
+    bw_working_free(&query->working);
+    return exit_code;
 }
 
 static enum cli_exit run(const struct cli_arguments *arguments) {
@@ -87,22 +198,8 @@ static enum cli_exit run(const struct cli_arguments *arguments) {
     enum cli_exit exit_code = cli_find_table(arguments, NULL, NULL, &query.table, &loaded);
     if (exit_code != CLI_DONE)
         return exit_code;
-    struct bw_error error = {0};
-    bool working = cli_value(arguments, "--working") != NULL;
-    if (evaluate(&query, has_time, working, &error) != BW_OK) {
-        exit_code = cli_print_error("beamward limit", &error);
-    } else {
-        struct bw_text text = {0};
-        if (cli_wants_json(arguments)) {
-            bw_report_limit_json(&text, &query);
-        } else {
-            bw_report_limit_text(&text, &query);
-            if (working)
-                bw_report_working_text(&text, &query.working);
-        }
-        exit_code = cli_print_unless_quiet(arguments, &text);
-    }
-    bw_working_free(&query.working);
+    exit_code =
+        cli_wants_all_rules(arguments) ? run_all(arguments, &query, has_time) : run_one(arguments, &query, has_time);
     bw_table_free(loaded);
     return exit_code;
 }

@@ -57,7 +57,7 @@ static enum cli_exit unknown_rules(const char *rules, const char *case_path) {
     size_t count = 0;
     for (; count < bw_tables_count() && count < CLI_COUNT(names); count++)
         names[count] = bw_table_id(bw_tables_at(count));
-    const char *nearest = bw_nearest_name(rules, names, count);
+    const char *nearest = strcmp(rules, "all") == 0 ? NULL : bw_nearest_name(rules, names, count);
     fprintf(stderr, "%s: %s: unknown rule set; ", case_path ? case_path : "beamward: --rules", rules);
     if (nearest)
         fprintf(stderr, "did you mean %s?\n", nearest);
@@ -66,9 +66,21 @@ static enum cli_exit unknown_rules(const char *rules, const char *case_path) {
     return CLI_WRONG_INPUT;
 }
 
+/* Only the commands that compare know "all"; elsewhere it is an unknown rule set. */
+bool cli_wants_all_rules(const struct cli_arguments *arguments) {
+    const char *rules = cli_value(arguments, "--rules");
+    for (size_t i = 0; i < arguments->command->option_count; i++)
+        if (strcmp(arguments->command->options[i].name, "--rules") == 0 &&
+            strcmp(arguments->command->options[i].value, "ID|all") == 0)
+            return rules != NULL && strcmp(rules, "all") == 0;
+    return false;
+}
+
 enum cli_exit cli_find_table(const struct cli_arguments *arguments, const char *case_rules, const char *case_path,
                              const struct bw_table **table, struct bw_table **loaded) {
     const char *file = cli_value(arguments, "--tables"), *rules = cli_value(arguments, "--rules");
+    if (cli_wants_all_rules(arguments))
+        rules = NULL;
     *loaded = NULL;
     if (file) {
         enum cli_exit exit_code = cli_load_table(file, loaded);
@@ -136,6 +148,7 @@ enum cli_exit cli_job_assess(const struct cli_arguments *arguments, const struct
         .laser = cli_value(arguments, "--laser"),
         .handpiece = cli_value(arguments, "--handpiece"),
         .room = cli_value(arguments, "--room"),
+        .all_rules = cli_wants_all_rules(arguments),
         .working = cli_value(arguments, "--working") != NULL || parts == BW_PART_ALL,
     };
     if (!read_distances(arguments, &options))

@@ -57,12 +57,19 @@ enum bw_status bw_hazard_check_before_eye(const struct bw_output *output, struct
     return BW_OK;
 }
 
+typedef char number[BW_NUMBER_SIZE];
+
 static void through_goggles(const struct bw_hazard *hazard, size_t emission, struct bw_train_limit *limit,
                             struct bw_working *working) {
     double at_eye_w_m2 = limit->irradiance_w_m2, passes = hazard->output->passes[emission];
     limit->irradiance_w_m2 = at_eye_w_m2 / passes; /* infinite if nothing passes */
-    bw_working_step(working, "E_limit", limit->irradiance_w_m2, "W/m2", NULL, "E_limit / tau, before the goggles",
-                    "%.6g W/m2 / %.6g", at_eye_w_m2, passes);
+    number at_eye, tau;
+    if (passes > 0.)
+        bw_working_step(working, "E_limit", limit->irradiance_w_m2, "W/m2", NULL, "E_limit / tau", "%s / %s",
+                        bw_working_number(at_eye, at_eye_w_m2), bw_working_number(tau, passes));
+    else
+        bw_working_step(working, "E_limit", limit->irradiance_w_m2, "W/m2", NULL, NULL, NULL);
+    bw_working_note(working, "before the goggles, which pass the share tau");
 }
 
 static void through_aid(const struct bw_hazard *hazard, size_t emission, struct bw_train_limit *limit,
@@ -73,11 +80,19 @@ static void through_aid(const struct bw_hazard *hazard, size_t emission, struct 
     double taken_m = fmin(aid->objective_m, aid->magnification * eye_m);
     limit->aperture_m = taken_m;
     limit->irradiance_w_m2 = at_eye_w_m2 / tau * (eye_m / taken_m) * (eye_m / taken_m);
-    bw_working_step(working, "D'", taken_m, "m", "common practice", "min(Do, M D), what the aid gathers for the eye",
-                    "min(%.6g m, %.6g x %.6g m)", aid->objective_m, aid->magnification, eye_m);
-    bw_working_step(working, "E_limit", limit->irradiance_w_m2, "W/m2", "common practice",
-                    tau > 0. ? "E_limit / tau (D/D')^2, at the objective" : "the aid is taken to pass nothing here",
-                    "%.6g W/m2 / %.6g x (%.6g / %.6g)^2", at_eye_w_m2, tau, eye_m, taken_m);
+    number objective, times, eye, at_eye, share, taken;
+    bw_working_number(eye, eye_m);
+    bw_working_step(working, "Da", taken_m, "m", "common practice", "min(Do, M D)", "min(%s, %s * %s)",
+                    bw_working_number(objective, aid->objective_m), bw_working_number(times, aid->magnification), eye);
+    bw_working_note(working, "what the aid gathers for the eye: objective Do, magnification M, aperture D in m");
+    if (tau > 0.)
+        bw_working_step(working, "E_limit", limit->irradiance_w_m2, "W/m2", "common practice",
+                        "E_limit / tau (D / Da)^2", "%s / %s * (%s / %s)^2", bw_working_number(at_eye, at_eye_w_m2),
+                        bw_working_number(share, tau), eye, bw_working_number(taken, taken_m));
+    else
+        bw_working_step(working, "E_limit", limit->irradiance_w_m2, "W/m2", "common practice", NULL, NULL);
+    bw_working_note(working, tau > 0. ? "at the objective; the aid passes the share tau"
+                                      : "the aid is taken to pass nothing here");
 }
 
 void bw_hazard_before_eye(const struct bw_hazard *hazard, size_t emission, struct bw_train_limit *limit,

@@ -34,9 +34,12 @@ static enum bw_status limits_at(const struct corner_case *c, size_t corner, stru
     for (size_t i = 0; status == BW_OK && i < limits->count; i++) {
         double own_w_m2 = limits->limits[i].irradiance_w_m2;
         limits->limits[i].irradiance_w_m2 = own_w_m2 * (used->average_power_w / emission.average_power_w);
-        bw_working_step(working, "E_limit", limits->limits[i].irradiance_w_m2, "W/m2", NULL,
-                        "E_limit P / P_corner, for the power that the ratio is taken with",
-                        "%.6g W/m2 x %.6g W / %.6g W (%s)", own_w_m2, used->average_power_w, emission.average_power_w,
+        char own[BW_NUMBER_SIZE], power[BW_NUMBER_SIZE], corner_power[BW_NUMBER_SIZE];
+        bw_working_step(working, "E_limit", limits->limits[i].irradiance_w_m2, "W/m2", NULL, "E_limit P / Pc",
+                        "%s * %s / %s", bw_working_number(own, own_w_m2),
+                        bw_working_number(power, used->average_power_w),
+                        bw_working_number(corner_power, emission.average_power_w));
+        bw_working_note(working, "%s; for the power that the ratio is taken with, Pc that of the corner",
                         bw_effect_name(limits->limits[i].limit.effect));
     }
     return status;

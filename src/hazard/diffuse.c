@@ -45,6 +45,42 @@ static enum bw_status check(const struct bw_hazard *hazard, const struct bw_spot
     return BW_OK;
 }
 
+typedef char number[BW_NUMBER_SIZE];
+
+static void write_subtense(const struct bw_spot *spot, size_t emission, double distance_m, double alpha_rad,
+                           struct bw_working *working) {
+    number d, r, alpha;
+    bw_working_number(d, spot->diameter_m[emission]);
+    bw_working_number(r, distance_m);
+    if (distance_m > spot->diameter_m[emission] / 2.)
+        bw_working_step(working, "alpha", alpha_rad, "rad", NULL, "2 atan(d / 2 / r)", "2 * atan(%s / 2 / %s)", d, r);
+    else
+        bw_working_step(working, "alpha", alpha_rad, "rad", NULL, "pi / 2", "pi / 2");
+    bw_working_note(working, "the spot of d = %s m as seen from r = %s m: an extended source", d, r);
+    bw_working_step(working, "alpha", 1e3 * alpha_rad, "mrad", NULL, "1000 alpha", "1000 * %s",
+                    bw_working_number(alpha, alpha_rad));
+}
+
+static void write_ratio(const struct bw_hazard *here, const struct bw_term *term, const struct bw_spot *spot,
+                        double distance_m, double ratio, struct bw_working *working) {
+    const struct bw_emission *emission = &here->output->emissions[term->emission];
+    double diameter_m = spot->diameter_m[term->emission];
+    double per_w = irradiance_per_w(spot, term, distance_m);
+    number rho, r, half, eye, p, g, limit;
+    bw_working_step(working, "g", per_w, "1/m2", NULL, "rho / (pi max(r, d / 2, D / 2)^2)",
+                    "%s / (pi * max(%s, %s / 2, %s / 2)^2)", bw_working_number(rho, spot->reflectance),
+                    bw_working_number(r, distance_m), bw_working_number(half, diameter_m),
+                    bw_working_number(eye, term->limit.aperture_m));
+    bw_working_note(working,
+                    "irradiance per watt from a matt spot, seen along its normal; never more than the spot itself "
+                    "sends out");
+    bw_working_step(working, "ratio", ratio, "", NULL, "P g / E_limit", "%s * %s / %s",
+                    bw_working_number(p, emission->average_power_w), bw_working_number(g, per_w),
+                    bw_working_number(limit, term->limit.irradiance_w_m2));
+    bw_working_note(working, "%s %g nm, %s", emission->name, emission->wavelength_nm,
+                    bw_effect_name(term->limit.limit.effect));
+}
+
 static enum bw_status ratio_with_working(const struct bw_hazard *hazard, const struct bw_spot *spot, double distance_m,
                                          struct bw_ratio *ratio, struct bw_working *working, struct bw_error *error) {
     struct bw_hazard here; /* the same with the limits of this subtense */
@@ -54,23 +90,32 @@ static enum bw_status ratio_with_working(const struct bw_hazard *hazard, const s
     here.viewing = hazard->viewing;
     for (size_t i = 0; i < hazard->output->count; i++) {
         subtenses_rad[i] = subtense_rad(spot->diameter_m[i], distance_m);
-        bw_working_step(working, "alpha", subtenses_rad[i], "rad", NULL, "2 atan(d / 2r), at most pi/2",
-                        "d = %.6g m, r = %.6g m", spot->diameter_m[i], distance_m);
+        if (working != NULL)
+            write_subtense(spot, i, distance_m, subtenses_rad[i], working);
     }
     enum bw_status status = bw_hazard_fill(&here, subtenses_rad, working, error);
     if (status != BW_OK)
         return status;
+    if (working != NULL)
+        bw_working_heading(working, "Ratio from the spot");
     for (size_t i = 0; i < here.term_count; i++) {
         const struct bw_term *term = &here.terms[i];
         double power_w = here.output->emissions[term->emission].average_power_w;
-        double per_w = irradiance_per_w(spot, term, distance_m);
-        ratios[i] = power_w * per_w / term->limit.irradiance_w_m2;
-        bw_working_step(working, "ratio", ratios[i], "", NULL, "rho P / (pi r^2) / E_limit",
-                        "%.6g W x %.6g 1/m2 / %.6g W/m2 (%g nm, %s)", power_w, per_w, term->limit.irradiance_w_m2,
-                        here.output->emissions[term->emission].wavelength_nm, bw_effect_name(term->limit.limit.effect));
+        ratios[i] = power_w * irradiance_per_w(spot, term, distance_m) / term->limit.irradiance_w_m2;
+        if (working != NULL)
+            write_ratio(&here, term, spot, distance_m, ratios[i], working);
     }
     bw_hazard_combine(&here, ratios, ratio);
+    bw_hazard_sum_working(&here, ratios, BW_EMISSIONS_MAX, working);
     return BW_OK;
+}
+
+/* The same with its steps, for a place. */
+enum bw_status bw_hazard_diffuse_working(const struct bw_hazard *hazard, const struct bw_spot *spot, double distance_m,
+                                         struct bw_ratio *ratio, struct bw_working *working, struct bw_error *error) {
+    *ratio = (struct bw_ratio){.total = nan("")};
+    enum bw_status status = check(hazard, spot, error);
+    return status == BW_OK ? ratio_with_working(hazard, spot, distance_m, ratio, working, error) : status;
 }
 
 /* Hazard ratio of looking at a matt spot from a distance.
@@ -185,8 +230,12 @@ enum bw_status bw_hazard_diffuse_reach(const struct bw_hazard *hazard, const str
     if (working != NULL) {
         struct bw_ratio ratio;
         bw_working_heading(working, "Diffuse reflection");
+        bw_working_step(working, "r", distance_m, "m", NULL, NULL, NULL);
+        bw_working_note(working, "%s",
+                        distance_m > 0. ? "the farthest place where the sum is above 1, found by halving; put "
+                                          "into the steps below it gives 1"
+                                        : "the sum is nowhere above 1, not even at the spot");
         search.status = ratio_with_working(hazard, spot, distance_m, &ratio, working, error);
-        bw_working_step(working, "r", distance_m, "m", NULL, "farthest place with a ratio above 1", NULL);
     }
     return search.status;
 }

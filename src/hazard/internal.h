@@ -50,7 +50,9 @@ struct finding {
 struct tally {
     struct finding rules[BW_RULES];
     double least_j; /* lowest limit x aperture squared of all windows: what binds a beam narrower than the aperture */
+    struct finding least; /* where that is */
     double pulses, group_pulses;
+    struct bw_source_note correction_source; /* of rule 3 */
 };
 /* A window against every effect by rule 1 or 2. */
 enum bw_status bw_hazard_offer_window(const struct train_case *train, struct tally tallies[BW_EFFECTS],
@@ -58,9 +60,10 @@ enum bw_status bw_hazard_offer_window(const struct train_case *train, struct tal
 /* A pulse or a group against every effect that rule 3 corrects. */
 enum bw_status bw_hazard_offer_train(const struct train_case *train, struct tally tallies[BW_EFFECTS],
                                      const struct window *window, double correction, struct bw_error *error);
-/* The correction of N pulses of a duration. Returns: BW_OUT_OF_RANGE if the rule set has none. */
+/* The correction of N pulses of a duration; source may be NULL. Returns: BW_OUT_OF_RANGE if the rule set has none. */
 enum bw_status bw_hazard_correction(const struct train_case *train, double pulse_s, double ti_s, double pulses,
-                                    double *correction, struct bw_working *working, struct bw_error *error);
+                                    double *correction, struct bw_source_note *source, struct bw_working *working,
+                                    struct bw_error *error);
 bool bw_hazard_train_applies(const struct train_case *train);
 double bw_hazard_grouping_time_s(const struct train_case *train);
 /* The time in which pulses are counted. */
@@ -127,6 +130,9 @@ enum bw_status bw_hazard_list_search(const struct list *list, const struct laws 
                                      struct strictest strictest[LAWS_MAX], struct bw_error *error);
 
 /* train_working.c */
+/* What leads to N. group: what counts as one; NULL = each pulse by itself. */
+void bw_hazard_counting_working(const struct train_case *train, double pulses, const struct window *group,
+                                struct bw_working *working);
 void bw_hazard_train_working(const struct train_case *train, const struct tally tallies[BW_EFFECTS],
                              const struct bw_train_limit_set *limits, struct bw_working *working);
 
@@ -165,6 +171,9 @@ void bw_hazard_before_eye(const struct bw_hazard *hazard, size_t emission, struc
 double bw_hazard_plain_term(const struct bw_hazard *hazard, size_t term, double near_m, double far_m);
 /* Largest sum over terms that add, of one emission alone or (BW_EMISSIONS_MAX) of all. NAN if any term is. */
 double bw_hazard_largest_sum(const struct bw_hazard *hazard, const double ratios[BW_TERMS_MAX], size_t only);
+/* ratio_working.c: of one emission or (BW_EMISSIONS_MAX) of all. Returns: the largest sum. */
+double bw_hazard_alone_working(const struct bw_hazard *hazard, size_t only, double distance_m,
+                               struct bw_working *working);
 void bw_hazard_combine(const struct bw_hazard *hazard, const double ratios[BW_TERMS_MAX], struct bw_ratio *ratio);
 /* Each term's largest ratio between two distances; of one emission alone the others are 0. */
 void bw_hazard_bounds(const struct bw_hazard *hazard, double near_m, double far_m, size_t only,

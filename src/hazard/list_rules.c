@@ -37,14 +37,16 @@ static enum bw_status rule_single(struct list_case *c) {
     return status;
 }
 
-/* The working of the correction that stays. */
+/* The row and the working of the correction that stays. */
 static enum bw_status write_correction(struct list_case *c, double ti_s, double pulses, struct bw_working *working) {
     enum bw_status status = BW_OK;
     double correction;
-    for (size_t i = 0; i < BW_EFFECTS && working != NULL && status == BW_OK; i++)
+    if (working != NULL)
+        bw_hazard_counting_working(c->train, pulses, NULL, working);
+    for (size_t i = 0; i < BW_EFFECTS && status == BW_OK; i++)
         if (c->tallies[i].rules[BW_RULE_TRAIN].found)
             status = bw_hazard_correction(c->train, c->tallies[i].rules[BW_RULE_TRAIN].window.time_s, ti_s, pulses,
-                                          &correction, working, c->error);
+                                          &correction, &c->tallies[i].correction_source, working, c->error);
     return status;
 }
 
@@ -60,14 +62,14 @@ static enum bw_status rule_train(struct list_case *c, struct bw_working *working
         struct window pulse = one_pulse(c, i);
         if (like_before(c, i) || !(c->list.pulses[i].duration_s <= longest_s))
             continue;
-        status = bw_hazard_correction(c->train, pulse.time_s, ti_s, pulses, &correction, NULL, c->error);
+        status = bw_hazard_correction(c->train, pulse.time_s, ti_s, pulses, &correction, NULL, NULL, c->error);
         if (status == BW_OK)
             status = bw_hazard_offer_train(c->train, c->tallies, &pulse, correction, c->error);
     }
     double length_s = fmin(ti_s, c->train->viewing->exposure_s);
     struct window group = {length_s, bw_hazard_list_most_j(&c->list, length_s, 2) / c->list.largest_j, false};
     if (status == BW_OK && group.holds > 0.) {
-        status = bw_hazard_correction(c->train, length_s, ti_s, pulses, &correction, NULL, c->error);
+        status = bw_hazard_correction(c->train, length_s, ti_s, pulses, &correction, NULL, NULL, c->error);
         if (status == BW_OK)
             status = bw_hazard_offer_train(c->train, c->tallies, &group, correction, c->error);
     }

@@ -134,14 +134,13 @@ struct on_axis {
     const struct bw_output *output;
     struct bw_viewing_case viewing;
     double distance_m;
-    struct bw_working *working;
 };
 
 static enum bw_status ratio_on_axis(double exposure_s, void *context, double *ratio, struct bw_error *error) {
     struct on_axis *at = context;
     struct bw_hazard hazard;
     at->viewing.exposure_s = exposure_s;
-    enum bw_status status = bw_hazard_prepare(at->table, at->output, &at->viewing, &hazard, at->working, error);
+    enum bw_status status = bw_hazard_prepare(at->table, at->output, &at->viewing, &hazard, NULL, error);
     if (status == BW_OK)
         *ratio = bw_hazard_ratio(&hazard, at->distance_m);
     return status;
@@ -157,18 +156,26 @@ enum bw_status bw_hazard_permitted_time(const struct bw_table *table, const stru
                                         const struct bw_viewing_case *viewing, double distance_m,
                                         struct bw_permitted_time *time, struct bw_working *working,
                                         struct bw_error *error) {
-    struct on_axis at = {table, output, *viewing, distance_m, NULL};
+    struct on_axis at = {table, output, *viewing, distance_m};
     *time = (struct bw_permitted_time){nan(""), false};
     if (!(distance_m >= 0.))
         return bw_error_set(error, BW_ARGUMENT, "distance is %g m; it must be 0 or more", distance_m);
     enum bw_status status = bw_hazard_time_to_limit(table, &output, 1, viewing, ratio_on_axis, &at, time, error);
     if (status != BW_OK || working == NULL)
         return status;
-    double used_s = time->unbounded ? longest_s : fmax(time->exposure_s, shortest_s), ratio = nan("");
+    double used_s = time->unbounded ? longest_s : fmax(time->exposure_s, shortest_s);
+    struct bw_hazard hazard;
     bw_working_heading(working, "Longest exposure at %g m", distance_m);
-    at.working = working;
-    status = ratio_on_axis(used_s, &at, &ratio, error);
-    bw_working_step(working, "ratio", ratio, "", NULL, "largest sum of the ratios that add", "t = %.9g s", used_s);
-    bw_working_step(working, "t", time->exposure_s, "s", NULL, "longest exposure with a ratio of 1 or below", NULL);
+    bw_working_step(working, "te", time->exposure_s, "s", NULL, NULL, NULL);
+    bw_working_note(working,
+                    "longest exposure with a sum of 1 or below, searched between the times where a limit changes "
+                    "its law; the steps below hold for %.10g s",
+                    used_s);
+    at.viewing.exposure_s = used_s;
+    status = bw_hazard_prepare(table, output, &at.viewing, &hazard, working, error);
+    if (status == BW_OK) {
+        bw_working_heading(working, "Ratio after %.10g s", used_s);
+        bw_hazard_ratio_working(&hazard, distance_m, working);
+    }
     return status;
 }

@@ -82,57 +82,26 @@ static struct bw_reach solve(struct search *search) {
     return (struct bw_reach){distance_m, false};
 }
 
-static void write_round(const struct bw_beam *beam, double distance_m, double aperture_m, double per_w,
-                        struct bw_working *working) {
-    bw_working_step(working, "d", bw_beam_diameter_m(beam, distance_m), "m", NULL,
-                    beam->spread == BW_LINEAR ? "a + phi |r - r0|" : "sqrt(a^2 + (phi (r - r0))^2)",
-                    "a = %.6g m, phi = %.6g rad, r = %.6g m, r0 = %.6g m", beam->diameter_m, beam->divergence_rad,
-                    distance_m, beam->waist_m);
-    bw_working_step(working, "E/P", per_w, "1/m2", NULL,
-                    beam->profile == BW_TOP_HAT ? "4 / (pi max(D, d)^2)" : "(1 - exp(-(D/d)^2)) / (pi D^2/4)",
-                    "D = %.6g m", aperture_m);
-}
-
-static void write_elliptical(const struct bw_beam *beam, double distance_m, double aperture_m, double per_w,
-                             struct bw_working *working) {
-    bw_working_step(working, "E/P", per_w, "1/m2", NULL,
-                    beam->profile == BW_TOP_HAT ? "common area of ellipse and aperture / their areas' product"
-                                                : "mean over the aperture of the elliptical Gaussian",
-                    "axes %.6g m and %.6g m, D = %.6g m", bw_beam_diameter_m(beam, distance_m),
-                    bw_beam_widest_m(beam, distance_m), aperture_m);
-}
-
-static void write_term(const struct bw_hazard *hazard, size_t index, double distance_m, struct bw_working *working) {
-    const struct bw_term *term = &hazard->terms[index];
-    const struct bw_emission *emission = &hazard->output->emissions[term->emission];
-    const struct bw_beam *beam = &hazard->output->beams[term->emission];
-    double per_w = bw_beam_irradiance_per_w(beam, distance_m, term->limit.aperture_m);
-    struct bw_seen seen;
-    if (bw_hazard_seen(hazard, index, distance_m, &seen, NULL) != BW_OK)
-        return; /* the ratio was had, so this is */
-    (beam->elliptical ? write_elliptical : write_round)(beam, distance_m, term->limit.aperture_m, per_w, working);
-    if (beam->cluster.count > 1) {
-        per_w = seen.ratio * seen.limit.irradiance_w_m2 / emission->average_power_w;
-        bw_working_step(working, "E/P", per_w, "1/m2", NULL, "of the emitters that are seen together",
-                        "%zu of %zu emitters", seen.emitters, beam->cluster.count);
-    }
-    if (hazard->shaped)
-        bw_working_step(working, "alpha", seen.subtense_rad, "rad", NULL, "2 atan(source / 2 r), sides averaged", NULL);
-    bw_working_step(working, "ratio", seen.ratio, "", NULL, "P (E/P) / E_limit",
-                    "%.6g W x %.6g 1/m2 / %.6g W/m2 (%g nm, %s)", emission->average_power_w, per_w,
-                    seen.limit.irradiance_w_m2, emission->wavelength_nm, bw_effect_name(term->limit.limit.effect));
-}
-
+/* The distance, and the ratio there: whoever puts it in finds 1. */
 static void write_working(const struct search *search, const struct bw_reach *reach, struct bw_working *working) {
-    const struct bw_hazard *hazard = search->hazard;
-    bw_working_heading(working, "Hazard distance");
-    for (size_t i = 0; i < hazard->term_count; i++)
-        if (search->only == BW_EMISSIONS_MAX || search->only == hazard->terms[i].emission)
-            write_term(hazard, i, reach->distance_m, working);
-    bw_working_step(working, "sum", ratio_at(search, reach->distance_m), "", NULL, "largest sum of the ratios that add",
-                    NULL);
-    bw_working_step(working, "r", reach->distance_m, "m", NULL,
-                    reach->unbounded ? "the ratio never falls to 1" : "farthest place with a ratio above 1", NULL);
+    bool nowhere = !(reach->distance_m > 0.);
+    if (search->only == BW_EMISSIONS_MAX)
+        bw_working_heading(working, "Hazard distance");
+    else
+        bw_working_heading(working, "Hazard distance of %s alone",
+                           search->hazard->output->emissions[search->only].name);
+    bw_working_step(working, "r", reach->distance_m, "m", NULL, NULL, NULL);
+    bw_working_note(working, "%s",
+                    reach->unbounded ? "never ends: even without end the sum is not below 1"
+                    : nowhere        ? "the sum is nowhere above 1, not even where the beam is narrowest"
+                                     : "the farthest place where the sum is above 1, found by halving; put "
+                                       "into the steps below it gives 1");
+    double waist_m = bw_hazard_settled_m(search->hazard, search->only);
+    if (nowhere && waist_m > 0.) {
+        bw_working_step(working, "r", waist_m, "m", NULL, "r0", NULL);
+        bw_working_note(working, "the last waist");
+    }
+    bw_hazard_alone_working(search->hazard, search->only, nowhere ? waist_m : reach->distance_m, working);
 }
 
 /* Hazard distance of the direct beam.

@@ -17,8 +17,10 @@ static void offer(const struct train_case *train, struct tally *tally, enum bw_t
     struct finding *finding = &tally->rules[rule];
     double per_unit = correction * bw_hazard_whole_limit_j_m2(limit, train->viewing->subtense_rad) / window->holds;
     double narrow = per_unit * limit->aperture_m * limit->aperture_m;
-    if (!(tally->least_j <= narrow))
+    if (!(tally->least_j <= narrow)) {
         tally->least_j = narrow;
+        tally->least = (struct finding){true, per_unit, correction, *window, *limit};
+    }
     if (finding->found && finding->per_unit_j_m2 <= per_unit)
         return;
     *finding = (struct finding){true, per_unit, correction, *window, *limit};
@@ -112,7 +114,8 @@ static bool is_group(const struct train_case *train, const struct window *group)
 }
 
 enum bw_status bw_hazard_correction(const struct train_case *train, double pulse_s, double ti_s, double pulses,
-                                    double *correction, struct bw_working *working, struct bw_error *error) {
+                                    double *correction, struct bw_source_note *source, struct bw_working *working,
+                                    struct bw_error *error) {
     struct bw_train_count count = {
         .pulse_s = pulse_s,
         .ti_s = ti_s,
@@ -120,7 +123,7 @@ enum bw_status bw_hazard_correction(const struct train_case *train, double pulse
         .exposure_s = train->viewing->exposure_s,
         .subtense_rad = train->viewing->subtense_rad,
     };
-    *correction = bw_limits_train_correction(train->table, &count, NULL, working);
+    *correction = bw_limits_train_correction(train->table, &count, source, working);
     if (!(*correction > 0. && *correction <= 1.))
         return bw_error_set(error, BW_OUT_OF_RANGE, "no row of %s corrects a train of %g pulses of %g s",
                             bw_table_id(train->table), pulses, pulse_s);
@@ -146,8 +149,8 @@ bool bw_hazard_train_applies(const struct train_case *train) {
 }
 
 /* Rule 3. Pulses inside Ti count as one pulse of the length Ti with all their energy; the correction goes by the
- * number of groups (pulse_groups.c). Two readings of a group are kept, and the stricter holds: the group against the limit of
- * Ti, and each pulse in it against the limit of its own duration, both corrected. */
+ * number of groups (pulse_groups.c). Two readings of a group are kept, and the stricter holds: the group against the
+ * limit of Ti, and each pulse in it against the limit of its own duration, both corrected. */
 static enum bw_status rule_train(const struct train_case *train, struct tally tallies[BW_EFFECTS],
                                  struct bw_working *working, struct bw_error *error) {
     double ti_s = bw_hazard_grouping_time_s(train), correction;
@@ -157,7 +160,11 @@ static enum bw_status rule_train(const struct train_case *train, struct tally ta
     if (!(train->emission->pulse_duration_s <= bw_limits_train_longest_pulse(train->table) * (1. + 1e-12)))
         return BW_OK;
     double pulses = bw_hazard_groups(train->emission, ti_s, bw_hazard_counting_time_s(train));
-    enum bw_status status = bw_hazard_correction(train, group.time_s, ti_s, pulses, &correction, working, error);
+    struct bw_source_note source = {0};
+    if (working != NULL)
+        bw_hazard_counting_working(train, pulses, is_group(train, &group) ? &group : NULL, working);
+    enum bw_status status =
+        bw_hazard_correction(train, group.time_s, ti_s, pulses, &correction, &source, working, error);
     if (status == BW_OK)
         status = bw_hazard_offer_train(train, tallies, &pulse, correction, error);
     if (status == BW_OK && is_group(train, &group))
@@ -166,6 +173,7 @@ static enum bw_status rule_train(const struct train_case *train, struct tally ta
         if (tallies[i].rules[BW_RULE_TRAIN].found) {
             tallies[i].pulses = pulses;
             tallies[i].group_pulses = is_group(train, &group) ? group.holds : 1.;
+            tallies[i].correction_source = source;
         }
     return status;
 }
@@ -212,6 +220,7 @@ static void conclude(const struct train_case *train, const struct tally *tally, 
     limit->pulses = tally->pulses;
     limit->group_pulses = tally->group_pulses;
     limit->correction = tally->rules[BW_RULE_TRAIN].found ? tally->rules[BW_RULE_TRAIN].correction : 1.;
+    limit->correction_source = tally->correction_source;
 }
 
 static enum bw_status check(const struct train_case *train, struct bw_error *error) {

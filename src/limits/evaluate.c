@@ -181,6 +181,8 @@ static void evaluate_row(const struct query *query, const struct held_row *held,
     limit->printed_as_irradiance = row->quantity == QUANTITY_E || row->quantity == QUANTITY_L;
     if (query->working != NULL)
         bw_working_row(query, row, &text, radiance ? gamma_mrad : limits_nan);
+    if (query->working != NULL && cone != NULL && (radiance || query->subtense_mrad > gamma_mrad))
+        bw_working_gamma(query, cone, gamma_mrad);
     double product = row->value;
     if (radiance)
         product *= bw_pi / 4.0 * (gamma_mrad * 1e-3) * (gamma_mrad * 1e-3);

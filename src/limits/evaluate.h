@@ -24,6 +24,7 @@ void bw_working_row(const struct query *query, const struct limit_row *row, stru
 void bw_working_factor(const struct query *query, const struct factor_use *use, const struct factor_row *row,
                        double value, struct product_text *text);
 void bw_working_ce(const struct query *query, double value, double alpha_max_mrad);
+void bw_working_gamma(const struct query *query, const struct size_row *cone, double gamma_mrad);
 void bw_working_cone(const struct query *query, const struct size_row *cone, double gamma_mrad, double value,
                      struct product_text *text);
 void bw_working_limit(const struct query *query, const struct limit_row *row, const struct bw_limit *limit,

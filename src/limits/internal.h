@@ -199,8 +199,8 @@ struct held_row {
     unsigned short asks;                      /* what is still to be asked: ASKS_... */
 };
 enum { ASKS_NOTHING = 0, ASKS_SOURCE = 1, ASKS_EDGES = 2 }; /* the subtense and area; symbolic edges */
-struct cell { /* ascending by effect, then by row */
-    unsigned first, count; /* in plan.held */
+struct cell {                                               /* ascending by effect, then by row */
+    unsigned first, count;                                  /* in plan.held */
 };
 
 /* The rows that hold in each zone of wavelength and time. Cells that hold the same rows are one. Cell 0 is empty. */
@@ -312,5 +312,7 @@ enum bw_status bw_limits_materials_read(const struct bw_ini *ini, struct bw_mate
 enum { LIMITS_SOURCE_SIZE = 200 };
 const char *bw_limits_source_text(char out[LIMITS_SOURCE_SIZE], const char *table, const char *section,
                                   const struct row_note *note);
+/* train.c: "min(1, max(0.4, 5 N^-0.25))", with N as a symbol or a number. */
+void bw_limits_train_formula(char out[LIMITS_SOURCE_SIZE], const struct train_row *row, const char *pulses);
 
 #endif

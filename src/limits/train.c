@@ -3,6 +3,7 @@
 
 #include <math.h>
 #include <stdio.h>
+#include <string.h>
 
 bool bw_limits_grouping_time(const struct bw_table *table, double wavelength_nm, double *ti_s,
                              struct bw_source_note *source) {
@@ -57,26 +58,36 @@ static bool train_row_holds(const struct train_row *row, const struct bw_train_c
            bw_limits_in_span(&row->exposure_s, count->exposure_s);
 }
 
-static void train_formula(char out[LIMITS_SOURCE_SIZE], const struct train_row *row) {
-    char scale[LIMITS_NUMBER_SIZE], power[LIMITS_NUMBER_SIZE], low[LIMITS_NUMBER_SIZE];
+void bw_limits_train_formula(char out[LIMITS_SOURCE_SIZE], const struct train_row *row, const char *pulses) {
+    char scale[LIMITS_NUMBER_SIZE], power[LIMITS_NUMBER_SIZE], low[LIMITS_NUMBER_SIZE], product[LIMITS_SOURCE_SIZE];
     bw_limits_number(scale, row->scale);
     bw_limits_number(power, row->power.exponent);
     bool one = !(row->scale < 1.0) && !(row->scale > 1.0);
-    if (row->power.law == POWER_0)
+    const char *times = strcmp(pulses, "N") == 0 ? " " : " * ";
+    if (row->power.law == POWER_0) {
         snprintf(out, LIMITS_SOURCE_SIZE, "%s", scale);
-    else if (row->floor > 0.0)
-        snprintf(out, LIMITS_SOURCE_SIZE, "%s%sN^%s, at least %s", one ? "" : scale, one ? "" : " ", power,
-                 bw_limits_number(low, row->floor));
+        return;
+    }
+    snprintf(product, sizeof product, "%s%s%s^%s", one ? "" : scale, one ? "" : times, pulses, power);
+    if (row->floor > 0.0)
+        snprintf(out, LIMITS_SOURCE_SIZE, "min(1, max(%s, %.120s))", bw_limits_number(low, row->floor), product);
     else
-        snprintf(out, LIMITS_SOURCE_SIZE, "%s%sN^%s", one ? "" : scale, one ? "" : " ", power);
+        snprintf(out, LIMITS_SOURCE_SIZE, one ? "%s" : "min(1, %.120s)", product);
 }
 
+/* plain: the correction is 1 whatever the row says, since one pulse is no train, or the pulse is too long for it. */
 static void train_working(const struct bw_table *table, const struct train_row *row, double pulses, double lowest,
-                          struct bw_working *working) {
-    char formula[LIMITS_SOURCE_SIZE], source[LIMITS_SOURCE_SIZE], number[LIMITS_NUMBER_SIZE];
-    train_formula(formula, row);
-    bw_working_step(working, "CP", lowest, "", bw_limits_source_text(source, table->id, "train", &row->note), formula,
-                    "N = %s", bw_limits_number(number, pulses));
+                          bool plain, struct bw_working *working) {
+    char formula[LIMITS_SOURCE_SIZE], numbers[LIMITS_SOURCE_SIZE], source[LIMITS_SOURCE_SIZE];
+    char number[LIMITS_NUMBER_SIZE];
+    bw_limits_train_formula(formula, row, "N");
+    bw_limits_train_formula(numbers, row, bw_limits_number(number, pulses));
+    bw_working_step(working, "CP", lowest, "", bw_limits_source_text(source, table->id, "train", &row->note),
+                    plain ? "1" : formula, "%s", plain ? "" : numbers);
+    if (plain && pulses > 1.0)
+        bw_working_note(working, "the rule holds for pulses of %g s at most", table->repetition.longest_pulse_s);
+    else if (plain)
+        bw_working_note(working, "one pulse is no train");
 }
 
 double bw_limits_train_correction(const struct bw_table *table, const struct bw_train_count *count,
@@ -99,12 +110,13 @@ double bw_limits_train_correction(const struct bw_table *table, const struct bw_
     }
     if (lowest_row == NULL)
         return limits_nan;
-    if (count->pulse_s > table->repetition.longest_pulse_s * (1.0 + limits_edge_rounding) || pulses <= 1.0)
+    bool plain = count->pulse_s > table->repetition.longest_pulse_s * (1.0 + limits_edge_rounding) || pulses <= 1.0;
+    if (plain)
         lowest = 1.0; /* the rule does not hold for so long a pulse; one pulse is no train */
     if (source != NULL)
         *source = (struct bw_source_note){table->id, "train", lowest_row->note.key, lowest_row->note.clause,
                                           lowest_row->note.known};
     if (working != NULL)
-        train_working(table, lowest_row, pulses, lowest, working);
+        train_working(table, lowest_row, pulses, lowest, plain, working);
     return lowest;
 }

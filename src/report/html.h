@@ -22,11 +22,13 @@ extern const char html_style[], html_style_print[]; /* one string each: a string
 void html_top(struct bw_text *out, const struct bw_result *result, const struct bw_provenance *provenance);
 void html_findings(struct bw_text *out, const struct bw_result *result);
 void html_distances(struct bw_text *out, const struct bw_result *result);
+void html_comparison(struct bw_text *out, const struct bw_result *result); /* nothing without --rules all */
 void html_eyewear(struct bw_text *out, const struct bw_result *result);
 void html_rooms(struct bw_text *out, const struct bw_result *result);
 void html_incidents(struct bw_text *out, const struct bw_result *result);
 /* html_more.c: of one handpiece, beside its distances; of the people of a room. */
-void html_handpiece_more(struct bw_text *out, const struct bw_result *result, const struct bw_distance_result *distance);
+void html_handpiece_more(struct bw_text *out, const struct bw_result *result,
+                         const struct bw_distance_result *distance);
 void html_person_times(struct bw_text *out, const struct bw_result *result, const struct bw_room_result *found);
 /* html_record.c: the steps of one working. */
 void html_steps(struct bw_text *out, const struct bw_working *working);

@@ -1,6 +1,8 @@
 /* The working, where the figures come from, who signs. */
 #include "html.h"
 
+#include <string.h>
+
 static void labelled(struct bw_text *out, const char *tag, const char *before, const char *text, const char *after) {
     bw_text_add(out, "<%s>%s", tag, before);
     report_xml(out, text);
@@ -9,14 +11,18 @@ static void labelled(struct bw_text *out, const char *tag, const char *before, c
 
 static void step(struct bw_text *out, const struct bw_step *step) {
     struct bw_text line = {0};
-    bw_text_add(&line, "%s = %.9g%s%s", step->symbol, step->value, step->unit[0] ? " " : "", step->unit);
+    char value[BW_NUMBER_SIZE];
+    bw_text_add(&line, "%s = %s%s%s", step->symbol, report_step_value(value, step), step->unit[0] ? " " : "",
+                step->unit);
     bw_text_add(out, "<dl class=\"step\">");
     labelled(out, "dt", "", line.data ? line.data : "", "");
-    if (step->formula && step->formula[0])
+    if (!report_step_repeats(step, step->formula))
         labelled(out, "dd", "= ", step->formula, "");
-    if (step->numbers && step->numbers[0])
+    if (!report_step_repeats(step, step->numbers) && strcmp(step->numbers, step->formula) != 0)
         labelled(out, "dd", "= ", step->numbers, "");
-    if (step->source && step->source[0])
+    if (step->note[0])
+        labelled(out, "dd", "(", step->note, ")");
+    if (step->source[0])
         labelled(out, "dd", "[", step->source, "]");
     bw_text_add(out, "</dl>\n");
     out->failed = out->failed || line.failed;
@@ -32,33 +38,65 @@ void html_steps(struct bw_text *out, const struct bw_working *working) {
     }
 }
 
-void html_working(struct bw_text *out, const struct bw_result *result) {
-    bool any = false;
+static void fold(struct bw_text *out, const char *first, const char *second, const struct bw_working *working,
+                 bool used[REPORT_SYMBOLS_MAX]) {
+    if (working->count == 0)
+        return;
+    bw_text_add(out, "<details><summary>");
+    report_xml(out, first);
+    bw_text_add(out, " ");
+    report_xml(out, second);
+    bw_text_add(out, "</summary>\n");
+    html_steps(out, working);
+    bw_text_add(out, "</details>\n");
+    report_symbol_mark(working, used);
+}
+
+static void legend(struct bw_text *out, const bool used[REPORT_SYMBOLS_MAX]) {
+    static const char *const heads[] = {"Symbol", "Stands for"};
+    size_t count;
+    const struct report_symbol *symbols = report_symbols(&count);
+    bw_text_add(out, "<details><summary>What the symbols stand for</summary>\n");
+    html_table(out, "", heads, 2);
+    for (size_t i = 0; i < count; i++) {
+        if (!used[i])
+            continue;
+        html_row(out, NULL);
+        html_cell(out, NULL, "%s", symbols[i].symbol);
+        html_cell(out, NULL, "%s", symbols[i].meaning);
+        html_row_end(out);
+    }
+    html_table_end(out);
+    html_paragraph(out, "%s", report_legend_words);
+    bw_text_add(out, "</details>\n");
+}
+
+static bool any_working(const struct bw_result *result) {
     for (size_t i = 0; i < result->distance_count; i++)
-        any = any || result->distances[i].working.count > 0;
-    if (!any)
+        if (result->distances[i].working.count > 0)
+            return true;
+    return false;
+}
+
+void html_working(struct bw_text *out, const struct bw_result *result) {
+    bool used[REPORT_SYMBOLS_MAX] = {false};
+    if (!any_working(result))
         return;
     html_heading(out, "working", "The working");
     html_paragraph(out,
                    "Each figure with its formula, its numbers and the row it comes from, as the evaluation used it: "
                    "not rounded to the safe side. Unfold before printing to have it on paper.");
-    for (size_t i = 0; i < result->distance_count; i++) {
-        const struct bw_distance_result *distance = &result->distances[i];
-        bw_text_add(out, "<details><summary>");
-        report_xml(out, report_laser(result, distance->laser)->name);
-        bw_text_add(out, " ");
-        report_xml(out, report_handpiece(result, distance->laser, distance->handpiece)->name);
-        bw_text_add(out, "</summary>\n");
-        html_steps(out, &distance->working);
-        bw_text_add(out, "</details>\n");
-    }
-    for (size_t i = 0; i < result->incident_count; i++) {
-        bw_text_add(out, "<details><summary>incident ");
-        report_xml(out, result->the_case->incidents[result->incidents[i].incident].name);
-        bw_text_add(out, "</summary>\n");
-        html_steps(out, &result->incidents[i].working);
-        bw_text_add(out, "</details>\n");
-    }
+    for (size_t i = 0; i < result->distance_count; i++)
+        fold(out, report_laser(result, result->distances[i].laser)->name,
+             report_handpiece(result, result->distances[i].laser, result->distances[i].handpiece)->name,
+             &result->distances[i].working, used);
+    fold(out, "Goggles", "", &result->eyewear_working, used);
+    for (size_t i = 0; i < result->room_count; i++)
+        fold(out, "Room", result->the_case->rooms[result->rooms[i].room].name, &result->rooms[i].working, used);
+    for (size_t i = 0; i < result->incident_count; i++)
+        fold(out, "incident", result->the_case->incidents[result->incidents[i].incident].name,
+             &result->incidents[i].working, used);
+    legend(out, used);
 }
 
 static void pair(struct bw_text *out, const char *name, const char *value) {

@@ -26,7 +26,8 @@ const char *report_ratio(char out[REPORT_QUANTITY_SIZE], double ratio);         
 const char *report_density(char out[REPORT_QUANTITY_SIZE], double od);       /* needed: up, one decimal */
 const char *report_density_given(char out[REPORT_QUANTITY_SIZE], double od); /* down; "none" */
 const char *report_plain(char out[REPORT_QUANTITY_SIZE], double value); /* an input, or what is no limit: nearest */
-const char *report_time(char out[REPORT_QUANTITY_SIZE], const struct bw_permitted_time *time); /* down; "none", "never" */
+const char *report_time(char out[REPORT_QUANTITY_SIZE],
+                        const struct bw_permitted_time *time);                    /* down; "none", "never" */
 const char *report_area(char out[REPORT_QUANTITY_SIZE], double area_m2, bool us); /* up */
 const char *report_known(enum bw_known known);                                    /* "read", "memory" */
 const char *report_known_words(enum bw_known known);                              /* "read", "from memory" */
@@ -50,6 +51,21 @@ void report_verdict(struct bw_text *out, const struct bw_result *result);
 const char *report_opening_kind(enum bw_opening_kind kind);
 const char *report_base_name(const char *path);
 
+/* ---- legend.c: the symbols of the working ------------------------------------------------------- */
+
+struct report_symbol {
+    const char *symbol, *meaning;
+};
+enum { REPORT_SYMBOLS_MAX = 96 };
+const struct report_symbol *report_symbols(size_t *count); /* fewer than REPORT_SYMBOLS_MAX */
+bool report_symbol_used(const struct bw_working *working, const char *symbol);
+void report_symbol_mark(const struct bw_working *working, bool used[REPORT_SYMBOLS_MAX]);
+extern const char report_legend_words[];
+/* Value of a step, seven digits. */
+const char *report_step_value(char out[BW_NUMBER_SIZE], const struct bw_step *step);
+/* A formula or numbers that say no more than the value itself, or than what stands before. */
+bool report_step_repeats(const struct bw_step *step, const char *text);
+
 /* ---- json.c ------------------------------------------------------------------------------------ */
 
 enum { JSON_DEPTH = 16 };
@@ -72,6 +88,8 @@ void json_point(struct json *json, const char *key, struct bw_point point);
 /* Members of an object that is open. */
 void report_distance_members(struct json *json, const struct bw_result *result);
 void report_eyewear_members(struct json *json, const struct bw_result *result);
+void report_beam(struct json *json, const struct bw_result *result, const struct bw_distance_result *distance);
+void report_comparison_members(struct json *json, const struct bw_result *result); /* nothing without --rules all */
 void report_room_members(struct json *json, const struct bw_result *result, bool timing);
 void report_incident_members(struct json *json, const struct bw_result *result);
 void report_time_member(struct json *json, const char *key, const char *unbounded_key,
@@ -108,9 +126,15 @@ void text_distance_table(struct bw_text *out, const struct bw_result *result);
 void text_goggles_matrix(struct bw_text *out, const struct bw_result *result);
 void text_rooms(struct bw_text *out, const struct bw_result *result, bool timing);
 void text_findings(struct bw_text *out, const struct bw_result *result, enum bw_severity from, enum bw_severity to);
-void text_handpiece_more(struct bw_text *out, const struct bw_result *result, const struct bw_distance_result *distance);
+void text_handpiece_more(struct bw_text *out, const struct bw_result *result,
+                         const struct bw_distance_result *distance);
 void text_person_times(struct bw_text *out, const struct bw_result *result, const struct bw_room_result *found);
 void text_incidents(struct bw_text *out, const struct bw_result *result);
-void text_all_working(struct bw_text *out, const struct bw_result *result);
+void text_limit_sets(struct bw_text *out, const struct bw_limit_query *query); /* nothing without --rules all */
+void report_limit_difference(struct bw_text *out, const struct bw_limit_query *query);
+void text_comparison(struct bw_text *out, const struct bw_result *result); /* nothing without --rules all */
+/* Of the distances; and of goggles and rooms, if asked for. With the legend. */
+enum { WORKING_DISTANCE = 1, WORKING_EYEWEAR = 2, WORKING_ROOM = 4 };
+void text_all_working(struct bw_text *out, const struct bw_result *result, unsigned of);
 
 #endif

@@ -45,7 +45,7 @@ static void distances(struct json *json, const struct bw_distance_result *distan
         json_bool(json, "diffuse_unbounded", true);
 }
 
-static void beam(struct json *json, const struct bw_result *result, const struct bw_distance_result *distance) {
+void report_beam(struct json *json, const struct bw_result *result, const struct bw_distance_result *distance) {
     const struct bw_output *output = &report_handpiece(result, distance->laser, distance->handpiece)->output;
     json_object(json, NULL);
     json_string(json, "laser", report_laser(result, distance->laser)->name);
@@ -78,7 +78,7 @@ void report_distance_members(struct json *json, const struct bw_result *result) 
     json_string(json, "rules", bw_table_id(result->table));
     json_array(json, "beams");
     for (size_t i = 0; i < result->distance_count; i++)
-        beam(json, result, &result->distances[i]);
+        report_beam(json, result, &result->distances[i]);
     json_end(json);
 }
 
@@ -89,5 +89,6 @@ void bw_report_distance_json(struct bw_text *out, const struct bw_result *result
     report_distance_members(&json, result);
     if (result->incident_count > 0)
         report_incident_members(&json, result);
+    report_comparison_members(&json, result);
     json_end(&json);
 }

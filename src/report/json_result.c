@@ -30,6 +30,7 @@ void bw_report_result_json(struct bw_text *out, const struct bw_result *result,
     findings(&json, result);
     json_object(&json, "distance");
     report_distance_members(&json, result);
+    report_comparison_members(&json, result);
     json_end(&json);
     json_object(&json, "eyewear");
     report_eyewear_members(&json, result);

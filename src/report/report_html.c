@@ -54,6 +54,7 @@ void bw_report_html(struct bw_text *out, const struct bw_result *result, const s
     html_top(out, result, provenance);
     html_findings(out, result);
     html_distances(out, result);
+    html_comparison(out, result);
     html_eyewear(out, result);
     html_rooms(out, result);
     html_incidents(out, result);

@@ -101,6 +101,7 @@ void bw_report_distance_text(struct bw_text *out, const struct bw_result *result
               "needs at the exit, all of them together keeping the limit. Limits are rounded down, "
               "distances and OD up.");
     text_incidents(out, result);
+    text_comparison(out, result);
     text_findings(out, result, BW_DANGER, BW_NOTE);
-    text_all_working(out, result);
+    text_all_working(out, result, WORKING_DISTANCE);
 }

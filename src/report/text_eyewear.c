@@ -104,5 +104,5 @@ void bw_report_eyewear_text(struct bw_text *out, const struct bw_result *result)
     text_wrap(out, "",
               "What is needed is rounded up, what is given down. Whether the filter withstands the beam is not "
               "judged.");
-    text_all_working(out, result);
+    text_all_working(out, result, WORKING_DISTANCE | WORKING_EYEWEAR);
 }

@@ -111,4 +111,5 @@ void bw_report_limit_text(struct bw_text *out, const struct bw_limit_query *quer
         text_wrap(out, "",
                   "The time of 0.25 s rests on the aversion response; the German radiation protection commission "
                   "(SSK, 15 March 2006) says that newer results do not bear this assumption out.");
+    text_limit_sets(out, query);
 }

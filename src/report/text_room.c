@@ -87,5 +87,5 @@ void bw_report_room_text(struct bw_text *out, const struct bw_result *result, bo
     text_findings(out, result, BW_DANGER, BW_ACTION);
     text_rooms(out, result, timing);
     text_findings(out, result, BW_CAUTION, BW_NOTE);
-    text_all_working(out, result);
+    text_all_working(out, result, WORKING_DISTANCE | WORKING_ROOM);
 }

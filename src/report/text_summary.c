@@ -63,6 +63,7 @@ void bw_report_summary_text(struct bw_text *out, const struct bw_result *result)
     bw_text_free(&verdict);
     text_findings(out, result, BW_DANGER, BW_ACTION);
     text_distance_table(out, result);
+    text_comparison(out, result);
     text_goggles_matrix(out, result);
     text_rooms(out, result, false);
     text_incidents(out, result);

@@ -258,7 +258,8 @@ bool bw_room_worst(struct workspace *workspace, const struct image *image, const
         if (is_final(workspace, &part, precision, steps)) {
             double ratio = bw_room_value(light, &part);
             if (ratio > found->ratio) {
-                *found = (struct finding){ratio, part.length_m, part.total_share};
+                *found = (struct finding){ratio, part.length_m, part.total_share, fmin(part.share, part.chord_share),
+                                          light->beside != NULL ? part.aside_rad : 0};
                 better = true;
             }
             continue;

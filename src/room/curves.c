@@ -142,6 +142,42 @@ double bw_room_diffuse_exactly(const struct spot_curve *spot, double distance_m)
     return envelope_at(spot, distance_m);
 }
 
+/* One of the spots that diffuse_at tries: the smallest, or one that a correction makes stricter. */
+static void try_spot(const struct spot_curve *spot, const struct bw_spot *other, double distance_m, double *best,
+                     struct bw_spot *deciding, double *seen_m) {
+    struct bw_ratio at;
+    if (bw_hazard_diffuse_ratio(spot->hazard, other, distance_m, &at, NULL) != BW_OK ||
+        !(pick(&at, spot->emission) > *best))
+        return;
+    *best = pick(&at, spot->emission);
+    *deciding = *other;
+    *seen_m = distance_m;
+}
+
+static void try_spots(const struct spot_curve *spot, double distance_m, double *best, struct bw_spot *deciding,
+                      double *seen_m) {
+    const struct bw_output *output = spot->hazard->output;
+    try_spot(spot, &spot->spot, distance_m, best, deciding, seen_m);
+    for (size_t k = 0; k < STEPS; k++) {
+        struct bw_spot other = spot->spot;
+        for (size_t i = 0; i < output->count; i++)
+            if (!output->emissions[i].continuous)
+                other.diameter_m[i] = fmax(other.diameter_m[i], 2 * distance_m * tan(steps_rad[k] / 2) * just_beyond);
+        try_spot(spot, &other, distance_m, best, deciding, seen_m);
+    }
+}
+
+void bw_room_diffuse_deciding(const struct spot_curve *spot, double distance_m, struct bw_spot *deciding,
+                              double *seen_m) {
+    double best = -1;
+    *deciding = spot->spot;
+    *seen_m = distance_m;
+    try_spots(spot, distance_m, &best, deciding, seen_m);
+    for (size_t i = 0; i < spot->step_count; i++)
+        if (spot->steps[i].distance_m > distance_m)
+            try_spots(spot, spot->steps[i].distance_m, &best, deciding, seen_m);
+}
+
 /* A bin is filled when first asked for: a limit costs far more than all else. */
 double bw_room_diffuse_at(struct spot_curve *spot, double distance_m) {
     struct curve *curve = &spot->curve;

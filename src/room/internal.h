@@ -164,6 +164,9 @@ struct spot_curve { /* a lit spot, seen from a distance */
 enum bw_status bw_room_diffuse_curve(struct spot_curve *spot, double far_m, struct bw_error *error);
 double bw_room_diffuse_at(struct spot_curve *spot, double distance_m); /* bound of the bin */
 double bw_room_diffuse_exactly(const struct spot_curve *spot, double distance_m);
+/* The spot and the distance that this ratio comes from: as they are, or where a train correction sets in. */
+void bw_room_diffuse_deciding(const struct spot_curve *spot, double distance_m, struct bw_spot *deciding,
+                              double *seen_m);
 
 /* ---- beside.c: what falls beside the allowed aims --------------------------------------------------------------- */
 
@@ -235,6 +238,7 @@ struct precision {
 };
 struct finding {
     double ratio, length_m, share;
+    double pass_share, aside_rad; /* of it: what lets light through; the angle beside the aims */
 };
 /* The worst of the parts [first, first + count) at the target, if more than found->ratio. */
 bool bw_room_worst(struct workspace *workspace, const struct image *image, const struct light *light,

@@ -55,6 +55,7 @@ void bw_room_opening_verdict(const struct bw_opening *opening, const struct bw_p
     result->ratio_beyond = passes(opening) > 0 ? worst->ratio * passes(opening) : 0;
     result->worst.ratio = result->ratio_beyond;
     result->worst.share *= passes(opening);
+    result->worst.cover_share = passes(opening);
     result->leaves = !(result->ratio_beyond <= 1);
     snprintf(result->needs, sizeof result->needs, "nothing");
     if (result->leaves)

@@ -71,7 +71,7 @@ static void light_patch(struct scene *scene, const struct image *image, const st
     if (lit->share >= element->matt * image->share && lit->path_m <= near_m)
         return;
     struct light light = bw_room_direct_light(scene, source, image->emitter->area);
-    struct finding nearest = {0, HUGE_VAL, 0}, brightest = {lit->share / element->matt, 0, 0};
+    struct finding nearest = {.length_m = HUGE_VAL}, brightest = {.ratio = lit->share / element->matt};
     size_t first = bw_room_push_roots(&scene->workspace, image), count = scene->workspace.part_count - first;
     light.measure = MEASURE_NEAREST;
     if (bw_room_worst(&scene->workspace, image, &light, &target, first, count, &lighting, &nearest)) {

@@ -38,6 +38,14 @@ static void note(const struct scene *scene, const struct image *image, const str
     place->area = light->area;
     place->length_m = found->length_m;
     place->share = found->share;
+    place->start_share = light->share;
+    place->mirror_share = image->share;
+    place->pass_share = found->pass_share;
+    double without_gloss = light->share * image->share * found->pass_share;
+    place->gloss_share = image->glint_count > 0 && without_gloss > 0 ? found->share / without_gloss : 1;
+    place->cover_share = 1;
+    place->spot_path_m = light->spot != NULL ? light->spot->path_m : 0;
+    place->aside_rad = found->aside_rad;
     bw_room_via(scene, image, place->via);
 }
 
@@ -113,14 +121,17 @@ struct terms {
     struct target target;
     struct precision precision;
     double *ratios;
+    struct bw_place *places; /* may be NULL */
 };
 
 static void take_one(struct scene *scene, const struct image *image, const struct light *light, struct terms *terms,
-                     double *ratio) {
+                     double *ratio, struct bw_place *place) {
     struct finding found = {.ratio = *ratio};
     size_t first = bw_room_push_roots(&scene->workspace, image), count = scene->workspace.part_count - first;
-    if (bw_room_worst(&scene->workspace, image, light, &terms->target, first, count, &terms->precision, &found))
+    if (bw_room_worst(&scene->workspace, image, light, &terms->target, first, count, &terms->precision, &found)) {
         *ratio = found.ratio;
+        note(scene, image, light, &found, place);
+    }
     scene->workspace.part_count = 0;
     scene->workspace.index_count = 0;
 }
@@ -142,11 +153,15 @@ static enum bw_status take_diffuse(struct scene *scene, const struct image *imag
             if (terms->hazard->terms[i].emission == e)
                 least = fmin(least, terms->ratios[i]);
         double ratio = least;
+        struct bw_place place;
         if (least < HUGE_VAL)
-            take_one(scene, image, &alone, terms, &ratio);
+            take_one(scene, image, &alone, terms, &ratio, &place);
         for (size_t i = 0; i < terms->hazard->term_count; i++)
-            if (terms->hazard->terms[i].emission == e)
-                terms->ratios[i] = fmax(terms->ratios[i], ratio);
+            if (terms->hazard->terms[i].emission == e && ratio > terms->ratios[i]) {
+                terms->ratios[i] = ratio;
+                if (terms->places != NULL)
+                    terms->places[i] = place;
+            }
     }
     return status;
 }
@@ -174,7 +189,8 @@ static enum bw_status take_terms(struct scene *scene, const struct image *image,
         alone.hazard = &terms->one[i];
         alone.curve = NULL;
         alone.exact = true;
-        take_one(scene, image, &alone, terms, &terms->ratios[i]);
+        struct bw_place place, *to = terms->places != NULL ? &terms->places[i] : &place;
+        take_one(scene, image, &alone, terms, &terms->ratios[i], to);
     }
     return BW_OK;
 }
@@ -192,11 +208,15 @@ static bool wants_terms(const struct scene *scene, const struct quad *piece, dou
 /* Every term of the direct hazard at its largest over all paths of one handpiece.
  * Given:    room; source; at
  * Returned: term_ratios   in the order of source->direct; NAN on error
+ *           places        may be NULL; where each comes from
  * Returns:  as bw_room_at */
-enum bw_status bw_room_terms_at(const struct bw_room *room, const struct bw_room_source *source, struct bw_point at,
-                                double term_ratios[BW_TERMS_MAX], struct bw_error *error) {
+enum bw_status bw_room_term_places_at(const struct bw_room *room, const struct bw_room_source *source,
+                                      struct bw_point at, double term_ratios[BW_TERMS_MAX],
+                                      struct bw_place places[BW_TERMS_MAX], struct bw_error *error) {
     for (size_t i = 0; i < BW_TERMS_MAX; i++)
         term_ratios[i] = nan("");
+    for (size_t i = 0; places != NULL && i < BW_TERMS_MAX; i++)
+        places[i] = (struct bw_place){.path = BW_PATH_NONE};
     enum bw_status status = bw_room_check(room, source, 1, error);
     if (status == BW_OK)
         status = check_point(at, error);
@@ -204,8 +224,8 @@ enum bw_status bw_room_terms_at(const struct bw_room *room, const struct bw_room
         return status;
     double ratios[BW_TERMS_MAX] = {0};
     struct scene scene;
-    struct terms terms = {source->direct, single_terms(source->direct), point_target(at), bw_room_point_precision(),
-                          ratios};
+    struct terms terms = {
+        source->direct, single_terms(source->direct), point_target(at), bw_room_point_precision(), ratios, places};
     struct receiver receiver = {wants_terms, take_terms, &terms};
     status = bw_room_scene_init(&scene, room, source, 1, false, error);
     if (status == BW_OK)
@@ -215,4 +235,9 @@ enum bw_status bw_room_terms_at(const struct bw_room *room, const struct bw_room
     if (status == BW_OK)
         memcpy(term_ratios, ratios, sizeof ratios);
     return status;
+}
+
+enum bw_status bw_room_terms_at(const struct bw_room *room, const struct bw_room_source *source, struct bw_point at,
+                                double term_ratios[BW_TERMS_MAX], struct bw_error *error) {
+    return bw_room_term_places_at(room, source, at, term_ratios, NULL, error);
 }

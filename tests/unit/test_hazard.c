@@ -635,7 +635,7 @@ static void test_working(void **state) {
     assert_int_equal(bw_hazard_diffuse_reach(&hazard, &spot, &reach, &working, NULL), BW_OK);
     near(last_step(&working, "r")->value, reach.distance_m, 0., "diffuse distance");
     assert_int_equal(bw_hazard_permitted_time(table, &output, &viewing, 1., &time, &working, NULL), BW_OK);
-    near(last_step(&working, "t")->value, time.exposure_s, 0., "time");
+    near(last_step(&working, "te")->value, time.exposure_s, 0., "time");
     assert_false(working.failed);
     bw_working_free(&working);
 }

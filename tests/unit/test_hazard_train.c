@@ -327,7 +327,7 @@ static void test_working(void **state) {
     struct bw_working working = {.steps = NULL};
     assert_int_equal(bw_hazard_train_limits(bw_tables_find("eu-2006-25"), &emission, &viewing, &set, &working, NULL),
                      BW_OK);
-    static const char *const wanted[] = {"H1", "H2", "H3", "H", "E_limit"};
+    static const char *const wanted[] = {"H1", "H2", "H3", "MPE", "E_limit"};
     const double values[] = {1.2792929435e-2, 5.1171717738e-3, 8.5551475316e-4, 8.5551475316e-4, 4.2775737658};
     for (size_t i = 0; i < COUNT(wanted); i++) {
         bool found = false;
