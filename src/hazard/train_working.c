@@ -21,6 +21,18 @@ static void write_rows(const struct train_case *train, const struct tally tallie
     bw_limits(train->table, train->viewing->target, &exposure, &set, working, NULL);
 }
 
+/* n of a list is energy: that of the pulse or the window over that of the largest pulse. */
+static const char *formula_of(const struct bw_emission *emission, size_t rule) {
+    bool list = emission->pulses != NULL;
+    if (rule == BW_RULE_TRAIN)
+        return list ? "C H(t) / n, each pulse or group of n times the largest energy corrected by the train"
+                    : "C H(t) / n, each pulse corrected by the train";
+    if (rule == BW_RULE_SINGLE)
+        return list ? "H(d) / n, lowest of all pulses, of n times the largest energy" : "H(d), each pulse by itself";
+    return list ? "H(t) / n, lowest over all windows of n times the largest energy"
+                : "H(t) / n, lowest over all windows of n pulses";
+}
+
 static void write_rule(const struct train_case *train, const struct tally *tally, size_t rule, double value,
                        struct bw_working *working) {
     const struct finding *finding = &tally->rules[rule];
@@ -36,13 +48,12 @@ static void write_rule(const struct train_case *train, const struct tally *tally
         bw_working_step(working, symbols[rule], value, "J/m2", source, "H(t), t the exposure", "%.6g J/m2, t = %.9g s",
                         limit_j_m2, window->time_s);
     else if (rule == BW_RULE_TRAIN)
-        bw_working_step(working, symbols[rule], value, "J/m2", source, "C H(t) / n, each pulse corrected by the train",
+        bw_working_step(working, symbols[rule], value, "J/m2", source, formula_of(train->emission, rule),
                         "%.6g x %.6g J/m2 / %.9g, t = %.6g s, N = %.9g", finding->correction, limit_j_m2, window->holds,
                         window->time_s, tally->pulses);
     else
         bw_working_step(working, symbols[rule], value, "J/m2", source,
-                        rule == BW_RULE_SINGLE ? "H(d), each pulse by itself"
-                                               : "H(t) / n, lowest over all windows of n pulses",
+                        formula_of(train->emission, rule),
                         "%.6g J/m2 / %.9g, t = %.9g s", limit_j_m2, window->holds, window->time_s);
 }
 
