@@ -38,8 +38,10 @@ static void timing(struct bw_text *out, const struct bw_laser *laser, const stru
         bw_text_add(&words, "%zu pulses in all. ", emission->pulse_count);
     for (size_t i = 0; i < emission->level_count; i++) {
         const struct bw_level *level = &emission->levels[i];
-        bw_text_add(&words, "%s %s begin together", report_plain(number, level->holds), i == 0 ? "pulses" : "bursts");
-        bw_text_add(&words, ", anew every %s s. ", report_plain(number, level->period_s));
+        bw_text_add(&words, i == 0 ? "Bursts of %s pulses, " : "gates of %s such bursts, ",
+                    report_plain(number, level->holds));
+        bw_text_add(&words, "one every %s s%s ", report_plain(number, level->period_s),
+                    i + 1 < emission->level_count ? ";" : ".");
     }
     if (emission->pulse_count == 0)
         bw_text_add(&words, "While on, the mean is %s W (a power given for the emission is read so); Average W is the mean "
