@@ -1,6 +1,6 @@
 /* hazard - hazard ratio at a place, hazard distances, optical density, longest permitted exposure.
  * Uses: limits, beam.  Used by: eyewear, room, assess, report, cli.
- * Plain values, no allocation, no state. */
+ * Plain values, no state; no allocation but for an emission that is a list of pulses (BW_NO_MEMORY). */
 #ifndef BEAMWARD_HAZARD_H
 #define BEAMWARD_HAZARD_H
 
@@ -18,17 +18,19 @@ enum { BW_RULES = 3 };
 const char *bw_train_rule_name(enum bw_train_rule rule); /* "single", "average", "train" */
 
 /* The limit of one emission for one effect, by each rule. Of a source wider than the cone in which the limit is
- * measured these are limits of the whole exposure: the cone is in them already. */
+ * measured these are limits of the whole exposure: the cone is in them already. Limits per pulse are those of each pulse
+ * of the train; of a list, those of its pulse with the most energy, the others in proportion. */
 struct bw_train_limit {
     struct bw_limit limit;       /* the printed row that governs, at the time where it governs */
     enum bw_train_rule rule;     /* which governs; continuous: BW_RULE_AVERAGE */
     double rules_j_m2[BW_RULES]; /* limit per pulse by each rule (continuous: of the exposure time); NAN where a rule does not apply */
     double per_pulse_j_m2;       /* the lowest of them */
-    double irradiance_w_m2;      /* the same as a limit of the time-mean irradiance (average power) */
+    double irradiance_w_m2;      /* the same as a limit of the time-mean irradiance: per_pulse_j_m2 x average power /
+                                    pulse energy of the emission */
     double aperture_m;           /* to average the exposure over: the row's, or smaller where a shorter window with a
                                     smaller aperture binds a beam narrower than it */
-    double pulses;               /* N as counted for rule 3; 0 if it does not apply */
-    double group_pulses;         /* pulses that count as one because they fall inside Ti; 1 = none */
+    double pulses;               /* N as counted for rule 3 in the worst window, groups as one; 0 if it does not apply */
+    double group_pulses;         /* pulses that count as one because they fall inside Ti; 1 = none (of a list: energy) */
     double correction;           /* of rule 3; 1 if none */
     struct bw_source_note correction_source; /* its row; empty if rule 3 does not apply */
 };

@@ -13,20 +13,29 @@ static const struct cli_option options[] = {
     {"--subtense", "MRAD", "angular subtense of the source in mrad (0: a point)"},
     {"--pulse-duration", "S", "a pulse train: duration of each pulse in s"},
     {"--rate", "HZ", "a pulse train: pulses per second"},
+    {"--pulses", "N", "so many pulses and no more; 1 needs no --rate"},
     CLI_COMPARING_OPTIONS,
 };
 
 static bool read_train(const struct cli_arguments *arguments, struct bw_limit_query *query, bool *wrong) {
-    bool has_duration, has_rate;
+    bool has_duration, has_rate, has_count;
+    struct bw_timing timing = bw_timing_none();
     struct bw_emission_input input = {.wavelength_nm = query->exposure.wavelength_nm,
                                       .average_power_w = (double)NAN,
                                       .peak_power_w = (double)NAN,
-                                      .pulse_energy_j = 1};
+                                      .pulse_energy_j = 1,
+                                      .timing = &timing};
     *wrong = !cli_number(arguments, "--pulse-duration", 1e-13, 3e4, &has_duration, &input.pulse_duration_s) ||
-             !cli_number(arguments, "--rate", 1e-9, 1e12, &has_rate, &input.repetition_rate_hz);
-    if (*wrong || (!has_duration && !has_rate))
+             !cli_number(arguments, "--rate", 1e-9, 1e12, &has_rate, &input.repetition_rate_hz) ||
+             !cli_number(arguments, "--pulses", 1, 1e9, &has_count, &timing.pulse_count);
+    if (*wrong || (!has_duration && !has_rate && !has_count))
         return false;
-    if (has_duration != has_rate) {
+    bool single = has_count && timing.pulse_count <= 1;
+    if (!has_rate)
+        input.repetition_rate_hz = (double)NAN;
+    if (!has_count)
+        timing.pulse_count = (double)NAN;
+    if (!has_duration || !(has_rate || single)) {
         cli_usage_error(arguments->command, "a pulse train needs both --pulse-duration and --rate");
         *wrong = true;
         return false;

@@ -17,9 +17,50 @@ static void emission(struct bw_text *out, const struct bw_laser *laser, const st
         html_cell(out, "n", "%s", report_plain(words, emission->peak_power_w));
         html_cell(out, "n", "%s", report_plain(words, emission->pulse_energy_j));
         html_cell(out, "n", "%s", report_plain(words, emission->pulse_duration_s));
-        html_cell(out, "n", "%s", report_plain(words, emission->repetition_rate_hz));
+        html_cell(out, "n", "%s",
+                  emission->repetition_rate_hz > 0. ? report_plain(words, emission->repetition_rate_hz) : "");
     }
     html_row_end(out);
+}
+
+/* How the pulses follow each other, where duration and rate do not say it all. */
+static void timing(struct bw_text *out, const struct bw_laser *laser, const struct bw_emission *emission) {
+    struct bw_text words = {0};
+    char number[REPORT_QUANTITY_SIZE];
+    bool list = emission->pulses != NULL;
+    bw_text_add(&words, "%s %s: ", laser->name, emission->name);
+    if (emission->pulse_count == 1)
+        bw_text_add(&words, "a single pulse. ");
+    else if (list)
+        bw_text_add(&words, "%zu pulses as listed; pulse energy and duration are those of the one with the most energy. ",
+                    emission->pulse_count);
+    else if (emission->pulse_count > 0)
+        bw_text_add(&words, "%zu pulses in all. ", emission->pulse_count);
+    for (size_t i = 0; i < emission->level_count; i++) {
+        const struct bw_level *level = &emission->levels[i];
+        bw_text_add(&words, i == 0 ? "Bursts of %s pulses, " : "gates of %s such bursts, ",
+                    report_plain(number, level->holds));
+        bw_text_add(&words, "one every %s s%s ", report_plain(number, level->period_s),
+                    i + 1 < emission->level_count ? ";" : ".");
+    }
+    if (emission->pulse_count == 0)
+        bw_text_add(&words, "While on, the mean is %s W (a power given for the emission is read so); Average W is the mean "
+                    "with all gaps.",
+                    report_plain(number, emission->pulse_energy_j * emission->repetition_rate_hz));
+    else
+        bw_text_add(&words, "Average W is the mean from the first pulse to the end of the last.");
+    html_paragraph(out, "%s", words.data ? words.data : "");
+    out->failed = out->failed || words.failed;
+    bw_text_free(&words);
+}
+
+static void timings(struct bw_text *out, const struct bw_result *result) {
+    for (size_t i = 0; i < result->the_case->laser_count; i++)
+        for (size_t j = 0; j < result->the_case->lasers[i].emission_count; j++) {
+            const struct bw_emission *emission = &result->the_case->lasers[i].emissions[j];
+            if (emission->level_count > 0 || emission->pulse_count > 0)
+                timing(out, &result->the_case->lasers[i], emission);
+        }
 }
 
 static void emissions(struct bw_text *out, const struct bw_result *result) {
@@ -87,6 +128,7 @@ static void beams(struct bw_text *out, const struct bw_result *result) {
 void html_inputs_converted(struct bw_text *out, const struct bw_result *result) {
     html_heading(out, "converted", "Inputs as understood");
     emissions(out, result);
+    timings(out, result);
     beams(out, result);
     html_paragraph(out, "Divergence: full angle, d63. Waist m: how far in front of the exit the beam is narrowest.");
 }

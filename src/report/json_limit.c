@@ -39,7 +39,10 @@ static void query_members(struct json *json, const struct bw_limit_query *query)
     if (train) {
         train_members(json, train);
         json_number(json, "pulse_duration_s", query->emission.pulse_duration_s);
-        json_number(json, "repetition_rate_hz", query->emission.repetition_rate_hz);
+        if (query->emission.pulse_count > 0)
+            json_number(json, "pulse_count", (double)query->emission.pulse_count);
+        if (query->emission.pulse_count != 1)
+            json_number(json, "repetition_rate_hz", query->emission.repetition_rate_hz);
     }
     if (query->exposure_reason)
         json_string(json, "exposure_reason", query->exposure_reason);

@@ -13,9 +13,15 @@ static void head(struct bw_text *out, const struct bw_limit_query *query) {
         text_wrapf(out, "source    ", "subtends %s mrad", report_plain(subtense, 1e3 * query->exposure.subtense_rad));
     if (query->has_train) {
         char duration[REPORT_QUANTITY_SIZE], rate[REPORT_QUANTITY_SIZE];
-        text_wrapf(out, "pulses    ", "%s s each, %s a second",
-                   report_plain(duration, query->emission.pulse_duration_s),
-                   report_plain(rate, query->emission.repetition_rate_hz));
+        size_t count = query->emission.pulse_count;
+        report_plain(duration, query->emission.pulse_duration_s);
+        report_plain(rate, query->emission.repetition_rate_hz);
+        if (count == 1)
+            text_wrapf(out, "pulses    ", "one, of %s s", duration);
+        else if (count > 0)
+            text_wrapf(out, "pulses    ", "%zu in all, %s s each, %s a second", count, duration, rate);
+        else
+            text_wrapf(out, "pulses    ", "%s s each, %s a second", duration, rate);
     }
     bw_text_add(out, "\n");
 }
@@ -68,7 +74,8 @@ static void pulsed(struct bw_text *out, const struct bw_limit_query *query) {
     char quantity[REPORT_QUANTITY_SIZE], pulses[REPORT_QUANTITY_SIZE], correction[BW_NUMBER_SIZE];
     const struct bw_train_limit *limit = &query->train.limits[query->train.governing];
     text_wrap(out, "  per pulse          ", report_radiant_exposure(quantity, limit->per_pulse_j_m2, query->us_units));
-    text_wrap(out, "  mean irradiance    ", report_irradiance(quantity, limit->irradiance_w_m2, query->us_units));
+    text_wrap(out, query->emission.pulse_count > 0 ? "  mean of the train  " : "  mean irradiance    ",
+              report_irradiance(quantity, limit->irradiance_w_m2, query->us_units));
     text_wrapf(out, "  governing rule     ", "%s", bw_train_rule_name(limit->rule));
     if (limit->pulses > 0.)
         text_wrapf(out, "  rule of the train  ", "%s pulses counted, correction %s",

@@ -73,16 +73,16 @@ static void brute_try_any(struct brute *b, double time_s, double energy_j) {
 
 /* Energy of the window from one time to another, counted from a pulse so that little is lost; how many it meets. */
 static double brute_energy(const struct brute *b, size_t from, double open_s, double close_s, size_t *meets) {
-    long double sum = 0.;
+    long double sum = 0.0L;
     *meets = 0;
     for (size_t i = 0; i < b->count; i++) {
         double start_s = b->pulses[i].start_s - b->pulses[from].start_s;
         double inside_s = fmin(start_s + b->pulses[i].duration_s, close_s) - fmax(start_s, open_s);
         if (inside_s > 0. && inside_s < b->pulses[i].duration_s * (1. - 1e-13)) {
-            sum += (long double)b->pulses[i].energy_j * inside_s / b->pulses[i].duration_s;
+            sum += (long double)(b->pulses[i].energy_j * (inside_s / b->pulses[i].duration_s));
             *meets += inside_s > 1e-9 * b->pulses[i].duration_s ? 1 : 0; /* more than rounding where two touch */
         } else if (inside_s > 0.) {
-            sum += b->pulses[i].energy_j;
+            sum += (long double)b->pulses[i].energy_j;
             ++*meets;
         }
     }
@@ -105,10 +105,10 @@ static double brute_of_length(const struct brute *b, double length_s, size_t lea
 
 static void brute_average(struct brute *b) {
     for (size_t i = 0; i < b->count; i++) {
-        long double sum = b->pulses[i].energy_j;
+        long double sum = (long double)b->pulses[i].energy_j;
         for (size_t j = i + 1; j < b->count; j++) {
             double time_s = b->pulses[j].start_s - b->pulses[i].start_s + b->pulses[j].duration_s;
-            sum += b->pulses[j].energy_j;
+            sum += (long double)b->pulses[j].energy_j;
             if (time_s <= b->viewing.exposure_s)
                 brute_try(b, BW_RULE_AVERAGE, time_s, (double)sum, 1.);
         }

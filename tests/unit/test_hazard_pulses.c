@@ -348,8 +348,46 @@ static void test_long_lists(void **state) {
     free(pulses);
 }
 
+/* ---- the working -------------------------------------------------------------------------------- */
+
+static void check_working(const struct bw_emission *emission, double exposure_s) {
+    static const char *const wanted[] = {"H1", "H2", "H3", "MPE", "E_limit"};
+    struct bw_viewing_case viewing = {BW_EYE, exposure_s, 0., 0.};
+    struct bw_working working = {.steps = NULL};
+    struct bw_train_limit_set set;
+    assert_int_equal(
+        bw_hazard_train_limits(bw_tables_find("icnirp-2013"), emission, &viewing, &set, &working, NULL), BW_OK);
+    const struct bw_train_limit *limit = &set.limits[0];
+    const double values[] = {limit->rules_j_m2[BW_RULE_SINGLE], limit->rules_j_m2[BW_RULE_AVERAGE],
+                             limit->rules_j_m2[BW_RULE_TRAIN], limit->per_pulse_j_m2, limit->irradiance_w_m2};
+    for (size_t i = 0; i < COUNT(wanted); i++) {
+        bool found = false;
+        for (size_t j = 0; j < working.count; j++)
+            found = found || (!working.steps[j].heading && strcmp(working.steps[j].symbol, wanted[i]) == 0 &&
+                              fabs(working.steps[j].value - values[i]) <= 1e-14 * values[i]);
+        if (!found)
+            fail_msg("no step %s of %g", wanted[i], values[i]);
+    }
+    same(limit->irradiance_w_m2, limit->per_pulse_j_m2 * emission->average_power_w / emission->pulse_energy_j, 1e-14,
+         "E = H P / Q", BW_RETINA_THERMAL);
+    bw_working_free(&working);
+}
+
+static void test_working(void **state) {
+    (void)state;
+    const struct bw_pulse pulses[] = {{0., 1e-6, 1e-3}, {4e-6, 1e-6, 3e-3}, {1., 1e-6, 2e-3}};
+    struct nested n = {1e-3, 1e-6, .1, 2., 10., 5., 0.};
+    uint64_t random = 1;
+    struct bw_emission nested = of_nested(810., &n, &random), list = of_list(810., pulses, COUNT(pulses));
+    n.count = 1.;
+    struct bw_emission single = of_nested(810., &n, &random);
+    check_working(&nested, 10.);
+    check_working(&list, 10.);
+    check_working(&single, 10.);
+}
+
 static char rule_sets[][32] = {"eu-2006-25", "iec-60825-1-2014", "icnirp-2013", "ansi-z136-1-2014"};
-static struct CMUnitTest tests[3 * COUNT(rule_sets) + 1];
+static struct CMUnitTest tests[3 * COUNT(rule_sets) + 2];
 
 int main(void) {
     size_t count = 0;
@@ -359,5 +397,6 @@ int main(void) {
         tests[count++] = (struct CMUnitTest){"long lists", test_long_lists, NULL, NULL, rule_sets[i]};
     }
     tests[count++] = (struct CMUnitTest){"sums of a long list", test_sums, NULL, NULL, NULL};
+    tests[count++] = (struct CMUnitTest){"the working", test_working, NULL, NULL, NULL};
     return cmocka_run_group_tests_name("hazard pulses", tests, NULL, NULL) == 0 ? EXIT_SUCCESS : EXIT_FAILURE;
 }
