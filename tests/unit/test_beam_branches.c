@@ -475,6 +475,8 @@ static void test_from_a_point(void **state) {
 static void test_head(void **state) {
     (void)state;
     struct bw_beam beam = ELLIPTICAL(BW_GAUSSIAN, 4e-3, 0., 6e-3, 0.);
+    const struct bw_beam round = ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 4e-3, 0., 0., 4e-3);
+    same("radius of a round exit", bw_beam_exit_radius_m(&round), 2e-3);
     same("radius of the wider axis", bw_beam_exit_radius_m(&beam), 3e-3);
     beam.cluster.count = BW_EMITTERS_MAX + 4;
     for (size_t i = 0; i < BW_EMITTERS_MAX; i++)
