@@ -823,10 +823,187 @@ static void test_corners(void **state) {
     bw_working_free(&working);
 }
 
+/* ---- corners with several apertures --------------------------------------------------------------- */
+
+/* Far infrared: the aperture grows with the time from 0.35 to 10 s, and the corners of duration and rate have limits
+ * for several. The one limit that stands for all is the lowest E of all corners, and its E D^2 no more than that of
+ * any: so neither a wide nor a narrow beam has a smaller ratio than at its worst corner. */
+static struct aperture_case {
+    const char *name;
+    double duration_s;
+} apertures[] = {
+    {"apertures: 50 ms", .05},  {"apertures: 0.1 s", .1},  {"apertures: 0.2 s", .2}, {"apertures: 0.4 s", .4},
+    {"apertures: 0.8 s", .8},   {"apertures: 1.6 s", 1.6}, {"apertures: 3 s", 3.},   {"apertures: 6 s", 6.},
+    {"apertures: 14.2 s", 14.2}, {"apertures: 20 s", 20.},
+};
+
+static void test_apertures(void **state) {
+    const struct aperture_case *c = *state;
+    static const double ends[] = {.7, 1., 1.3};
+    struct bw_emission_input input = {10600., NONE, 1., NONE, c->duration_s, 1. / (3. * c->duration_s), NULL};
+    struct bw_tolerance tolerance = {input, 0., .3, .3};
+    struct bw_output output = {.count = 1, .beams = {plain}, .tolerances = &tolerance};
+    struct bw_viewing_case viewing = {BW_EYE, 100., 0., 0.};
+    const struct bw_table *table = bw_tables_find("icnirp-2013");
+    struct bw_hazard hazard;
+    double least = LONG, least_narrow = LONG;
+    assert_int_equal(bw_emission_resolve(&input, &output.emissions[0], NULL), BW_OK);
+    assert_int_equal(bw_hazard_prepare(table, &output, &viewing, &hazard, NULL, NULL), BW_OK);
+    assert_int_equal(hazard.term_count, 1);
+    for (size_t i = 0; i < COUNT(ends) * COUNT(ends); i++) {
+        struct bw_emission emission;
+        struct bw_train_limit_set set;
+        double duration = ends[i / COUNT(ends)], rate = ends[i % COUNT(ends)];
+        assert_int_equal(bw_emission_varied(&input, 1., duration, rate, &emission, NULL), BW_OK);
+        assert_int_equal(bw_hazard_train_limits(table, &emission, &viewing, &set, NULL, NULL), BW_OK);
+        double of_own_w = output.emissions[0].average_power_w / emission.average_power_w;
+        double limit = set.limits[0].irradiance_w_m2 * of_own_w, D = set.limits[0].aperture_m;
+        least = fmin(least, limit);
+        least_narrow = fmin(least_narrow, limit * D * D);
+    }
+    const struct bw_train_limit *all = &hazard.terms[0].limit;
+    near("limit", all->irradiance_w_m2, least, 1e-12);
+    near("limit of a narrow beam", all->irradiance_w_m2 * all->aperture_m * all->aperture_m, least_narrow, 1e-11);
+}
+
+/* ---- a rule set with other powers of time --------------------------------------------------------- */
+
+static const char odd_powers[] = "[table]\nid = odd\ntitle = odd\nsource = invented for this test\nedition = first\n"
+                                 "[eye ultraviolet]\n"
+                                 "covers = 300 .. 400 | 1e-9 .. 3e4\n"
+                                 "r01 = 300 .. 400 | 1e-9 .. 3e4 | H | 100 | 0.3 | - | B | memory\n"
+                                 "[eye anterior]\n"
+                                 "covers = 300 .. 400 | 1e-9 .. 3e4\n"
+                                 "r01 = 300 .. 400 | 1e-9 .. 3e4 | H | 1000 | 0.3 | - | B | memory\n"
+                                 "[aperture]\n"
+                                 "r01 = ultraviolet | 300 .. 400 | 1e-9 .. 3e4 | 1 | 0 | D | memory\n"
+                                 "r02 = anterior | 300 .. 400 | 1e-9 .. 3e4 | 3.5 | 0 | D | memory\n"
+                                 "[repetition]\n"
+                                 "ti_01 = 300 .. 400 | 1e-9 | E | memory\n"
+                                 "count = all | E | memory\n"
+                                 "[additivity]\n"
+                                 "r01 = 300 .. 400 | 300 .. 400 | eye skin | F | memory\n"
+                                 "[exposure]\n"
+                                 "r01 = visible | 400 .. 700 | 0.25 | G | memory\n"
+                                 "r02 = glance | 400 .. 1400 | 100 | G | memory\n"
+                                 "r03 = diffuse | 400 .. 1400 | 600 | G | memory\n"
+                                 "r04 = skin | 400 .. 1400 | 100 | G | memory\n"
+                                 "r05 = ultraviolet | 180 .. <400 | 3e4 | G | memory\n"
+                                 "r06 = alignment | 400 .. 700 | 2 | G | memory\n"
+                                 "r07 = working-day | 180 .. 1400 | 3e4 | G | memory\n";
+
+static struct bw_table *load(const char *text) {
+    struct bw_ini ini = {.entries = NULL};
+    struct bw_faults faults = {.items = NULL};
+    struct bw_error error = {.status = BW_OK};
+    struct bw_table *table = NULL;
+    assert_int_equal(bw_ini_read_bytes(text, strlen(text), &ini, &faults, &error), BW_OK);
+    if (bw_table_load(&ini, &table, &faults, &error) != BW_OK)
+        fail_msg("%s", faults.count > 0 ? faults.items[0].text : error.text);
+    bw_faults_free(&faults);
+    bw_ini_free(&ini);
+    return table;
+}
+
+/* Of n pulses of 1 us, a millisecond apart, all in one window: 100 (n ms)^0.3 / n; one alone 100 (1 us)^0.3. */
+static struct power_case {
+    const char *name;
+    size_t count;
+} powers[] = {{"odd powers: 2 pulses", 2}, {"odd powers: 3 pulses", 3}, {"odd powers: 500 pulses", 500}};
+
+static void test_power(void **state) {
+    const struct power_case *c = *state;
+    static struct bw_pulse pulses[500];
+    struct bw_timing timing = bw_timing_none();
+    struct bw_emission_input input = {350., NONE, NONE, NONE, NONE, NONE, &timing};
+    struct bw_viewing_case viewing = {BW_EYE, 10., 0., 0.};
+    struct bw_emission emission;
+    struct bw_train_limit_set limits;
+    double count = (double)c->count;
+    for (size_t i = 0; i < c->count; i++)
+        pulses[i] = (struct bw_pulse){1e-3 * (double)i, 1e-6, 1e-3};
+    timing.pulses = pulses;
+    timing.pulses_given = c->count;
+    struct bw_table *table = load(odd_powers);
+    assert_int_equal(bw_emission_resolve(&input, &emission, NULL), BW_OK);
+    assert_int_equal(bw_hazard_train_limits(table, &emission, &viewing, &limits, NULL, NULL), BW_OK);
+    assert_int_equal(limits.count, 2);
+    double average = LONG;
+    for (double n = 2.; n <= count; n++)
+        average = fmin(average, 100. * pow(1e-3 * (n - 1.) + 1e-6, .3) / n);
+    for (size_t i = 0; i < 2; i++) {
+        double factor = limits.limits[i].limit.effect == BW_ANTERIOR ? 10. : 1.;
+        near("single", limits.limits[i].rules_j_m2[BW_RULE_SINGLE], factor * 100. * pow(1e-6, .3), 1e-12);
+        near("average", limits.limits[i].rules_j_m2[BW_RULE_AVERAGE], factor * average, 1e-11);
+    }
+    bw_table_free(table);
+}
+
+/* Two effects of one tissue add there, so the beams are taken one by one: that without a power has no answer; the
+ * other's limits are the 100 t^0.3 of the ultraviolet. */
+static void test_many_that_add(void **state) {
+    (void)state;
+    static const double wavelengths_nm[] = {350., 350.}, exposures_s[] = {10., 10.}, powers_w[] = {NONE, 1.};
+    static const double diameters_m[] = {1e-3, 1e-3}, divergences_rad[] = {.1, .1};
+    struct bw_simple_beams beams = {2, wavelengths_nm, exposures_s, powers_w, diameters_m, divergences_rad, 1.};
+    double limits_j_m2[2], nohd_m[2], ods[2];
+    struct bw_table *table = load(odd_powers);
+    assert_int_equal(bw_hazard_many(table, &beams, limits_j_m2, nohd_m, ods), 1);
+    near("limit of none", limits_j_m2[0], NONE, 0.);
+    near("distance of none", nohd_m[0], NONE, 0.);
+    near("density of none", ods[0], NONE, 0.);
+    near("limit", limits_j_m2[1], 100. * pow(10., .3), 1e-12);
+    bw_table_free(table);
+}
+
+/* ---- a head of two emitters ----------------------------------------------------------------------- */
+
+/* Between the emitters a place is as on the axis; beyond them the nearer one counts. */
+static void test_between_emitters(void **state) {
+    (void)state;
+    struct bw_output output = {.count = 0};
+    struct bw_hazard hazard;
+    struct bw_beam beam = plain;
+    beam.cluster.count = 2;
+    beam.cluster.at[0].x_m = 5e-3;
+    beam.cluster.at[1].x_m = -5e-3;
+    beam.cluster.share[0] = beam.cluster.share[1] = .5;
+    add_watts(&output, 810., 1., beam);
+    prepare(&hazard, &output, 10.);
+    double r = 2. * hazard.settled_m[0], d = hypot(3e-3, .1 * r);
+    double want = -expm1(-(7e-3 / d) * (7e-3 / d)) / (bw_pi * 49e-6 / 4.) / limit_810();
+    near("on the axis", bw_hazard_ratio_off_axis(&hazard, r, 0.), want, 1e-9);
+    near("between them", bw_hazard_ratio_off_axis(&hazard, r, 2e-3), want, 1e-9);
+    assert_true(bw_hazard_ratio_off_axis(&hazard, r, 2. * d) < .1 * want);
+}
+
+/* Exactly at the limit and collimated: nowhere above it, though nowhere below. */
+static void test_exactly_one(void **state) {
+    (void)state;
+    struct bw_output output = {.count = 0};
+    struct bw_hazard hazard;
+    struct bw_reach reach;
+    add_watts(&output, 810., .5, (struct bw_beam)ROUND(BW_TOP_HAT, BW_HYPERBOLIC, 2e-3, 0., 0., 2e-3));
+    prepare(&hazard, &output, 10.);
+    double *power_w = &output.emissions[0].average_power_w;
+    *power_w /= bw_hazard_ratio(&hazard, 1.);
+    for (int i = 0; i < 8 && bw_hazard_ratio(&hazard, 1.) > 1.; i++)
+        *power_w = nextafter(*power_w, 0.);
+    for (int i = 0; i < 8 && bw_hazard_ratio(&hazard, 1.) < 1.; i++)
+        *power_w = nextafter(*power_w, LONG);
+    near("ratio", bw_hazard_ratio(&hazard, 1.), 1., 0.);
+    assert_int_equal(bw_hazard_reach(&hazard, ALL, &reach, NULL, NULL), BW_OK);
+    near("reach", reach.distance_m, 0., 0.);
+    assert_false(reach.unbounded);
+    *power_w *= 1. + 1e-12;
+    assert_int_equal(bw_hazard_reach(&hazard, ALL, &reach, NULL, NULL), BW_OK);
+    assert_true(reach.unbounded);
+}
+
 static struct CMUnitTest tests[COUNT(refusals) + COUNT(times) + COUNT(permitted) + COUNT(trains) + COUNT(means) +
                                COUNT(spoilt) + COUNT(no_widths) + COUNT(places) + COUNT(points) + COUNT(reaches) +
                                COUNT(densities) + COUNT(spots) + COUNT(diffuses) + COUNT(tolerances) + COUNT(corners) +
-                               8];
+                               COUNT(apertures) + COUNT(powers) + 11];
 
 #define ADD_ROWS(rows, function)                                                                                       \
     for (size_t i = 0; i < COUNT(rows); i++)                                                                           \
@@ -851,6 +1028,8 @@ int main(void) {
     ADD_ROWS(diffuses, test_diffuse);
     ADD_ROWS(tolerances, test_tolerance);
     ADD_ROWS(corners, test_corners);
+    ADD_ROWS(apertures, test_apertures);
+    ADD_ROWS(powers, test_power);
     const struct CMUnitTest single[] = {
         cmocka_unit_test(test_time_fails),
         cmocka_unit_test(test_rule_names),
@@ -860,6 +1039,9 @@ int main(void) {
         cmocka_unit_test(test_list_working),
         cmocka_unit_test(test_front_of_eye),
         cmocka_unit_test(test_shaped_unprepared),
+        cmocka_unit_test(test_many_that_add),
+        cmocka_unit_test(test_between_emitters),
+        cmocka_unit_test(test_exactly_one),
     };
     for (size_t i = 0; i < COUNT(single); i++)
         tests[count++] = single[i];
