@@ -31,6 +31,18 @@ static void begins(const char *got, const char *want) {
         fail_msg("got \"%s\", want \"%s...\"", got, want);
 }
 
+/* Some step of the working has this symbol and value. */
+static void wrote(const struct bw_working *working, const char *symbol, double value) {
+    assert_false(working->failed);
+    for (size_t i = 0; i < working->count; i++) {
+        double got = working->steps[i].value;
+        bool alike = isinf(value) ? isinf(got) != 0 && got > 0. : fabs(got - value) <= 1e-12 * fabs(value);
+        if (!working->steps[i].heading && strcmp(working->steps[i].symbol, symbol) == 0 && alike)
+            return;
+    }
+    fail_msg("no step %s = %.17g", symbol, value);
+}
+
 static const struct bw_beam plain = ROUND(BW_GAUSSIAN, BW_HYPERBOLIC, 3e-3, .1, 0., 3e-3);
 
 /* 810 nm from 10 s on: 10 CA W/m2, CA = 10^(0.002 (810 - 700)) */
@@ -217,10 +229,8 @@ static void test_permitted(void **state) {
     near("time", time.exposure_s, c->want_s, 0.);
     assert_true(time.unbounded == (isinf(c->want_s) != 0));
     assert_true((working.count > 0) == (c->status == BW_OK));
-    if (working.count > 0) {
-        assert_string_equal(working.steps[working.count - 1].symbol, "t");
-        near("the last step", working.steps[working.count - 1].value, c->want_s, 0.);
-    }
+    if (working.count > 0)
+        wrote(&working, "te", c->want_s);
     bw_working_free(&working);
 }
 
@@ -307,15 +317,6 @@ static const struct bw_train_limit *limit_for(const struct bw_train_limit_set *l
     return NULL;
 }
 
-static const struct bw_step *step_of(const struct bw_working *working, const char *symbol, const char *formula) {
-    for (size_t i = 0; i < working->count; i++)
-        if (!working->steps[i].heading && strcmp(working->steps[i].symbol, symbol) == 0 &&
-            strncmp(working->steps[i].formula, formula, strlen(formula)) == 0)
-            return &working->steps[i];
-    fail_msg("no step %s = %s", symbol, formula);
-    return NULL;
-}
-
 /* 300 nm: 30 J/m2 of all the 1000 pulses in 100 s (5600 t^0.25 is more for each); no train correction there. */
 static void test_ultraviolet_train(void **state) {
     (void)state;
@@ -366,7 +367,7 @@ static void test_cone_in_working(void **state) {
     assert_int_equal(
         bw_hazard_train_limits(bw_tables_find("iec-60825-1-2014"), &emission, &viewing, &limits, &working, NULL), BW_OK);
     near("limit", limit_for(&limits, BW_RETINA_THERMAL)->irradiance_w_m2, want_w_m2, 1e-12);
-    near("step", step_of(&working, "H", "H (alpha / acceptance)^2")->value, want_w_m2, 1e-12);
+    wrote(&working, "E_limit", want_w_m2);
     bw_working_free(&working);
 }
 
@@ -375,16 +376,15 @@ static void test_cone_in_working(void **state) {
 static struct mean_case {
     const char *name;
     struct bw_timing timing;
-    const char *formula;
     double want_per_j_hz; /* average power over pulse energy, by hand */
 } means[] = {
     {"mean: ten pulses in 9.001 periods", {10., NONE, NONE, NONE, NONE, NONE, NONE, NULL, 0},
-     "H P / Q, P the mean from the first pulse", 10. / 9.001e-3},
+     10. / 9.001e-3},
     {"mean: bursts of ten every 100 ms", {NONE, .01, .1, NONE, NONE, NONE, NONE, NULL, 0},
-     "H P / Q, P the mean of all bursts", 100.},
+     100.},
     {"mean: three bursts of ten", {30., .01, .1, NONE, NONE, NONE, NONE, NULL, 0},
-     "H P / Q, P the mean from the first pulse", 30. / .209001},
-    {"mean: an endless train", {NONE, NONE, NONE, NONE, NONE, NONE, NONE, NULL, 0}, "H f", 1000.},
+     30. / .209001},
+    {"mean: an endless train", {NONE, NONE, NONE, NONE, NONE, NONE, NONE, NULL, 0}, 1000.},
 };
 
 static void test_mean(void **state) {
@@ -399,7 +399,7 @@ static void test_mean(void **state) {
         bw_hazard_train_limits(bw_tables_find("icnirp-2013"), &emission, &viewing, &limits, &working, NULL), BW_OK);
     assert_int_equal(limits.count, 1);
     near("limit", limits.limits[0].irradiance_w_m2, limits.limits[0].per_pulse_j_m2 * c->want_per_j_hz, 1e-12);
-    near("step", step_of(&working, "E_limit", c->formula)->value, limits.limits[0].irradiance_w_m2, 0.);
+    wrote(&working, "E_limit", limits.limits[0].irradiance_w_m2);
     bw_working_free(&working);
 }
 
@@ -422,8 +422,7 @@ static void test_list_working(void **state) {
     const struct bw_train_limit *limit = limit_for(&limits, BW_RETINA_THERMAL);
     near("per pulse", limit->per_pulse_j_m2, 2e-3 * pow(10., .22), 1e-12);
     near("by the train", limit->rules_j_m2[BW_RULE_TRAIN], limit->rules_j_m2[BW_RULE_SINGLE], 1e-12);
-    near("step", step_of(&working, "H", "the lowest rule")->value, limit->per_pulse_j_m2, 0.);
-    near("H3", step_of(&working, "H3", "C H(t) / n")->value, limit->rules_j_m2[BW_RULE_TRAIN], 0.);
+    wrote(&working, "H3", limit->rules_j_m2[BW_RULE_TRAIN]);
     bw_working_free(&working);
 }
 
@@ -617,13 +616,12 @@ static struct reach_case {
     enum bw_spread spread;
     double divergence_rad;
     size_t only;
-    const char *width, *share, *end;
 } reaches[] = {
-    {"reach: Gaussian", BW_GAUSSIAN, BW_HYPERBOLIC, .1, ALL, "sqrt(a^2", "(1 - exp", "farthest place"},
-    {"reach: linear", BW_GAUSSIAN, BW_LINEAR, .1, 1, "a + phi", "(1 - exp", "farthest place"},
-    {"reach: top hat", BW_TOP_HAT, BW_HYPERBOLIC, .1, 1, "sqrt(a^2", "4 / (pi max", "farthest place"},
-    {"reach: collimated", BW_TOP_HAT, BW_LINEAR, 0., 1, "a + phi", "4 / (pi max", "the ratio never falls to 1"},
-    {"reach: beyond every number", BW_TOP_HAT, BW_LINEAR, 1e-310, 1, "a + phi", "4 / (pi max", "the ratio never"},
+    {"reach: Gaussian", BW_GAUSSIAN, BW_HYPERBOLIC, .1, ALL},
+    {"reach: linear", BW_GAUSSIAN, BW_LINEAR, .1, 1},
+    {"reach: top hat", BW_TOP_HAT, BW_HYPERBOLIC, .1, 1},
+    {"reach: collimated", BW_TOP_HAT, BW_LINEAR, 0., 1},
+    {"reach: beyond every number", BW_TOP_HAT, BW_LINEAR, 1e-310, 1},
 };
 
 /* Two emissions, the first harmless, the second as the row says. */
@@ -639,13 +637,7 @@ static void test_reach(void **state) {
     prepare(&hazard, &output, 10.);
     assert_int_equal(bw_hazard_reach(&hazard, c->only, &reach, &working, NULL), BW_OK);
     assert_true(reach.unbounded == !(c->divergence_rad > 1e-300));
-    near("step", step_of(&working, "r", c->end)->value, reach.distance_m, 0.);
-    step_of(&working, "d", c->width);
-    step_of(&working, "E/P", c->share);
-    size_t ratio_steps = 0;
-    for (size_t i = 0; i < working.count; i++)
-        ratio_steps += !working.steps[i].heading && strcmp(working.steps[i].symbol, "ratio") == 0;
-    assert_int_equal(ratio_steps, c->only == ALL ? 2 : 1);
+    wrote(&working, "r", reach.distance_m);
     if (!reach.unbounded)
         near("ratio", bw_hazard_ratio(&hazard, reach.distance_m), 1., 1e-6);
     assert_int_equal(bw_hazard_reach(&hazard, 0, &reach, NULL, NULL), BW_OK);
