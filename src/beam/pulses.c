@@ -120,6 +120,8 @@ double bw_beam_list_pulse_count(const struct bw_emission *emission, double expos
 double bw_beam_list_window_energy(const struct bw_emission *emission, double window_s) {
     const struct bw_pulse *pulses = emission->pulses;
     struct sum opening = {0., 0.}, closing = {0., 0.};
+    if (window_s >= 0. && window_s <= 0.)
+        return 0.; /* no time, no energy; below, nothing would be divided by nothing */
     double largest_j = 0., list_j = 0.;
     for (size_t i = 0, after = 0, before = 0; i < emission->pulse_count && window_s > 0.; i++) {
         list_j = fmax(list_j, pulses[i].energy_j);

@@ -190,7 +190,9 @@ enum bw_status bw_hazard_seen(const struct bw_hazard *hazard, size_t term, doubl
     struct bw_error cause = {.status = BW_OK};
     seen->ratio = -1.;
     double ratio = bw_hazard_shaped_term(hazard, term, distance_m, distance_m, seen, &cause);
-    if (!(ratio >= 0.))
+    if (!(ratio >= 0.)) {
+        seen->ratio = nan(""); /* whoever forgets the status must not read a safe place */
         return bw_error_set(error, cause.status == BW_OK ? BW_ARGUMENT : cause.status, "%s", cause.text);
+    }
     return BW_OK;
 }
