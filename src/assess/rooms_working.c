@@ -114,14 +114,26 @@ static enum bw_status worst_path(const struct assess_job *job, struct bw_room_re
     return status;
 }
 
+static void write_time(struct bw_working *working, const char *what, const struct bw_permitted_time *time) {
+    bw_working_step(working, "te", time->exposure_s, "s", NULL, NULL, NULL);
+    bw_working_note(working,
+                    "%s: longest exposure at this place for which the sum over all paths is 1 or below; searched "
+                    "between the times where a limit changes its law%s",
+                    what, time->unbounded ? ", none within 30 000 s" : "");
+}
+
 static void skin_path(const struct assess_job *job, struct bw_room_result *result, size_t index) {
     const struct bw_person *who = &job->the_case->rooms[result->room].persons[index];
     if (!result->persons[index].has_times)
         return;
-    bw_working_heading(&result->working, "%s: skin", who->name);
+    bw_working_heading(&result->working, "%s: skin, and how long until the limits are reached", who->name);
     bw_working_step(&result->working, "ratio", result->persons[index].skin_ratio, "", NULL, NULL, NULL);
     bw_working_note(&result->working, "skin at the place, by the same paths with the skin limits of each handpiece, "
                                       "which its own working gives");
+    write_time(&result->working, "eye", &result->persons[index].eye);
+    if (who->has_eyewear)
+        write_time(&result->working, "eye behind the goggles worn", &result->persons[index].worn);
+    write_time(&result->working, "skin", &result->persons[index].skin);
 }
 
 static enum bw_status person(const struct assess_job *job, struct bw_room_result *result,

@@ -111,8 +111,13 @@ double bw_beam_irradiance_working(const struct bw_beam *beam, double distance_m,
                   agree(bw_beam_irradiance_per_w(&plain, 0., aperture_m), per_w);
     if (!closed) {
         bw_working_step(working, "g", per_w, "1/m2", NULL, NULL, NULL);
-        bw_working_note(working, "mean irradiance per watt over the aperture%s",
-                        diameter_m < HUGE_VAL ? ", by quadrature" : ": nothing is left");
+        bw_working_note(working, "mean irradiance per watt over the aperture: %s",
+                        !(diameter_m < HUGE_VAL) ? "nothing is left"
+                        : beam->profile == BW_TOP_HAT
+                            ? "the common area of ellipse and aperture over the product of their areas"
+                            : "of the elliptical Gaussian, by quadrature");
+        if (beam->elliptical && diameter_m < HUGE_VAL)
+            bw_working_note(working, "axes %g m and %g m", diameter_m, bw_beam_widest_m(beam, distance_m));
         return per_w;
     }
     if (beam->profile == BW_TOP_HAT)

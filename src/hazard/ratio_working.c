@@ -37,6 +37,25 @@ static bool same_as_before(const struct bw_hazard *hazard, size_t term, double d
                 bw_beam_irradiance_per_w(second, distance_m, aperture_m));
 }
 
+/* The subtense that the limit is taken for. In numbers where it is that of one source, seen by the naked eye. */
+static void write_angle(const struct bw_hazard *hazard, const struct bw_term *of, double distance_m, double seen_rad,
+                        struct bw_working *working) {
+    const struct bw_beam *beam = &hazard->output->beams[of->emission];
+    double away_m = fmax(distance_m + beam->source_behind_m, nearest_view_m);
+    double source_rad = 2. * atan(beam->source_m / 2. / away_m);
+    number source, away;
+    if (beam->cluster.count <= 1 && away_m < HUGE_VAL && fabs(source_rad - seen_rad) <= 1e-12 * seen_rad)
+        bw_working_step(working, "alpha", 1e3 * seen_rad, "mrad", NULL, "1000 * 2 atan(s / 2 / r)",
+                        "1000 * 2 * atan(%s / 2 / %s)", text(source, beam->source_m), text(away, away_m));
+    else
+        bw_working_step(working, "alpha", 1e3 * seen_rad, "mrad", NULL, NULL, NULL);
+    bw_working_note(working, seen_rad > point_rad
+                                 ? "of what the eye sees from here"
+                                 : "of what the eye sees from here: a point, which counts as alpha_min");
+    if (away_m > distance_m)
+        bw_working_note(working, "r from the apparent source, no nearer than an eye can focus");
+}
+
 /* The limit for the subtense of what is seen, with all its steps. Returns: whether it is the one that was used. */
 static bool write_limit_seen(const struct bw_hazard *hazard, size_t term, const struct bw_seen *seen,
                              struct bw_working *working) {
@@ -44,9 +63,6 @@ static bool write_limit_seen(const struct bw_hazard *hazard, size_t term, const 
     struct bw_train_limit_set set;
     double counted_rad = fmin(fmax(seen->subtense_rad, point_rad), bw_pi / 2.);
     number alpha;
-    bw_working_step(working, "alpha", 1e3 * counted_rad, "mrad", NULL, NULL, NULL);
-    bw_working_note(working, "of what the eye sees from here%s",
-                    seen->subtense_rad > point_rad ? "" : ": a point, which counts as alpha_min");
     bw_working_heading(working, "Limits for a source of %s mrad", text(alpha, 1e3 * counted_rad));
     if (bw_hazard_limits_at_eye(hazard, of->emission, counted_rad, &set, working, NULL) != BW_OK)
         return false;
@@ -69,6 +85,7 @@ static double shaped_working(const struct bw_hazard *hazard, size_t term, double
     double per_w = bw_beam_irradiance_per_w(beam, distance_m, of->limit.aperture_m);
     if (working == NULL)
         return seen.ratio;
+    write_angle(hazard, of, distance_m, seen.subtense_rad, working);
     bool at_point = same(seen.limit.irradiance_w_m2, of->limit.irradiance_w_m2);
     bool known = at_point || write_limit_seen(hazard, term, &seen, working);
     bw_beam_diameter_working(beam, distance_m, working);

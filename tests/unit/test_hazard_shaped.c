@@ -449,7 +449,7 @@ static void test_cluster_crowd(void **state) {
 static const struct bw_step *step_of(const struct bw_working *working, const char *symbol, const char *part) {
     for (size_t i = 0; i < working->count; i++) {
         const struct bw_step *step = &working->steps[i];
-        if (!step->heading && strcmp(step->symbol, symbol) == 0 && strstr(step->formula, part) != NULL)
+        if (!step->heading && strcmp(step->symbol, symbol) == 0 && (strstr(step->formula, part) != NULL || strstr(step->note, part) != NULL))
             return step;
     }
     for (size_t i = 0; i < working->count; i++)
@@ -477,16 +477,19 @@ static void test_working(void **state) {
         add(&output, 808., 1., NONE, NONE, beam);
         prepare(&hazard, &output, BW_EYE, 10.);
         assert_int_equal(bw_hazard_reach(&hazard, ALL, &reach, &working, NULL), BW_OK);
-        const struct bw_step *per_w = step_of(&working, "g", i < 2 ? "exp" : "");
+        const struct bw_step *per_w = step_of(&working, "g",
+                                              i == 4   ? "seen together"
+                                              : i == 3 ? "common area"
+                                              : i == 2 ? "elliptical"
+                                                       : "exp");
         struct bw_seen seen;
         assert_int_equal(bw_hazard_seen(&hazard, 0, reach.distance_m, &seen, NULL), BW_OK);
         near(step_of(&working, "ratio", "E_limit")->value, per_w->value / seen.limit.irradiance_w_m2, 1e-12, "ratio");
         near(step_of(&working, "sum", "ratio")->value, 1., 1e-9, "sum");
-        near(step_of(&working, "r", "")->value, reach.distance_m, 0., "distance");
-        if (i == 1) {
-            assert_true(seen.subtense_rad > 1.5e-3);
-            near(step_of(&working, "alpha", "")->value, 1e3 * seen.subtense_rad, 1e-12, "alpha");
-        }
+        near(step_of(&working, "r", "farthest")->value, reach.distance_m, 0., "distance");
+        assert_true(i != 1 || seen.subtense_rad > 1.5e-3);
+        if (i == 1 || i == 4)
+            near(step_of(&working, "alpha", "the eye sees")->value, 1e3 * seen.subtense_rad, 1e-12, "alpha");
         bw_working_free(&working);
     }
 }

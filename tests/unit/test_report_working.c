@@ -109,6 +109,8 @@ static void check_emission(const struct bw_distance_result *distance, size_t i, 
     ASSERT_HELD(working, emission->ratio_at_exit, where);
     ASSERT_HELD(working, emission->nohd.distance_m, where);
     ASSERT_HELD(working, emission->optical_density, where);
+    if (distance->direct->shaped && emission->subtense_rad > 0)
+        ASSERT_HELD(working, 1e3 * emission->subtense_rad, where);
 }
 
 static void test_distances(void **state) {
@@ -126,6 +128,8 @@ static void test_distances(void **state) {
         ASSERT_HELD(working, distance->glance.exposure_s, piece->name);
         ASSERT_HELD(working, distance->skin_time.exposure_s, piece->name);
         ASSERT_HELD(working, distance->diffuse_time.exposure_s, piece->name);
+        ASSERT_HELD(working, distance->exit.eye.exposure_s, piece->name);
+        ASSERT_HELD(working, distance->exit.skin.exposure_s, piece->name);
         ASSERT_HELD(working, distance->places[0].eye_ratio, piece->name);
         ASSERT_HELD(working, distance->places[0].eye.exposure_s, piece->name);
         ASSERT_HELD(working, distance->places[0].skin.exposure_s, piece->name);
@@ -183,6 +187,11 @@ static void test_rooms(void **state) {
             if (person->place.path != BW_PATH_NONE) {
                 ASSERT_HELD(&found->working, person->place.length_m, room->persons[k].name);
                 ASSERT_HELD(&found->working, person->place.share, room->persons[k].name);
+            }
+            if (person->has_times) {
+                ASSERT_HELD(&found->working, person->eye.exposure_s, room->persons[k].name);
+                ASSERT_HELD(&found->working, person->skin.exposure_s, room->persons[k].name);
+                ASSERT_HELD(&found->working, person->skin_ratio, room->persons[k].name);
             }
             for (size_t j = 0; j < person->od_count; j++)
                 ASSERT_HELD(&found->working, person->od[j].od, room->persons[k].name);
