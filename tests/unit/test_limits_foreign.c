@@ -12,6 +12,8 @@
 
 #include <beamward/limits.h>
 
+#include "calculator.h"
+
 #include "../../src/limits/internal.h"
 #include "unit/small_table.h"
 
@@ -298,6 +300,16 @@ static struct variant variants[] = {
      NULL},
 };
 
+/* A pocket calculator finds the value of every step. */
+static void check_numbers(const struct bw_working *working) {
+    for (size_t i = 0; i < working->count; i++) {
+        const struct bw_step *step = &working->steps[i];
+        double got;
+        if (!step->heading && step->numbers[0] != '\0' && !calculator_agrees(step->numbers, step->value, &got))
+            fail_msg("%s = %.10g, but %s gives %.10g", step->symbol, step->value, step->numbers, got);
+    }
+}
+
 static void ask_one(const struct variant *variant, const struct bw_table *table) {
     const struct ask *ask = &variant->ask;
     struct bw_limit_set limits;
@@ -313,6 +325,7 @@ static void ask_one(const struct variant *variant, const struct bw_table *table)
             fail_msg("%.17g J/m2, want %.17g", got, ask->h_j_m2);
     }
     assert_true(found);
+    check_numbers(&working);
     for (size_t i = 0; i < working.count; i++)
         told = told || strstr(working.steps[i].formula, variant->working) != NULL;
     for (size_t i = 0; !told && i < working.count; i++)
@@ -401,12 +414,15 @@ static void test_train(void **state) {
     struct bw_working working = {0};
     change(text, c->changes);
     struct bw_table *table = load(text);
-    double got = bw_limits_train_correction(table, &c->count, NULL, &working);
+    struct bw_source_note source = {0};
+    double got = bw_limits_train_correction(table, &c->count, &source, &working);
     if (isnan(c->correction) ? !isnan(got) : !(fabs(got - c->correction) <= 1e-12))
         fail_msg("%.17g, want %.17g", got, c->correction);
     if (c->formula != NULL) {
         assert_int_equal(working.count, 1);
-        assert_string_equal(working.steps[0].formula, c->formula);
+        char quoted[BW_FORMULA_SIZE];
+        assert_string_equal(bw_limits_row_formula(table, &source, quoted), c->formula);
+        check_numbers(&working);
         struct bw_text page = {0};
         assert_int_equal(bw_table_print(table, &page), BW_OK);
         if (strstr(page.data, c->printed) == NULL)
