@@ -172,6 +172,11 @@ enum bw_status bw_hazard_diffuse_ratio(const struct bw_hazard *hazard, const str
 enum bw_status bw_hazard_diffuse_working(const struct bw_hazard *hazard, const struct bw_spot *spot, double distance_m,
                                          struct bw_ratio *ratio, struct bw_working *working, struct bw_error *error);
 
+/* Angles of a spot at which the limit of an emission steps: a spot just wider, or a place just farther off, may be the
+ * stricter one. As the naked eye sees them: an aid is in them. Returns: their number, ascending order not promised. */
+enum { BW_SUBTENSE_STEPS = 6 };
+size_t bw_hazard_subtense_steps(const struct bw_hazard *hazard, size_t emission, double steps_rad[BW_SUBTENSE_STEPS]);
+
 /* A distance that may not end. */
 struct bw_reach {
     double distance_m; /* INFINITY when unbounded */

@@ -164,21 +164,41 @@ static double close_in(struct search *search, double near_m, double far_m) {
     return far_m;
 }
 
-/* Angles at which a train correction changes its law. From each of them on, away from the spot, the ratio may step up;
- * between them it never rises: E falls as 1/r^2, and no limit grows faster than the square of the subtense. */
-static const double steps_rad[] = {1.5e-3, 5e-3, 100e-3};
-enum { STEPS = 3, PLACES_MAX = STEPS * BW_EMISSIONS_MAX };
+/* alpha_min, the angles at which a train correction changes its law, and alpha_max at the duration of a pulse, where it
+ * does so for long pulses; with a tolerance of the duration, at its corners too. Between them E falls as 1/r^2, and no
+ * limit grows faster than the square of the subtense.
+ * Notes: Of a list, alpha_max of the pulse with the most energy. */
+size_t bw_hazard_subtense_steps(const struct bw_hazard *hazard, size_t emission, double steps_rad[BW_SUBTENSE_STEPS]) {
+    static const double fixed_rad[] = {1.5e-3, 5e-3, 100e-3};
+    enum { FIXED = sizeof fixed_rad / sizeof *fixed_rad };
+    const struct bw_output *output = hazard->output;
+    double magnification = bw_hazard_magnification(hazard); /* an aid shows the angle so wide */
+    double off = output->tolerances != NULL ? output->tolerances[emission].duration : 0.;
+    const double factors[] = {1., 1. - off, 1. + off};
+    size_t count = 0;
+    for (size_t i = 0; i < FIXED; i++)
+        steps_rad[count++] = fixed_rad[i] / magnification;
+    for (size_t i = 0; i < (off > 0. ? 3 : 1) && !output->emissions[emission].continuous; i++) {
+        double seen_s = fmin(output->emissions[emission].pulse_duration_s * factors[i], hazard->viewing.exposure_s);
+        double largest_rad = bw_limits_largest_subtense(hazard->table, seen_s);
+        if (largest_rad > fixed_rad[1] && largest_rad < fixed_rad[FIXED - 1])
+            steps_rad[count++] = largest_rad / magnification;
+    }
+    return count;
+}
 
+/* From each step on, away from the spot, the ratio may step up; between them it never rises. */
 static double farthest_step_m(const struct search *search, double below_m) {
-    double farthest_m = 0.,
-           magnification = bw_hazard_magnification(search->hazard); /* an aid shows the angle so wide */
-    for (size_t i = 0; i < search->hazard->output->count; i++)
-        for (size_t j = 0; j < STEPS; j++) {
+    double farthest_m = 0., steps_rad[BW_SUBTENSE_STEPS];
+    for (size_t i = 0; i < search->hazard->output->count; i++) {
+        size_t count = bw_hazard_subtense_steps(search->hazard, i, steps_rad);
+        for (size_t j = 0; j < count; j++) {
             double half_m = search->spot->diameter_m[i] / 2.;
-            double place_m = half_m / tan(steps_rad[j] / magnification / 2.) * (1. + 1e-9);
+            double place_m = half_m / tan(steps_rad[j] / 2.) * (1. + 1e-9);
             if (place_m < below_m)
                 farthest_m = fmax(farthest_m, place_m);
         }
+    }
     return farthest_m;
 }
 

@@ -89,19 +89,21 @@ static double pick(const struct bw_ratio *ratio, size_t only) {
     return only < BW_EMISSIONS_MAX ? ratio->emission[only] : ratio->total;
 }
 
-/* Train corrections change their law at these subtenses (limits tables, [train]): there a larger spot, or a place
- * farther off, may be the stricter. Between them a smaller spot is stricter, and the ratio falls with the distance: E
- * falls as 1/r^2, and no limit grows faster than the square of the subtense. */
-static const double steps_rad[] = {1.5e-3, 5e-3, 100e-3};
-enum { STEPS = 3 };
-
-/* The angle at which the naked eye would see what an aid shows as wide as the step. */
-static double step_rad(const struct spot_curve *spot, size_t step) {
-    const struct bw_aid *aid = spot->hazard->output->aid;
-    return steps_rad[step] / (aid ? aid->magnification : 1.);
+/* Where a limit steps, a larger spot or a place farther off may be the stricter. Between the steps a smaller spot is
+ * stricter, and the ratio falls with the distance: E falls as 1/r^2, and no limit grows faster than the square of the
+ * subtense. */
+static double step_rad(const struct spot_curve *spot, size_t emission, size_t step) {
+    double steps_rad[BW_SUBTENSE_STEPS];
+    return step < bw_hazard_subtense_steps(spot->hazard, emission, steps_rad) ? steps_rad[step] : 0;
 }
 
 static const double just_beyond = 1 + 1e-9;
+
+/* The spot that from a distance looks just wider than a step; 0 where there is none. */
+static double step_spot_m(const struct spot_curve *spot, size_t emission, size_t step, double distance_m) {
+    bool pulses = !spot->hazard->output->emissions[emission].continuous;
+    return pulses ? 2 * distance_m * tan(step_rad(spot, emission, step) / 2) * just_beyond : 0;
+}
 
 /* All spots from the smallest up: each law at the end where it is strictest. */
 static enum bw_status diffuse_at(const struct spot_curve *spot, double distance_m, double *ratio,
@@ -110,15 +112,16 @@ static enum bw_status diffuse_at(const struct spot_curve *spot, double distance_
     struct bw_ratio at;
     enum bw_status status = bw_hazard_diffuse_ratio(spot->hazard, &spot->spot, distance_m, &at, error);
     *ratio = pick(&at, spot->emission);
-    for (size_t k = 0; status == BW_OK && k < STEPS; k++) {
+    for (size_t k = 0; status == BW_OK && k < BW_SUBTENSE_STEPS; k++) {
         struct bw_spot other = spot->spot;
-        double step_m = 2 * distance_m * tan(step_rad(spot, k) / 2) * just_beyond;
         bool larger = false;
-        for (size_t i = 0; i < output->count; i++)
-            if (!output->emissions[i].continuous && step_m > spot->spot.diameter_m[i]) {
+        for (size_t i = 0; i < output->count; i++) {
+            double step_m = step_spot_m(spot, i, k, distance_m);
+            if (step_m > spot->spot.diameter_m[i]) {
                 other.diameter_m[i] = step_m;
                 larger = true;
             }
+        }
         if (!larger)
             continue;
         status = bw_hazard_diffuse_ratio(spot->hazard, &other, distance_m, &at, error);
@@ -158,11 +161,10 @@ static void try_spots(const struct spot_curve *spot, double distance_m, double *
                       double *seen_m) {
     const struct bw_output *output = spot->hazard->output;
     try_spot(spot, &spot->spot, distance_m, best, deciding, seen_m);
-    for (size_t k = 0; k < STEPS; k++) {
+    for (size_t k = 0; k < BW_SUBTENSE_STEPS; k++) {
         struct bw_spot other = spot->spot;
         for (size_t i = 0; i < output->count; i++)
-            if (!output->emissions[i].continuous)
-                other.diameter_m[i] = fmax(other.diameter_m[i], 2 * distance_m * tan(steps_rad[k] / 2) * just_beyond);
+            other.diameter_m[i] = fmax(other.diameter_m[i], step_spot_m(spot, i, k, distance_m));
         try_spot(spot, &other, distance_m, best, deciding, seen_m);
     }
 }
@@ -190,11 +192,11 @@ double bw_room_diffuse_at(struct spot_curve *spot, double distance_m) {
 static enum bw_status find_steps(struct spot_curve *spot, struct bw_error *error) {
     enum bw_status status = BW_OK;
     for (size_t i = 0; i < spot->hazard->output->count; i++)
-        for (size_t k = 0; k < STEPS && status == BW_OK; k++) {
-            if (spot->hazard->output->emissions[i].continuous)
+        for (size_t k = 0; k < BW_SUBTENSE_STEPS && status == BW_OK; k++) {
+            if (!(step_spot_m(spot, i, k, 1) > 0))
                 continue;
             struct spot_step *step = &spot->steps[spot->step_count++];
-            step->distance_m = spot->spot.diameter_m[i] / 2 / tan(step_rad(spot, k) / 2) * just_beyond;
+            step->distance_m = spot->spot.diameter_m[i] / 2 / tan(step_rad(spot, i, k) / 2) * just_beyond;
             status = diffuse_at(spot, step->distance_m, &step->ratio, error);
         }
     return status;

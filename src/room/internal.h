@@ -159,7 +159,7 @@ struct spot_curve { /* a lit spot, seen from a distance */
     struct bw_spot spot;
     struct curve curve; /* filled when asked */
     size_t step_count;
-    struct spot_step steps[3 * BW_EMISSIONS_MAX];
+    struct spot_step steps[BW_SUBTENSE_STEPS * BW_EMISSIONS_MAX];
 };
 enum bw_status bw_room_diffuse_curve(struct spot_curve *spot, double far_m, struct bw_error *error);
 double bw_room_diffuse_at(struct spot_curve *spot, double distance_m); /* bound of the bin */

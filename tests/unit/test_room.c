@@ -385,6 +385,35 @@ static void test_matt_wall(void **state) {
     assert_string_equal(place_at(&plan, &handpiece, 2.4, 3).via, "surface-0");
 }
 
+/* Pulses of 10 ms: alpha_max is 20 mrad, and a spot just wider has half the train correction (IEC 60825-1:2014, C5, from
+ * memory). So of all spots on a lit wall the smallest is not always the worst: each place of the wall is tried. */
+static void test_matt_wall_long_pulses(void **state) {
+    (void)state;
+    struct plan plan;
+    struct handpiece handpiece;
+    struct bw_error error = {BW_OK, ""};
+    struct bw_emission_input input = {810, 10, (double)NAN, (double)NAN, 10e-3, 20, NULL};
+    const struct bw_point at = {2, 2};
+    box_plan(&plan, 0, 0, 4, 4, 0.05);
+    plan.room.walls = material(BW_MATT, 0.9, 0);
+    add_area(&plan, &at, 1, 60, 120);
+    for (double divergence_rad = 0.010; divergence_rad < 0.022; divergence_rad += 0.001) {
+        lamp(&handpiece, 10, 0.001, divergence_rad);
+        assert_int_equal(bw_emission_resolve(&input, &handpiece.output.emissions[0], &error), BW_OK);
+        prepare(&handpiece, 100);
+        double worst = 0, got = place_at(&plan, &handpiece, 2.4, 3).ratio;
+        for (double y = 1; y <= 3; y += 0.005) {
+            struct bw_spot spot;
+            struct bw_ratio ratio;
+            assert_int_equal(bw_hazard_spot(&handpiece.output, hypot(2, y - 2), 0.9, &spot), BW_OK);
+            assert_int_equal(bw_hazard_diffuse_ratio(&handpiece.diffuse, &spot, hypot(1.6, y - 3), &ratio, NULL), BW_OK);
+            worst = fmax(worst, ratio.total);
+        }
+        if (!(got >= worst * (1 - 1e-9)))
+            fail_msg("%g rad: got %g, a place of the wall gives %g", divergence_rad, got, worst);
+    }
+}
+
 /* ---- results that belong together -----------------------------------------------------------------------------------
  */
 
@@ -616,6 +645,7 @@ int main(void) {
         cmocka_unit_test(test_openings),
         cmocka_unit_test(test_treated),
         cmocka_unit_test(test_matt_wall),
+        cmocka_unit_test(test_matt_wall_long_pulses),
         cmocka_unit_test(test_terms),
         cmocka_unit_test(test_persons_within_cells),
         cmocka_unit_test(test_contours),
