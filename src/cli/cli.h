@@ -73,6 +73,11 @@ enum cli_exit cli_job_assess(const struct cli_arguments *arguments, const struct
 void cli_print_faults(const char *path, struct bw_faults *faults);
 enum cli_exit cli_print_error(const char *subject, const struct bw_error *error);
 
+/* Reads the case, assesses it, answers, and frees both. */
+typedef enum cli_exit cli_answer(const struct cli_arguments *arguments, const struct cli_job *job,
+                                 struct bw_result *result);
+enum cli_exit cli_run_case(const struct cli_arguments *arguments, unsigned parts, cli_answer *answer);
+
 /* ---- output.c */
 /* Prints to stdout and frees the text. */
 enum cli_exit cli_print(struct bw_text *text);

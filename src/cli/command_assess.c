@@ -28,7 +28,7 @@ static enum cli_exit add_files(struct cli_files *files, const char *directory, c
 }
 
 static enum cli_exit answer(const struct cli_arguments *arguments, const struct cli_job *job,
-                            const struct bw_result *result) {
+                            struct bw_result *result) {
     char sha256[SHA256_DIGEST_STRING_LENGTH];
     SHA256Data((const uint8_t *)job->bytes.data, job->bytes.length, sha256);
     struct bw_provenance provenance = {.version = BEAMWARD_VERSION, .case_path = job->path, .case_sha256 = sha256};
@@ -57,17 +57,7 @@ static enum cli_exit answer(const struct cli_arguments *arguments, const struct 
 static enum cli_exit run(const struct cli_arguments *arguments) {
     if (!cli_value(arguments, "--out"))
         return cli_usage_error(arguments->command, "--out DIR is missing: the folder for the record");
-    struct cli_job job;
-    struct bw_result *result = NULL;
-    enum cli_exit exit_code = cli_job_read(arguments, &job);
-    if (exit_code != CLI_DONE)
-        return exit_code;
-    exit_code = cli_job_assess(arguments, &job, BW_PART_ALL, &result);
-    if (exit_code == CLI_DONE)
-        exit_code = answer(arguments, &job, result);
-    bw_result_free(result);
-    cli_job_free(&job);
-    return exit_code;
+    return cli_run_case(arguments, BW_PART_ALL, answer);
 }
 
 const struct cli_command cli_assess = {

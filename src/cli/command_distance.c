@@ -7,24 +7,19 @@ static const struct cli_option options[] = {
     CLI_COMPARING_OPTIONS,
 };
 
+static enum cli_exit answer(const struct cli_arguments *arguments, const struct cli_job *job,
+                            struct bw_result *result) {
+    struct bw_text text = {0};
+    (void)job;
+    if (cli_wants_json(arguments))
+        bw_report_distance_json(&text, result);
+    else
+        bw_report_distance_text(&text, result);
+    return cli_print_unless_quiet(arguments, &text);
+}
+
 static enum cli_exit run(const struct cli_arguments *arguments) {
-    struct cli_job job;
-    struct bw_result *result = NULL;
-    enum cli_exit exit_code = cli_job_read(arguments, &job);
-    if (exit_code != CLI_DONE)
-        return exit_code;
-    exit_code = cli_job_assess(arguments, &job, BW_PART_DISTANCE | BW_PART_INCIDENT, &result);
-    if (exit_code == CLI_DONE) {
-        struct bw_text text = {0};
-        if (cli_wants_json(arguments))
-            bw_report_distance_json(&text, result);
-        else
-            bw_report_distance_text(&text, result);
-        exit_code = cli_print_unless_quiet(arguments, &text);
-    }
-    bw_result_free(result);
-    cli_job_free(&job);
-    return exit_code;
+    return cli_run_case(arguments, BW_PART_DISTANCE | BW_PART_INCIDENT, answer);
 }
 
 const struct cli_command cli_distance = {

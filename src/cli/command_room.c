@@ -67,17 +67,7 @@ static enum cli_exit answer(const struct cli_arguments *arguments, const struct 
 }
 
 static enum cli_exit run(const struct cli_arguments *arguments) {
-    struct cli_job job;
-    struct bw_result *result = NULL;
-    enum cli_exit exit_code = cli_job_read(arguments, &job);
-    if (exit_code != CLI_DONE)
-        return exit_code;
-    exit_code = cli_job_assess(arguments, &job, BW_PART_ROOM, &result);
-    if (exit_code == CLI_DONE)
-        exit_code = answer(arguments, &job, result);
-    bw_result_free(result);
-    cli_job_free(&job);
-    return exit_code;
+    return cli_run_case(arguments, BW_PART_ROOM, answer);
 }
 
 const struct cli_command cli_room = {

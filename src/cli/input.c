@@ -158,3 +158,17 @@ enum cli_exit cli_job_assess(const struct cli_arguments *arguments, const struct
         return cli_print_error(job->path, &error);
     return CLI_DONE;
 }
+
+enum cli_exit cli_run_case(const struct cli_arguments *arguments, unsigned parts, cli_answer *answer) {
+    struct cli_job job;
+    struct bw_result *result = NULL;
+    enum cli_exit exit_code = cli_job_read(arguments, &job);
+    if (exit_code != CLI_DONE)
+        return exit_code;
+    exit_code = cli_job_assess(arguments, &job, parts, &result);
+    if (exit_code == CLI_DONE)
+        exit_code = answer(arguments, &job, result);
+    bw_result_free(result);
+    cli_job_free(&job);
+    return exit_code;
+}
